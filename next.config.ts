@@ -1,0 +1,11 @@
+import type { NextConfig } from 'next';
+
+const config: NextConfig = {
+  // Packages with native code or their own file lookups stay outside the bundle.
+  serverExternalPackages: ['@node-rs/argon2', 'pg', 'pino', 'graphile-worker'],
+  poweredByHeader: false,
+  // Problem answers for malformed paths come from the server in front of Next; see scripts/web.ts.
+  skipTrailingSlashRedirect: true,
+};
+
+export default config;
