@@ -1,0 +1,96 @@
+import type { AdjustmentModel } from './model';
+import { NormalEquations } from './normals';
+
+/** The squared step, in its own standard deviations, that no longer matters. */
+const CONVERGED = 1e-12;
+const MAX_ITERATIONS = 50;
+const MAX_HALVINGS = 10;
+
+export interface Solution {
+  readonly model: AdjustmentModel;
+  /** The block that took no part, −1 for none. */
+  readonly without: number;
+  readonly unknowns: Float64Array;
+  readonly converged: boolean;
+  readonly iterations: number;
+  /** ∂f/∂x at the solution, aligned with the model's columns. */
+  readonly coefficients: Float64Array;
+  /** ℓ − f(x) at the solution, a value a row: observed minus fitted. */
+  readonly residuals: Float64Array;
+  /** vᵀPv of the rows that took part. */
+  readonly weightedSquares: number;
+  /** Rows minus unknowns, of those that took part. */
+  readonly degreesOfFreedom: number;
+  readonly normals: NormalEquations;
+}
+
+/**
+ * Gauss-Newton solution of a weighted least-squares problem, the step halved while it makes vᵀPv grow
+ * (Björck, Numerical Methods for Least Squares Problems, §9.2). It stops when the squared step in its own
+ * standard deviations, stepᵀ N step, is below 10⁻¹².
+ *
+ * @param start start values of all unknowns; not changed
+ * @param without a block to leave out with its unknowns and all its rows
+ * @throws SingularError where the observations do not determine an unknown
+ */
+export function solve(model: AdjustmentModel, start: Float64Array, without = -1): Solution {
+  const normals = new NormalEquations(model);
+  const coefficients = new Float64Array(model.columns.length);
+  const residuals = new Float64Array(model.weights.length);
+  const step = new Float64Array(model.unknowns);
+  const squaresAt = (point: Float64Array): number => {
+    model.linearise(point, coefficients, residuals);
+    return weightedSquares(model, residuals, normals, without);
+  };
+
+  let x = start.slice();
+  let trial = new Float64Array(model.unknowns);
+  let squares = squaresAt(x);
+  let converged = false;
+  let iterations = 0;
+  while (!converged && iterations < MAX_ITERATIONS && Number.isFinite(squares)) {
+    iterations++;
+    normals.build(coefficients, residuals, without);
+    const decrement = normals.solve(step, without);
+    converged = decrement <= CONVERGED;
+    const before = squares;
+    for (let halving = 0, length = 1; halving <= MAX_HALVINGS; halving++, length /= 2) {
+      for (let i = 0; i < trial.length; i++) trial[i] = x[i] + length * step[i];
+      squares = squaresAt(trial);
+      if (converged || squares <= before + CONVERGED) break;
+    }
+    [x, trial] = [trial, x];
+  }
+  return {
+    model,
+    without,
+    unknowns: x,
+    converged,
+    iterations,
+    coefficients,
+    residuals,
+    weightedSquares: squares,
+    degreesOfFreedom: freedom(model, normals, without),
+    normals,
+  };
+}
+
+function weightedSquares(
+  { weights }: AdjustmentModel,
+  residuals: Float64Array,
+  normals: NormalEquations,
+  without: number,
+): number {
+  let sum = 0;
+  for (let i = 0; i < weights.length; i++) {
+    if (without < 0 || normals.rowBlock(i) !== without) sum += weights[i] * residuals[i] * residuals[i];
+  }
+  return sum;
+}
+
+function freedom({ weights, unknowns, blocks }: AdjustmentModel, normals: NormalEquations, without: number) {
+  if (without < 0) return weights.length - unknowns;
+  let rows = 0;
+  for (let i = 0; i < weights.length; i++) if (normals.rowBlock(i) !== without) rows++;
+  return rows - (unknowns - (blocks[without + 1] - blocks[without]));
+}

@@ -1,0 +1,137 @@
+import { wrapDifference, wrapTurn } from '@/lib/compute/units/angles';
+import { trueSlopeDistance } from './distance';
+import { circleSigma, distanceSigma, type InstrumentAccuracy } from './instrument';
+import type { Shot } from './shots';
+
+export type ReadingKind = 'direction' | 'zenith' | 'distance';
+
+/** A reading after its faces and repeats were meaned within a set. */
+export interface Reading {
+  kind: ReadingKind;
+  /** Index of the erection (one reflector as it stood on its mark). */
+  erection: number;
+  set: number;
+  value: number;
+  sigma: number;
+  /** +1 read in face left only, −1 face right only, 0 both: collimation and index remain in single faces. */
+  face: 1 | -1 | 0;
+}
+
+/** A reflector as it stood on its mark: its centring and height errors are the same in all its readings. */
+export interface Erection {
+  target: string;
+  targetHeight: number;
+  centringSigma: number;
+  heightSigma: number;
+}
+
+export interface FaceErrors {
+  /** 2c: face left minus face right, at the horizon, rad. */
+  twoCollimation: number;
+  /** (left + right − 2π)/2, rad. */
+  verticalIndex: number;
+}
+
+export interface Means {
+  erections: Erection[];
+  readings: Reading[];
+  /** Mean over all two-face pairs; null where no set has both faces. */
+  faceErrors: FaceErrors | null;
+}
+
+/**
+ * Means faces and repeats set by set (Ghilani and Wolf, Elementary Surveying, ch. 8). A face-right circle is
+ * turned by 180°, a face-right zenith is 360° minus its reading; the means are free of collimation and of the
+ * vertical index, which the differences give.
+ *
+ * @param ppm atmospheric correction wanted; null where the atmosphere is unknown
+ */
+export function meanFaces(shots: readonly Shot[], accuracy: InstrumentAccuracy, ppm: number | null): Means {
+  const erections: Erection[] = [];
+  const indexOf = new Map<string, number>();
+  const groups = new Map<string, { erection: number; set: number; left: Shot[]; right: Shot[] }>();
+  for (const shot of shots) {
+    const standing = `${shot.target}\n${shot.targetHeight}`;
+    let erection = indexOf.get(standing);
+    if (erection === undefined) {
+      erection = erections.length;
+      indexOf.set(standing, erection);
+      erections.push({
+        target: shot.target,
+        targetHeight: shot.targetHeight,
+        centringSigma: shot.targetCentringSigma ?? accuracy.targetCentring,
+        heightSigma: shot.targetHeightSigma ?? accuracy.targetHeight,
+      });
+    }
+    const key = `${erection}/${shot.set}`;
+    let group = groups.get(key);
+    if (!group) {
+      group = { erection, set: shot.set, left: [], right: [] };
+      groups.set(key, group);
+    }
+    group[shot.face].push(shot);
+  }
+
+  const readings: Reading[] = [];
+  const collimations: number[] = [];
+  const indices: number[] = [];
+  for (const { erection, set, left, right } of groups.values()) {
+    const place = { erection, set };
+    const zenith = meanZenith(left, right, accuracy);
+    const direction = meanDirection(left, right, accuracy);
+    const distance = meanDistance([...left, ...right], accuracy, ppm);
+    if (direction) readings.push({ kind: 'direction', ...place, ...direction.reading });
+    if (zenith) readings.push({ kind: 'zenith', ...place, ...zenith.reading });
+    if (distance) readings.push({ kind: 'distance', ...place, ...distance });
+    if (zenith?.difference != null) indices.push(zenith.difference / 2);
+    if (direction?.difference != null) {
+      collimations.push(direction.difference * (zenith ? Math.sin(zenith.reading.value) : 1));
+    }
+  }
+  const faceErrors =
+    collimations.length > 0 || indices.length > 0
+      ? { twoCollimation: mean(collimations), verticalIndex: mean(indices) }
+      : null;
+  return { erections, readings, faceErrors };
+}
+
+type MeanReading = Pick<Reading, 'value' | 'sigma' | 'face'>;
+
+function meanDirection(left: Shot[], right: Shot[], accuracy: InstrumentAccuracy) {
+  const l = left.flatMap((shot) => shot.direction ?? []);
+  const r = right.flatMap((shot) => (shot.direction === null ? [] : shot.direction - Math.PI));
+  return meanCircle(l, r, accuracy.direction);
+}
+
+function meanZenith(left: Shot[], right: Shot[], accuracy: InstrumentAccuracy) {
+  const l = left.flatMap((shot) => shot.zenith ?? []);
+  const r = right.flatMap((shot) => (shot.zenith === null ? [] : 2 * Math.PI - shot.zenith));
+  return meanCircle(l, r, accuracy.zenith);
+}
+
+/** @param right readings of face right, brought to face left */
+function meanCircle(left: number[], right: number[], stated: number) {
+  if (left.length + right.length === 0) return null;
+  const origin = left[0] ?? right[0];
+  const l = mean(left.map((value) => wrapDifference(value - origin)));
+  const r = mean(right.map((value) => wrapDifference(value - origin)));
+  const both = left.length > 0 && right.length > 0;
+  const fromOrigin = both ? (l + r) / 2 : left.length > 0 ? l : r;
+  const reading: MeanReading = {
+    value: wrapTurn(origin + fromOrigin),
+    sigma: circleSigma(stated, left.length, right.length),
+    face: both ? 0 : left.length > 0 ? 1 : -1,
+  };
+  return { reading, difference: both ? l - r : null };
+}
+
+function meanDistance(shots: Shot[], accuracy: InstrumentAccuracy, ppm: number | null): MeanReading | null {
+  const values = shots.flatMap((shot) => (shot.distance ? trueSlopeDistance(shot.distance, ppm) : []));
+  if (values.length === 0) return null;
+  const value = mean(values);
+  return { value, sigma: distanceSigma(accuracy, value) / Math.sqrt(values.length), face: 0 };
+}
+
+function mean(values: readonly number[]): number {
+  return values.length === 0 ? 0 : values.reduce((sum, value) => sum + value, 0) / values.length;
+}
