@@ -1,0 +1,37 @@
+import type { Contract } from '@/openapi/contract';
+import * as apiKeys from './apiKeys';
+import * as control from './control';
+import * as design from './design';
+import * as grade from './grade';
+import * as hub from './hub';
+import * as instruments from './instruments';
+import * as people from './people';
+import * as projects from './projects';
+import * as record from './record';
+import * as sessions from './sessions';
+import * as setups from './setups';
+import * as uploads from './uploads';
+
+const modules = [
+  hub,
+  sessions,
+  people,
+  apiKeys,
+  projects,
+  instruments,
+  control,
+  uploads,
+  setups,
+  design,
+  grade,
+  record,
+];
+
+function isContract(value: unknown): value is Contract {
+  return typeof value === 'object' && value !== null && 'answers' in value && 'path' in value;
+}
+
+/** Every operation of the hub, in the order of the document. */
+export const CONTRACTS: readonly Contract[] = modules.flatMap((module) =>
+  Object.values(module).filter(isContract),
+);

@@ -1,0 +1,128 @@
+import { OpenAPIRegistry, OpenApiGeneratorV31, type ResponseConfig } from '@asteasolutions/zod-to-openapi';
+import type { Contract } from './contract';
+import { CONTRACTS } from './contracts';
+import { REQUEST_PROBLEMS, type RequestProblemCode } from './problemCodes';
+import { Problem } from './schemas/problem';
+import { SCOPES } from './scopes';
+
+export const API_BASE = '/api/v1';
+const VERSION = '1.0.0';
+
+const TAGS: Record<string, string> = {
+  Hub: 'The hub itself and who is asking.',
+  Access: 'Signing in and out.',
+  People: 'People and their roles.',
+  'API keys': 'Keys for devices and programs.',
+  Projects: 'Units, frame and limits of a site.',
+  Instruments: 'Instruments, machines and their stated accuracy.',
+  Control: 'Control points, their versions and their health.',
+  Uploads: 'Observations as they came.',
+  Setups: 'Computed setups: verdict, release, withdrawal.',
+  'Surfaces and layers': 'The design that ground is checked against.',
+  Grade: 'Checks of ground and of blades.',
+  Record: 'What happened and who did it.',
+};
+
+const DESCRIPTION = `Hubtack takes raw observations in, keeps them, computes, and hands results out.
+
+Coordinates are named easting, northing and elevation. Azimuths and horizontal readings run clockwise, azimuths from grid north. Deviation of ground from design is vertical and positive where ground is high (cut). No unit is assumed: every submission declares its own, every answer states its own. Errors are problem documents (RFC 9457); each code has a page under /reference/problems.
+
+Results support the judgement of the people on site. Site rules, local codes and licensed practice decide.`;
+
+/** Problems that an operation may answer, by status. */
+export function problemsOf(operation: Contract): RequestProblemCode[] {
+  const codes: RequestProblemCode[] = [
+    'url_malformed',
+    ...(operation.problems ?? []),
+    'internal',
+    'unavailable',
+  ];
+  if (operation.access !== 'public') codes.push('unauthenticated', 'forbidden');
+  if (operation.params) codes.push('not_found');
+  if (operation.query || operation.body) codes.push('invalid');
+  if (operation.body) codes.push('body_unreadable', 'body_too_large', 'media_type_unsupported');
+  if (operation.method === 'post') codes.push('request_in_progress', 'idempotency_mismatch');
+  return [...new Set(codes)];
+}
+
+function problemAnswers(operation: Contract): Record<string, ResponseConfig> {
+  const byStatus = new Map<number, RequestProblemCode[]>();
+  for (const code of problemsOf(operation)) {
+    const { status } = REQUEST_PROBLEMS[code];
+    byStatus.set(status, [...(byStatus.get(status) ?? []), code]);
+  }
+  return Object.fromEntries(
+    [...byStatus]
+      .sort(([a], [b]) => a - b)
+      .map(([status, codes]) => [
+        String(status),
+        {
+          description: codes.map((code) => `\`${code}\`: ${REQUEST_PROBLEMS[code].title}.`).join(' '),
+          content: { 'application/problem+json': { schema: Problem } },
+        },
+      ]),
+  );
+}
+
+function successAnswers(operation: Contract): Record<string, ResponseConfig> {
+  return Object.fromEntries(
+    Object.entries(operation.answers).map(([status, { description, json, media }]) => {
+      if (json) return [status, { description, content: { 'application/json': { schema: json } } }];
+      if (media)
+        return [
+          status,
+          { description, content: { [media]: { schema: { type: 'string' as const, format: 'binary' } } } },
+        ];
+      return [status, { description }];
+    }),
+  );
+}
+
+function requestBody({ body }: Contract) {
+  if (!body) return undefined;
+  const content: Record<string, object> = {};
+  if (body.json) content['application/json'] = { schema: body.json };
+  for (const media of body.text ?? []) content[media] = { schema: { type: 'string' } };
+  return { content, required: !body.optional };
+}
+
+/** The OpenAPI 3.1 document, made of the contracts. */
+export function buildDocument() {
+  const registry = new OpenAPIRegistry();
+  registry.registerComponent('securitySchemes', 'bearer', {
+    type: 'http',
+    scheme: 'bearer',
+    description: 'An API key: `htk_…`.',
+  });
+  registry.registerComponent('securitySchemes', 'session', {
+    type: 'apiKey',
+    in: 'cookie',
+    name: 'hubtack_session',
+    description: 'The console’s session; writes must come from the hub’s own pages.',
+  });
+  for (const operation of CONTRACTS) {
+    const scope = operation.access in SCOPES ? `\n\nScope: \`${operation.access}\`.` : '';
+    registry.registerPath({
+      method: operation.method,
+      path: operation.path,
+      operationId: operation.id,
+      tags: [operation.tag],
+      summary: operation.summary,
+      description: operation.description + scope,
+      security: operation.access === 'public' ? [] : [{ bearer: [] }, { session: [] }],
+      request: { params: operation.params, query: operation.query, body: requestBody(operation) },
+      responses: { ...successAnswers(operation), ...problemAnswers(operation) },
+    });
+  }
+  return new OpenApiGeneratorV31(registry.definitions).generateDocument({
+    openapi: '3.1.0',
+    info: {
+      title: 'Hubtack',
+      version: VERSION,
+      description: DESCRIPTION,
+      license: { name: 'Proprietary', identifier: 'LicenseRef-Proprietary' },
+    },
+    servers: [{ url: API_BASE }],
+    tags: Object.entries(TAGS).map(([name, description]) => ({ name, description })),
+  });
+}

@@ -1,0 +1,628 @@
+/**
+ * Every problem the hub answers: its status, its title, what it means and what to do. The pages under
+ * /reference/problems and the document are made of this list; a code is never renamed.
+ */
+export interface ProblemCode {
+  status: 400 | 401 | 403 | 404 | 405 | 408 | 409 | 410 | 411 | 413 | 414 | 415 | 422 | 429 | 431 | 500 | 503;
+  title: string;
+  meaning: string;
+  fix: string;
+}
+
+const problem = (
+  status: ProblemCode['status'],
+  title: string,
+  meaning: string,
+  fix: string,
+): ProblemCode => ({
+  status,
+  title,
+  meaning,
+  fix,
+});
+
+/** Problems of a request as a whole. */
+export const REQUEST_PROBLEMS = {
+  url_malformed: problem(
+    400,
+    'The address cannot be read',
+    'The path holds a broken percent-escape, a control character or a second host.',
+    'Percent-encode names in the path as UTF-8.',
+  ),
+  request_malformed: problem(
+    400,
+    'The request is not HTTP as it should be',
+    'The request line, a header or the framing of the body could not be understood.',
+    'Send it through an HTTP library; state the length once.',
+  ),
+  body_unreadable: problem(
+    400,
+    'The body cannot be read',
+    'The JSON is broken, the text is not UTF-8, or the compressed body is cut short.',
+    'Send one complete JSON document in UTF-8.',
+  ),
+  body_required: problem(
+    400,
+    'A body is needed',
+    'This operation takes a body and none came.',
+    'Send the body that the reference shows.',
+  ),
+  json_too_deep: problem(
+    400,
+    'The JSON is nested too deeply',
+    'More than 64 levels of objects and arrays.',
+    'Send the document as the reference shows it.',
+  ),
+  cursor_invalid: problem(
+    400,
+    'The cursor is not one of ours',
+    'A cursor belongs to one list with one set of filters.',
+    'Start again without ?cursor=.',
+  ),
+  unauthenticated: problem(
+    401,
+    'Sign-in or an API key is needed',
+    'No credential came, or it is not one of ours.',
+    'Send Authorization: Bearer htk_…, or sign in.',
+  ),
+  key_revoked: problem(
+    401,
+    'This API key was revoked',
+    'Somebody ended this key.',
+    'Ask an administrator for a new key.',
+  ),
+  key_expired: problem(
+    401,
+    'This API key has expired',
+    'Its time is over, or it was rotated and its overlap has passed.',
+    'Use the successor, or ask an administrator for a new key.',
+  ),
+  session_ended: problem(
+    401,
+    'The session has ended',
+    'You signed out, the session expired or your account was closed.',
+    'Sign in again.',
+  ),
+  sign_in_failed: problem(
+    401,
+    'E-mail or password is wrong',
+    'The two do not belong together, or there is no such account.',
+    'Try again; ask an administrator for a new invitation if the password is lost.',
+  ),
+  forbidden: problem(
+    403,
+    'Not allowed with this key or role',
+    'The key or role lacks the scope that this operation asks for.',
+    'Use a key with that scope, or ask an administrator.',
+  ),
+  cross_site: problem(
+    403,
+    'The request comes from another site',
+    'A session cookie only counts for writes from the hub’s own pages.',
+    'Use an API key in scripts.',
+  ),
+  not_found: problem(
+    404,
+    'There is no such thing here',
+    'It does not exist, or this key or person may not see it.',
+    'Check the id and the project.',
+  ),
+  method_not_allowed: problem(
+    405,
+    'The path does not take this method',
+    'The Allow header lists the methods it takes.',
+    'Use one of the methods in Allow.',
+  ),
+  request_timeout: problem(
+    408,
+    'The request took too long to arrive',
+    'The rest of it did not come in time.',
+    'Send it again.',
+  ),
+  conflict: problem(
+    409,
+    'It changed meanwhile',
+    'Somebody else made or changed the same thing at the same moment.',
+    'Read it again, then repeat.',
+  ),
+  name_taken: problem(409, 'The name is taken', 'Names are unique within a project.', 'Choose another name.'),
+  layer_exists: problem(
+    409,
+    'The layer exists',
+    'A layer of that name exists with other values.',
+    'Repeat with ?revise=true to make a new version.',
+  ),
+  surface_in_use: problem(
+    409,
+    'The surface is not of this project',
+    'A layer takes a surface of its own project.',
+    'Post the surface to this project first.',
+  ),
+  upload_conflict: problem(
+    409,
+    'This upload id was used with other content',
+    'An upload with this clientId was accepted before, and its content was different.',
+    'Give a new upload a new clientId.',
+  ),
+  email_taken: problem(
+    409,
+    'The e-mail address is in use',
+    'An address belongs to one account.',
+    'Use another address, or change that person’s role.',
+  ),
+  request_in_progress: problem(
+    409,
+    'The same request is still running',
+    'A request with this Idempotency-Key has not finished.',
+    'Wait a moment, then repeat it unchanged.',
+  ),
+  secret_already_shown: problem(
+    409,
+    'The secret was shown once already',
+    'This request was answered before, and that answer held a secret that is not kept.',
+    'Make or rotate the key anew.',
+  ),
+  setup_not_releasable: problem(
+    409,
+    'The setup cannot be released',
+    'A failed, withdrawn or superseded setup is not released.',
+    'Shoot again or refit; then release the new setup.',
+  ),
+  second_person_wanted: problem(
+    409,
+    'Another person must release this',
+    'A setup on hold is released with a note by somebody other than its submitter.',
+    'Ask another surveyor to look and release it.',
+  ),
+  setup_not_in_force: problem(
+    409,
+    'The setup is not released',
+    'Only a released setup can be withdrawn.',
+    'Nothing needs doing.',
+  ),
+  already_answered: problem(
+    409,
+    'Already answered',
+    'This acknowledgement was given before.',
+    'Nothing needs doing.',
+  ),
+  invitation_used: problem(
+    410,
+    'The invitation is over',
+    'It was used, replaced or has expired.',
+    'Ask an administrator for a new invitation.',
+  ),
+  hub_not_empty: problem(
+    409,
+    'The hub has an organization already',
+    'The first administrator is made once, on an empty hub.',
+    'Sign in, or ask an administrator for an invitation.',
+  ),
+  length_required: problem(
+    411,
+    'The length of the body is missing',
+    'The request announces a body without saying how long it is.',
+    'Send Content-Length or chunked transfer encoding.',
+  ),
+  body_too_large: problem(
+    413,
+    'The body is too large',
+    'Bodies are limited, compressed or not.',
+    'Split it into several uploads.',
+  ),
+  uri_too_long: problem(
+    414,
+    'The address is too long',
+    'Paths and queries are limited to 8 kB.',
+    'Shorten the query.',
+  ),
+  media_type_unsupported: problem(
+    415,
+    'This media type is not taken here',
+    'The Accept header of the answer lists the types that this operation takes.',
+    'Set Content-Type to one of them; compress with gzip or not at all.',
+  ),
+  invalid: problem(
+    422,
+    'Something in the request is not right',
+    'The errors list says where and what to do.',
+    'Mend the places listed, then send it again.',
+  ),
+  nothing_accepted: problem(
+    422,
+    'Nothing in it could be accepted',
+    'Every item was refused; the errors list says why. What arrived is kept.',
+    'Mend the places listed, then send it again.',
+  ),
+  idempotency_mismatch: problem(
+    422,
+    'This Idempotency-Key was used for another request',
+    'A key belongs to one request with one body.',
+    'Use a new key for a new request.',
+  ),
+  too_many_requests: problem(
+    429,
+    'Too many attempts',
+    'Too many failed sign-ins from here or for this account.',
+    'Wait as long as Retry-After says.',
+  ),
+  headers_too_large: problem(
+    431,
+    'The headers are too large',
+    'All headers together are limited to 16 kB.',
+    'Send fewer or shorter headers.',
+  ),
+  internal: problem(
+    500,
+    'The hub failed',
+    'Something went wrong inside; it is logged under the request id.',
+    'Try again; report the request id if it happens again.',
+  ),
+  unavailable: problem(
+    503,
+    'The hub is busy or its database is away',
+    'Nothing was written.',
+    'Repeat after the seconds in Retry-After; repeating is safe.',
+  ),
+} as const satisfies Record<string, ProblemCode>;
+
+/** Problems of one place in a request: they stand in `errors` and in `refused`. */
+export const ITEM_PROBLEMS = {
+  unknown_field: problem(
+    422,
+    'A field that is not known here',
+    'Unknown fields are refused, so that a misspelt one is not lost.',
+    'Remove it or correct its name.',
+  ),
+  required: problem(
+    422,
+    'A field is missing',
+    'The reference lists what each item needs.',
+    'Send the field.',
+  ),
+  wrong_type: problem(
+    422,
+    'A value of the wrong kind',
+    'For example text where a number belongs; numbers are never sent as text, save dms angles.',
+    'Send the kind that the reference shows.',
+  ),
+  invalid_value: problem(
+    422,
+    'A value out of its range or list',
+    'The detail says what is allowed.',
+    'Send an allowed value.',
+  ),
+  duplicate_key: problem(
+    422,
+    'A key stands twice in one object',
+    'Which of the two is meant cannot be known.',
+    'Send each key once.',
+  ),
+  key_forbidden: problem(
+    422,
+    'A key that no document may carry',
+    '__proto__ and the like are refused.',
+    'Remove it.',
+  ),
+  text_forbidden: problem(
+    422,
+    'Text with a character that cannot be kept',
+    'NUL and half surrogate pairs are refused.',
+    'Send well-formed Unicode text without NUL.',
+  ),
+  number_out_of_range: problem(
+    422,
+    'A number that a double cannot hold',
+    'It would become infinite or zero.',
+    'Send the value as it was measured.',
+  ),
+  integer_too_large: problem(
+    422,
+    'An integer that would lose digits',
+    'Integers beyond 2^53 cannot be kept exactly.',
+    'Send ids as text.',
+  ),
+  negative_zero: problem(
+    422,
+    'A negative zero',
+    'A zero with a sign is the trace of a lost value.',
+    'Send 0, or the value that was meant.',
+  ),
+  units_required: problem(
+    422,
+    'A unit is missing',
+    'No unit is assumed.',
+    'State the unit in `units` (or in ?length= for text).',
+  ),
+  units_conflict: problem(
+    422,
+    'The other foot',
+    'The values are in the other foot than the project’s frame: 2 ppm, four feet at two million.',
+    'Check the source; then repeat with confirmUnits: true.',
+  ),
+  frame_unsupported: problem(
+    422,
+    'This frame cannot be computed here',
+    'The project’s frame has no datum, or a transformation is missing.',
+    'Send grid coordinates of the project’s frame.',
+  ),
+  name_invalid: problem(
+    422,
+    'A name that cannot be used',
+    'Names begin with a letter or digit and have 64 characters at most.',
+    'Use letters, digits, space, point, underscore or hyphen.',
+  ),
+  time_invalid: problem(
+    422,
+    'A time that cannot be read',
+    'Times are RFC 3339 with an offset, between the years 1970 and 2199.',
+    'Write 2031-04-12T07:41:00-06:00.',
+  ),
+  angle_invalid: problem(
+    422,
+    'An angle that cannot be read',
+    'dms angles are text with minutes and seconds under 60; the others are numbers.',
+    'Write 124-30-15.2, or declare another angle unit.',
+  ),
+  angle_out_of_range: problem(
+    422,
+    'An angle out of its range',
+    'Horizontal readings run from 0 to under 360°, zenith angles lie between 0 and 360° and are neither 0 nor 180°.',
+    'Send the reading as the circle shows it.',
+  ),
+  face_mismatch: problem(
+    422,
+    'The face contradicts the zenith angle',
+    'Face left reads zenith angles between 0 and 180°, face right between 180 and 360°.',
+    'Correct the face, or the zenith angle.',
+  ),
+  reading_required: problem(
+    422,
+    'A shot without any reading',
+    'A shot carries at least one of horizontal, zenith and slopeDistance.',
+    'Send the reading, or leave the shot out.',
+  ),
+  target_height_required: problem(
+    422,
+    'The target height is missing',
+    'A zenith angle or a distance needs the height of its target.',
+    'Send targetHeight; 0 where the mark itself was shot.',
+  ),
+  target_required: problem(
+    422,
+    'The target’s name is missing',
+    'In a resection every shot names its control point.',
+    'Name the target.',
+  ),
+  prism_state_required: problem(
+    422,
+    'The prism constants are missing',
+    'A distance without its prism constant and the constant already applied is worth nothing: 30 mm either way.',
+    'Send prismConstantMm and prismConstantAppliedMm; 0 and 0 for reflectorless.',
+  ),
+  ppm_state_required: problem(
+    422,
+    'The applied ppm is missing',
+    'Whether the instrument corrected for the air already must be said.',
+    'Send appliedPpm; 0 where nothing was applied.',
+  ),
+  prism_state_conflict: problem(
+    422,
+    'A prism constant on a reflectorless shot',
+    'Without a prism both constants are 0.',
+    'Correct distanceMode or the constants.',
+  ),
+  pressure_contradicts_elevation: problem(
+    422,
+    'The pressure does not fit the elevation',
+    'It is more than 30 hPa off the standard atmosphere there: probably reduced to sea level.',
+    'Send station pressure, or state the project’s siteElevation.',
+  ),
+  target_unknown: problem(
+    422,
+    'The target is no control point',
+    'No control point of this project has that name.',
+    'Correct the name, or bring the point in first.',
+  ),
+  target_repeated: problem(
+    422,
+    'The same reading twice',
+    'Two shots have one client id.',
+    'Give each shot its own clientId.',
+  ),
+  client_id_taken: problem(
+    422,
+    'The client id is taken',
+    'An accepted item of this project has it.',
+    'Give the item a new clientId; the same upload may be repeated unchanged.',
+  ),
+  instrument_unknown: problem(
+    422,
+    'The instrument is not registered',
+    'Its stated accuracy is needed for the statistics.',
+    'Register it under /projects/{projectId}/instruments.',
+  ),
+  tolerance_class_unknown: problem(
+    422,
+    'No such tolerance class',
+    'The project lists its classes.',
+    'Name one of the project’s classes.',
+  ),
+  layer_unknown: problem(
+    422,
+    'No such layer',
+    'The layer does not exist in this project.',
+    'Correct the name, or make the layer first.',
+  ),
+  setup_unknown: problem(
+    422,
+    'No such setup',
+    'Neither a clientId nor an id of a setup in this project.',
+    'Correct it; a setup of the same upload must itself be accepted.',
+  ),
+  benchmark_unknown: problem(
+    422,
+    'No such benchmark',
+    'No control point of this project has that name.',
+    'Correct the name, or bring the point in first.',
+  ),
+  benchmark_without_elevation: problem(
+    422,
+    'The benchmark has no elevation',
+    'A blade is checked against a known elevation.',
+    'Bring in the benchmark’s elevation.',
+  ),
+  surface_unknown: problem(
+    422,
+    'No such surface',
+    'The surface does not exist in this project.',
+    'Post the surface first.',
+  ),
+  project_unknown: problem(
+    422,
+    'No such project',
+    'The project does not exist or may not be seen.',
+    'Correct the id.',
+  ),
+  person_unknown: problem(
+    422,
+    'No such person',
+    'The person does not exist or the account is closed.',
+    'Correct the id.',
+  ),
+  shot_unknown: problem(
+    422,
+    'No such shot',
+    'The setup has no shot of that client id.',
+    'Name a shot of the setup.',
+  ),
+  reading_incomplete: problem(
+    422,
+    'A check shot that cannot give a position',
+    'A check needs horizontal, zenith and slopeDistance to a mark.',
+    'Send all three readings.',
+  ),
+  setup_not_computable: problem(
+    422,
+    'The setup cannot be computed',
+    'The shots do not determine a station: two marks with direction and distance are the least.',
+    'Shoot more marks, with distances.',
+  ),
+  method_not_supported: problem(
+    422,
+    'This method is not computed yet',
+    'The bytes are kept.',
+    'Send it as a resection with named targets.',
+  ),
+  kind_not_supported: problem(
+    422,
+    'This kind is not computed yet',
+    'The bytes are kept.',
+    'Send it again when the changelog announces it.',
+  ),
+  one_of_required: problem(
+    422,
+    'One of several fields is needed',
+    'The detail names them.',
+    'Send exactly one of them.',
+  ),
+  mutually_exclusive: problem(
+    422,
+    'Fields that exclude each other',
+    'The detail names them.',
+    'Send one of them.',
+  ),
+  control_point_exists: problem(
+    422,
+    'The point exists with other coordinates',
+    'A changed coordinate is a decision.',
+    'Repeat with ?revise=true to make a new version.',
+  ),
+  name_repeated: problem(
+    422,
+    'A name twice in one submission',
+    'Which of the two is meant cannot be known.',
+    'Send each name once.',
+  ),
+  column_unknown: problem(
+    422,
+    'A column that is not known',
+    'The header row names the fields.',
+    'Correct the header.',
+  ),
+  column_missing: problem(
+    422,
+    'A column is missing',
+    'name, easting and northing are needed.',
+    'Add the column.',
+  ),
+  row_malformed: problem(
+    422,
+    'A row that does not fit its header',
+    'It has more or fewer cells, or an open quote.',
+    'Mend the row.',
+  ),
+  surface_degenerate: problem(
+    422,
+    'The points make no surface',
+    'They lie on a line, or triangles are missing.',
+    'Send at least three points that span an area.',
+  ),
+  triangle_invalid: problem(
+    422,
+    'A triangle that cannot be used',
+    'It names a missing point, a point twice, or has no area in plan.',
+    'Correct or remove it.',
+  ),
+  point_repeated: problem(
+    422,
+    'Two heights at one place',
+    'Two points share easting and northing but not the elevation.',
+    'Remove one of them.',
+  ),
+  offset_mismatch: problem(
+    422,
+    'The offset is not the layer’s',
+    'A release binds the layer’s own offset.',
+    'Use the layer’s offset, or make a layer with this one.',
+  ),
+  surface_mismatch: problem(
+    422,
+    'Not the surface of the layer',
+    'The hash differs from the layer’s surface.',
+    'Load the surface of the layer into the machine.',
+  ),
+  note_required: problem(
+    422,
+    'A note is needed',
+    'A setup on hold is released with a reason.',
+    'Say in note why it may be used.',
+  ),
+  release_incomplete: problem(
+    422,
+    'A release to a machine needs its layer',
+    'A machine is released with layer and offset.',
+    'Send layer with machine.',
+  ),
+  time_out_of_order: problem(
+    422,
+    'The times contradict each other',
+    'A release lies between the observation and now.',
+    'Correct the time.',
+  ),
+  scope_not_yours: problem(
+    422,
+    'A scope that you do not have',
+    'Nobody hands out more than they have.',
+    'Leave it out, or ask an administrator.',
+  ),
+  password_weak: problem(
+    422,
+    'The password is too weak',
+    'Twelve characters at least, and not one of the common ones.',
+    'Use a longer phrase.',
+  ),
+} as const satisfies Record<string, ProblemCode>;
+
+export type RequestProblemCode = keyof typeof REQUEST_PROBLEMS;
+export type ItemProblemCode = keyof typeof ITEM_PROBLEMS;

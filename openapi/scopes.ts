@@ -1,0 +1,47 @@
+/** What an actor may do, in words: one list for roles and keys. */
+export const SCOPES = {
+  'projects:read': 'see projects, their units, tolerance classes and instruments',
+  'projects:write': 'make and change projects, tolerance classes and instruments',
+  'control:read': 'see control points and their history',
+  'control:write': 'bring in control, make new versions, mark points suspect or quarantined',
+  'uploads:read': 'see what was sent in, byte for byte',
+  'uploads:write': 'post observations',
+  'setups:read': 'see setups and their statistics',
+  'setups:write': 'refit setups',
+  'setups:release': 'release setups to machines',
+  'setups:withdraw': 'withdraw setups',
+  'design:read': 'see surfaces and layers',
+  'design:write': 'bring in surfaces and make layers',
+  'grade:read': 'see grade checks, bench checks and summaries',
+  'acknowledgements:read': 'see which withdrawals wait for an answer',
+  'acknowledgements:write': 'answer a withdrawal for a machine',
+  'events:read': 'follow what happens',
+  'audit:read': 'see who did what',
+  'keys:read': 'see API keys',
+  'keys:write': 'make, rotate and revoke API keys',
+  'people:read': 'see people and their roles',
+  'people:write': 'invite people, change roles, close accounts',
+} as const;
+
+export type Scope = keyof typeof SCOPES;
+export const SCOPE_NAMES = Object.keys(SCOPES) as [Scope, ...Scope[]];
+
+export const ROLES = ['admin', 'surveyor', 'foreman', 'inspector', 'analyst'] as const;
+export type Role = (typeof ROLES)[number];
+
+const READS = SCOPE_NAMES.filter(
+  (scope) => scope.endsWith(':read') && !['keys:read', 'people:read', 'audit:read'].includes(scope),
+);
+
+/** What each role may do. */
+export const ROLE_SCOPES: Record<Role, readonly Scope[]> = {
+  admin: SCOPE_NAMES,
+  surveyor: [
+    ...READS,
+    ...(['projects:write', 'control:write', 'uploads:write', 'setups:write', 'setups:release'] as const),
+    ...(['setups:withdraw', 'design:write', 'acknowledgements:write', 'people:read', 'audit:read'] as const),
+  ],
+  foreman: [...READS, 'acknowledgements:write'],
+  inspector: [...READS, 'uploads:write', 'setups:withdraw', 'people:read', 'audit:read'],
+  analyst: READS,
+};
