@@ -44,6 +44,8 @@ export interface Contract {
   query?: z.ZodObject;
   body?: Body;
   answers: Readonly<Record<number, Answer>>;
+  /** The answer holds a secret that is shown once: it is not kept for a repeated request. */
+  secret?: true;
   /** Problems of its own, beside those that every operation may answer. */
   problems?: readonly RequestProblemCode[];
 }

@@ -26,6 +26,7 @@ export const createApiKey = contract({
   description: 'One key per device or program. The secret is shown once; only its hash is kept.',
   access: 'keys:write',
   body: { json: ApiKeyCreate },
+  secret: true,
   answers: { 201: { description: 'The key and its secret.', json: ApiKeySecret } },
   problems: ['secret_already_shown'],
 });
@@ -65,6 +66,7 @@ export const rotateApiKey = contract({
   access: 'keys:write',
   params: ApiKeyParams,
   body: { json: ApiKeyRotate },
+  secret: true,
   answers: { 201: { description: 'The successor and its secret.', json: ApiKeySecret } },
   problems: ['conflict', 'secret_already_shown'],
 });

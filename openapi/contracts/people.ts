@@ -25,6 +25,7 @@ export const createPerson = contract({
   description: 'Makes an account and an invitation, shown once, with which the person sets a password.',
   access: 'people:write',
   body: { json: PersonCreate },
+  secret: true,
   answers: { 201: { description: 'The person and the invitation.', json: Invitation } },
   problems: ['email_taken', 'secret_already_shown'],
 });
@@ -64,6 +65,7 @@ export const reinvitePerson = contract({
   description: 'A new invitation, shown once; an earlier one ends. Also the way back from a lost password.',
   access: 'people:write',
   params: PersonParams,
+  secret: true,
   answers: { 201: { description: 'The person and the invitation.', json: Invitation } },
   problems: ['secret_already_shown'],
 });

@@ -105,13 +105,19 @@ export class NormalEquations {
    * One Gauss-Newton step of the shared unknowns from the present point when the rows of `block` are not there:
    * (S − Sᵦ) dx = t − tᵦ. Needs `build` at the present point.
    *
+   * @param fixed a shared unknown that is to stay where it is, −1 for none
    * @throws SingularError where the rest does not determine the shared unknowns
    */
-  stepWithout(block: number): Float64Array {
+  stepWithout(block: number, fixed = -1): Float64Array {
     const { g } = this;
     const s = new Float64Array(g * g);
     const dx = new Float64Array(g);
     this.reduce(s, dx, block);
+    if (fixed >= 0) {
+      for (let i = 0; i < g; i++) s[i * g + fixed] = s[fixed * g + i] = 0;
+      s[fixed * g + fixed] = 1;
+      dx[fixed] = 0;
+    }
     factor(s, g);
     solveLower(s, g, dx);
     solveUpper(s, g, dx);

@@ -5,7 +5,8 @@ import { AXIS, EASTING, NORTHING, type StationModel } from './stationModel';
 export interface MarkShift {
   /** Horizontal distance and signed height by which the station moves, m. */
   horizontal: number;
-  vertical: number;
+  /** Null where this mark alone carries the height. */
+  vertical: number | null;
 }
 
 /** Above this the linear answer is not good enough and the rest is adjusted anew, m. */
@@ -17,31 +18,43 @@ const NONLINEAR = 1e-5;
  * adjustment is repeated without the mark.
  */
 export function shiftsWithout(model: StationModel, solution: Solution): (MarkShift | null)[] {
-  const { unknowns } = solution;
-  return model.marks.map((name, block) => {
-    if (model.marks.length < 2) return null;
-    try {
-      let step: ArrayLike<number> = solution.normals.stepWithout(block);
-      const nearest = nearestOther(model, unknowns, name);
-      const length = Math.hypot(step[EASTING], step[NORTHING], step[AXIS]);
-      if (!(length * length < NONLINEAR * nearest)) {
-        const repeated = solve(model, unknowns, block);
-        if (!repeated.converged) return null;
-        step = repeated.unknowns.map((value, i) => value - unknowns[i]);
-      }
-      return { horizontal: Math.hypot(step[EASTING], step[NORTHING]), vertical: step[AXIS] };
-    } catch (error) {
-      if (error instanceof SingularError) return null;
-      throw error;
-    }
+  if (model.marks.length < 2) return model.marks.map(() => null);
+  return model.marks.map((_, block) => {
+    const full = orSingular(() => solution.normals.stepWithout(block));
+    if (!(full instanceof SingularError)) return shift(model, solution, block, full);
+    if (full.unknown !== AXIS) return null;
+    const flat = orSingular(() => solution.normals.stepWithout(block, AXIS));
+    if (flat instanceof SingularError) return null;
+    return { horizontal: Math.hypot(flat[EASTING], flat[NORTHING]), vertical: null };
   });
 }
 
-function nearestOther(model: StationModel, unknowns: Float64Array, without: string): number {
+function shift(model: StationModel, solution: Solution, block: number, step: Float64Array): MarkShift | null {
+  const { unknowns } = solution;
+  const length = Math.hypot(step[EASTING], step[NORTHING], step[AXIS]);
+  if (length * length < NONLINEAR * nearestOther(model, unknowns, block)) {
+    return { horizontal: Math.hypot(step[EASTING], step[NORTHING]), vertical: step[AXIS] };
+  }
+  const repeated = orSingular(() => solve(model, unknowns, block));
+  if (repeated instanceof SingularError || !repeated.converged) return null;
+  const moved = (unknown: number) => repeated.unknowns[unknown] - unknowns[unknown];
+  return { horizontal: Math.hypot(moved(EASTING), moved(NORTHING)), vertical: moved(AXIS) };
+}
+
+function orSingular<T>(attempt: () => T): T | SingularError {
+  try {
+    return attempt();
+  } catch (error) {
+    if (error instanceof SingularError) return error;
+    throw error;
+  }
+}
+
+function nearestOther(model: StationModel, unknowns: Float64Array, without: number): number {
   let nearest = Number.POSITIVE_INFINITY;
-  for (const name of model.marks) {
-    if (name === without) continue;
-    const first = model.markUnknown(name);
+  for (let block = 0; block < model.marks.length; block++) {
+    if (block === without) continue;
+    const first = model.blocks[block];
     const distance = Math.hypot(
       unknowns[first] - unknowns[EASTING],
       unknowns[first + 1] - unknowns[NORTHING],

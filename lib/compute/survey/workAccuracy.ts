@@ -23,9 +23,9 @@ export function accuracyAtWork(
 ): WorkAccuracy {
   const q = (i: number, j: number) => station.covariance[i * STATION_UNKNOWNS + j];
   const lever = radius * combinedFactor;
-  // Var(α) in the direction across the ray turns with α: the largest eigenvalue over all rays, degree by degree.
+  // Var(α) in the direction across the ray turns with α: the largest eigenvalue over rays 5° apart.
   let worst = 0;
-  for (let degree = 0; degree < 360; degree++) {
+  for (let degree = 0; degree < 360; degree += 5) {
     const azimuth = (degree * Math.PI) / 180;
     const [east, north] = [lever * Math.cos(azimuth), -lever * Math.sin(azimuth)];
     const ee = q(0, 0) + east * east * q(3, 3) + 2 * east * q(0, 3);

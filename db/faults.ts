@@ -1,0 +1,27 @@
+/** What a failed statement means for a request; the driver's own words never leave the hub. */
+export interface DatabaseFault {
+  kind: 'unavailable' | 'unique' | 'other';
+  sqlstate: string | null;
+  constraint: string | null;
+}
+
+/** Connection trouble, shutdown, time-outs, deadlocks: repeating later is safe and may help. */
+const UNAVAILABLE = /^(08|53|57P|40|55P03|57014|25P03)/;
+const NETWORK = new Set(['ECONNREFUSED', 'ECONNRESET', 'EPIPE', 'ETIMEDOUT', 'ENOENT']);
+const DRIVER_TROUBLE =
+  /timeout exceeded when trying to connect|Connection terminated|not queryable|Client was closed/;
+
+/** Reads SQLSTATE and constraint from an error or its cause; null where it is not the database's. */
+export function databaseFault(error: unknown): DatabaseFault | null {
+  for (let e = error, depth = 0; e instanceof Error && depth < 5; e = e.cause, depth++) {
+    const { code, constraint } = e as Error & { code?: unknown; constraint?: unknown };
+    if (typeof code === 'string' && /^[0-9A-Z]{5}$/.test(code)) {
+      const kind = code === '23505' ? 'unique' : UNAVAILABLE.test(code) ? 'unavailable' : 'other';
+      return { kind, sqlstate: code, constraint: typeof constraint === 'string' ? constraint : null };
+    }
+    if ((typeof code === 'string' && NETWORK.has(code)) || DRIVER_TROUBLE.test(e.message)) {
+      return { kind: 'unavailable', sqlstate: null, constraint: null };
+    }
+  }
+  return null;
+}

@@ -1,0 +1,207 @@
+import { CRITICAL_W } from '@/lib/compute/statistics/distributions';
+import type { CheckDifference, Tolerance } from './checkShots';
+import type { ReadingKind } from './faces';
+import type { StationFit } from './stationFit';
+import type { WorkAccuracy } from './workAccuracy';
+
+export type Verdict = 'pass' | 'hold' | 'fail';
+export type Axis = 'horizontal' | 'vertical';
+
+/** What a class of work asks of a setup, m. */
+export interface SetupLimits {
+  residual: Tolerance;
+  work: { radius: number; horizontal: number; vertical: number };
+  checkRequired: boolean;
+}
+
+/** Why, in figures (SI); the words and units are put to it where it is shown. */
+export type SetupReason =
+  | { code: 'not_converged' }
+  | { code: 'observation_outlier'; target: string; kind: ReadingKind; value: number; limit: number }
+  | { code: 'target_residual_over'; axis: Axis; target: string; value: number; limit: number }
+  | { code: 'check_over'; axis: Axis; target: string; value: number; limit: number; inFit: boolean }
+  | { code: 'too_few_marks'; axis: Axis; count: number; limit: number }
+  | { code: 'single_mark_dominates'; axis: Axis; target: string; value: number; limit: number }
+  | { code: 'single_mark_needed'; axis: Axis; target: string }
+  | { code: 'spread_too_large'; value: number; limit: number }
+  | { code: 'accuracy_short'; axis: Axis; value: number; limit: number; radius: number }
+  | { code: 'check_disagrees'; axis: Axis; target: string; value: number; limit: number }
+  | { code: 'check_not_capable'; axis: Axis; target: string; value: number; limit: number }
+  | { code: 'check_wanted'; axes: Axis[] }
+  | { code: 'within_limits'; marks: number; radius: number; horizontal: number; vertical: number }
+  | { code: 'not_checked'; independent: Axis[]; singleFace: boolean };
+
+export interface SetupVerdict {
+  verdict: Verdict;
+  verdicts: Record<Axis, Verdict>;
+  reasons: SetupReason[];
+}
+
+const MARKS_WANTED: Record<Axis, number> = { horizontal: 3, vertical: 2 };
+const AXES: readonly Axis[] = ['horizontal', 'vertical'];
+const AXIS_OF_KIND: Record<ReadingKind, Axis> = {
+  direction: 'horizontal',
+  distance: 'horizontal',
+  zenith: 'vertical',
+};
+
+/**
+ * Whether a setup may be worked from, in easting and northing and in height. It fails on what is wrong, holds on
+ * what is not proven, and passes otherwise; a setup that lacks nothing but the independent check that its class
+ * requires holds with the single reason `check_wanted`.
+ *
+ * @param checks the latest check on each mark
+ */
+export function judgeSetup(
+  fit: StationFit,
+  limits: SetupLimits,
+  checks: readonly CheckDifference[],
+  work: WorkAccuracy,
+): SetupVerdict {
+  const reasons: SetupReason[] = [];
+  const verdicts: Record<Axis, Verdict> = { horizontal: 'pass', vertical: 'pass' };
+  const lower = (axis: Axis, to: 'hold' | 'fail', reason?: SetupReason) => {
+    if (verdicts[axis] !== 'fail') verdicts[axis] = to;
+    if (reason) reasons.push(reason);
+  };
+  judgeFaults(fit, limits, checks, lower);
+  judgeProof(fit, limits, checks, work, lower);
+
+  const wanted = AXES.filter((axis) => !independent(checks, axis));
+  if (limits.checkRequired && wanted.length > 0) {
+    const onlyCheck = reasons.length === 0;
+    for (const axis of wanted) lower(axis, 'hold');
+    if (onlyCheck) return { verdict: 'hold', verdicts, reasons: [{ code: 'check_wanted', axes: wanted }] };
+    reasons.push({ code: 'check_wanted', axes: wanted });
+  }
+  const verdict = worst(verdicts);
+  if (verdict === 'pass') {
+    const marks = fit.marks.filter((mark) => mark.horizontal).length;
+    reasons.push({ code: 'within_limits', marks, radius: limits.work.radius, ...work });
+  }
+  const singleFace = fit.marks.some((mark) =>
+    mark.readings.some((r) => r.kind !== 'distance' && r.faces !== 'both'),
+  );
+  if (wanted.length > 0 || singleFace) reasons.push({ code: 'not_checked', independent: wanted, singleFace });
+  return { verdict, verdicts, reasons };
+}
+
+type Lower = (axis: Axis, to: 'hold' | 'fail', reason?: SetupReason) => void;
+
+/** What is wrong: no convergence, outliers, residuals or checks beyond the class' limits. */
+function judgeFaults(
+  fit: StationFit,
+  limits: SetupLimits,
+  checks: readonly CheckDifference[],
+  lower: Lower,
+): void {
+  if (!fit.converged) {
+    lower('horizontal', 'fail', { code: 'not_converged' });
+    lower('vertical', 'fail');
+  }
+  for (const mark of fit.marks) {
+    const worstReading = new Map<ReadingKind, number>();
+    for (const { kind, standardised } of mark.readings) {
+      const w = Math.abs(standardised);
+      if (w > CRITICAL_W && w > (worstReading.get(kind) ?? 0)) worstReading.set(kind, w);
+    }
+    for (const [kind, value] of worstReading) {
+      const reason = {
+        code: 'observation_outlier',
+        target: mark.name,
+        kind,
+        value,
+        limit: CRITICAL_W,
+      } as const;
+      lower(AXIS_OF_KIND[kind], 'fail', reason);
+    }
+    const { easting, northing, elevation } = mark.residual;
+    const sizes = {
+      horizontal: easting === null || northing === null ? 0 : Math.hypot(easting, northing),
+      vertical: Math.abs(elevation ?? 0),
+    };
+    for (const axis of AXES) {
+      const [value, limit] = [sizes[axis], limits.residual[axis]];
+      if (value > limit) {
+        lower(axis, 'fail', { code: 'target_residual_over', axis, target: mark.name, value, limit });
+      }
+    }
+  }
+  for (const check of checks) {
+    for (const axis of AXES) {
+      if (check[axis] !== 'over') continue;
+      const value = sizeOf(check, axis);
+      const { target, inFit } = check;
+      lower(axis, 'fail', { code: 'check_over', axis, target, value, limit: limits.residual[axis], inFit });
+    }
+  }
+}
+
+/** What is not proven: too few marks, one mark carrying it all, spread, accuracy at work, checks unable to tell. */
+function judgeProof(
+  fit: StationFit,
+  limits: SetupLimits,
+  checks: readonly CheckDifference[],
+  work: WorkAccuracy,
+  lower: Lower,
+): void {
+  for (const axis of AXES) {
+    const count = fit.marks.filter((mark) => mark[axis] && mark.status === 'trusted').length;
+    if (count < MARKS_WANTED[axis]) {
+      lower(axis, 'hold', { code: 'too_few_marks', axis, count, limit: MARKS_WANTED[axis] });
+    } else judgeLeaveOneOut(fit, axis, limits.residual[axis], lower);
+  }
+  if (!fit.test.passed) {
+    lower('horizontal', 'hold', { code: 'spread_too_large', value: fit.test.sigma0, limit: 1 });
+    lower('vertical', 'hold');
+  }
+  for (const axis of AXES) {
+    const [value, limit] = [work[axis], limits.work[axis]];
+    const determined = axis === 'horizontal' || fit.heightDetermined;
+    if (determined && value > limit) {
+      lower(axis, 'hold', { code: 'accuracy_short', axis, value, limit, radius: limits.work.radius });
+    }
+  }
+  if (!limits.checkRequired) return;
+  for (const check of checks) {
+    if (check.inFit || !check.trusted) continue;
+    for (const axis of AXES) {
+      if (independent(checks, axis)) continue;
+      const { target } = check;
+      if (check[axis] === 'disagrees') {
+        const limit = 2 * (check.uncertainty[axis] ?? 0);
+        lower(axis, 'hold', { code: 'check_disagrees', axis, target, value: sizeOf(check, axis), limit });
+      } else if (check[axis] === 'notCapable') {
+        const value = 2 * (check.uncertainty[axis] ?? 0);
+        lower(axis, 'hold', { code: 'check_not_capable', axis, target, value, limit: limits.residual[axis] });
+      }
+    }
+  }
+}
+
+function judgeLeaveOneOut(fit: StationFit, axis: Axis, limit: number, lower: Lower): void {
+  const inAxis = fit.marks.filter((mark) => mark[axis]);
+  const needed = inAxis.find((mark) => mark.without === null || mark.without[axis] === null);
+  if (needed) lower(axis, 'hold', { code: 'single_mark_needed', axis, target: needed.name });
+  let weakest: { target: string; value: number } | null = null;
+  for (const { name, without } of inAxis) {
+    const value = Math.abs(without?.[axis] ?? 0);
+    if (value > limit && value > (weakest?.value ?? 0)) weakest = { target: name, value };
+  }
+  if (weakest) lower(axis, 'hold', { code: 'single_mark_dominates', axis, ...weakest, limit });
+}
+
+/** An agreed check on a trusted mark that took no part in the fit. */
+function independent(checks: readonly CheckDifference[], axis: Axis): boolean {
+  return checks.some((check) => !check.inFit && check.trusted && check[axis] === 'agreed');
+}
+
+function sizeOf({ difference }: CheckDifference, axis: Axis): number {
+  if (axis === 'horizontal') return Math.hypot(difference.easting, difference.northing);
+  return Math.abs(difference.elevation ?? 0);
+}
+
+function worst(verdicts: Record<Axis, Verdict>): Verdict {
+  const both = Object.values(verdicts);
+  return both.includes('fail') ? 'fail' : both.includes('hold') ? 'hold' : 'pass';
+}

@@ -1,0 +1,71 @@
+import { parse } from 'csv-parse/sync';
+import { problemItem } from '@/openapi/problemItem';
+import type { ProblemItem } from '@/openapi/schemas/problem';
+
+export interface Table {
+  /** Cells by column name; `line` counts from 1 with the header. */
+  rows: { line: number; cells: Record<string, string> }[];
+  problems: ProblemItem[];
+}
+
+/**
+ * Reads comma-separated text with a header row (RFC 4180). A row with the wrong number of cells is a problem of its
+ * own; the others stand.
+ *
+ * @param known column names that are taken; @param needed those that must be there
+ */
+export function readTable(text: string, known: readonly string[], needed: readonly string[]): Table {
+  let lines: { record: string[]; info: { lines: number } }[];
+  try {
+    lines = parse(text, {
+      bom: true,
+      relax_column_count: true,
+      skip_empty_lines: true,
+      trim: true,
+      info: true,
+    }) as never;
+  } catch (error) {
+    const detail =
+      error instanceof Error ? error.message.slice(0, 200) : 'The text cannot be read as a table.';
+    return { rows: [], problems: [problemItem('/rows', 'row_malformed', detail)] };
+  }
+  const [header, ...records] = lines;
+  const columns = header?.record ?? [];
+  const problems = [
+    ...columns.flatMap((name, i) => headerProblem(name, i, columns, known)),
+    ...needed
+      .filter((name) => !columns.includes(name))
+      .map((name) => problemItem('/rows/1', 'column_missing', `The column ${name} is missing.`)),
+  ];
+  if (problems.length > 0) return { rows: [], problems };
+  const rows: Table['rows'] = [];
+  for (const { record, info } of records) {
+    const line = info.lines;
+    if (record.length !== columns.length) {
+      const detail = `Line ${line} has ${record.length} cells, the header ${columns.length}.`;
+      problems.push(problemItem(`/rows/${line}`, 'row_malformed', detail));
+    } else rows.push({ line, cells: Object.fromEntries(columns.map((name, i) => [name, record[i]])) });
+  }
+  return { rows, problems };
+}
+
+function headerProblem(
+  name: string,
+  index: number,
+  columns: readonly string[],
+  known: readonly string[],
+): ProblemItem[] {
+  const pointer = `/rows/1/${index + 1}`;
+  if (!known.includes(name)) {
+    return [
+      problemItem(
+        pointer,
+        'column_unknown',
+        `The column ${JSON.stringify(name)} is none of ${known.join(', ')}.`,
+      ),
+    ];
+  }
+  return columns.indexOf(name) < index
+    ? [problemItem(pointer, 'name_repeated', `The column ${name} stands twice.`)]
+    : [];
+}

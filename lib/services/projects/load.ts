@@ -1,0 +1,29 @@
+import type { InferSelectModel } from 'drizzle-orm';
+import { and, eq } from 'drizzle-orm';
+import { projects } from '@/db/schema';
+import type { Tenant } from '@/db/tenant';
+import { DEFAULT_SURROUNDINGS, type Surroundings } from '@/lib/compute/survey/surroundings';
+import { Problem } from '@/lib/problem';
+
+export type ProjectRow = InferSelectModel<typeof projects>;
+
+/** @throws Problem where the organization has no such project */
+export async function loadProject(
+  tenant: Tenant,
+  organizationId: string,
+  projectId: string,
+): Promise<ProjectRow> {
+  const [row] = await tenant.db
+    .select()
+    .from(projects)
+    .where(and(eq(projects.organizationId, organizationId), eq(projects.id, projectId)));
+  if (!row) throw new Problem('not_found', 'There is no such project.');
+  return row;
+}
+
+export function surroundingsOf(
+  project: Pick<ProjectRow, 'combinedFactor' | 'refraction' | 'refractionSigma'>,
+): Surroundings {
+  const { combinedFactor, refraction, refractionSigma } = project;
+  return { ...DEFAULT_SURROUNDINGS, combinedFactor, refraction, refractionSigma };
+}
