@@ -13,6 +13,7 @@ await conduct(async () => {
   requireNode();
   const folder = openDataFolder();
   await claim(folder);
+  const address = await chooseAddress();
   const database = chooseDatabase(folder);
   const { state, isOurs } = database;
 
@@ -20,7 +21,6 @@ await conduct(async () => {
   const [begun] = await Promise.all([database.begin(), packages]);
   const { appUrl, server } = await database.finish(begun);
 
-  const address = await chooseAddress();
   const env = hubEnvironment({ appUrl, secret: state.values.secret, address, mode: 'development' });
   if (isOurs) await step('Demo sign-ins', () => makePeople(folder, state, env));
 

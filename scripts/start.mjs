@@ -16,6 +16,7 @@ await conduct(async () => {
   const asksForDemo = readOptions(process.argv.slice(2));
   const folder = openDataFolder();
   await claim(folder);
+  const address = await chooseAddress();
   const database = chooseDatabase(folder);
   const { state } = database;
 
@@ -25,7 +26,6 @@ await conduct(async () => {
   const connected = Promise.all([database.begin(), packages]).then(([begun]) => database.finish(begun));
   const [{ appUrl, server }] = await Promise.all([connected, built]);
 
-  const address = await chooseAddress();
   const env = hubEnvironment({ appUrl, secret: state.values.secret, address, mode: 'production' });
   const servers = [...startHub(folder, env), ...(server ? [server] : [])];
   const broken = whenOneEnds(servers);

@@ -17,6 +17,7 @@ export const SetupCheckTarget = z
     role: z
       .enum(['independent', 'drift'])
       .meta({ description: 'A mark of the fit shows drift, not independence.' }),
+    status: z.enum(['trusted', 'suspect', 'quarantined']),
     difference: z.object({ easting: figure, northing: figure, elevation: maybe }).meta({
       description: 'Polar position minus published control.',
     }),

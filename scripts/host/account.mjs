@@ -1,5 +1,5 @@
 import { spawnSync } from 'node:child_process';
-import { chmodSync, chownSync, mkdirSync, statSync } from 'node:fs';
+import { chmodSync, chownSync, existsSync, mkdirSync, rmdirSync, statSync } from 'node:fs';
 import { Failure } from './failure.mjs';
 import { asRoot } from './paths.mjs';
 
@@ -20,6 +20,7 @@ export function serverAccount(existingHome) {
 
 /** Makes a folder that only the server's user may enter, and tells whether that user really can. */
 export function giveFolder(folder, account) {
+  const isNew = !existsSync(folder);
   try {
     mkdirSync(folder, { recursive: true });
     chmodSync(folder, 0o700);
@@ -29,7 +30,9 @@ export function giveFolder(folder, account) {
     return false;
   }
   // Asked of the system as that user: a closed folder anywhere above shuts it out.
-  return spawnSync('test', ['-w', folder], { ...account, cwd: '/' }).status === 0;
+  const canUse = spawnSync('test', ['-w', folder], { ...account, cwd: '/' }).status === 0;
+  if (!canUse && isNew) rmdirSync(folder);
+  return canUse;
 }
 
 function idOf(flag) {

@@ -18,7 +18,13 @@ export function findServerPrograms(major) {
     const found = majorOf(folder);
     if (major ? found === major : found >= oldestMajor) return { folder, major: found };
   }
-  return null;
+  if (!named) return null;
+  throw new Failure(
+    `HUBTACK_POSTGRES_BIN names ${named}, which holds no PostgreSQL ${major ?? '15 or newer'}.`,
+    {
+      remedy: 'Name a folder with postgres and initdb in it, or leave it out to have one found.',
+    },
+  );
 }
 
 export function requireServerPrograms(major) {

@@ -74,7 +74,7 @@ export async function handOver(command, args) {
 }
 
 /** Asks a process to end in its own way and waits; what has not ended in time is made to. */
-export async function stop(entry, patienceSeconds = 30) {
+export async function stop(entry, patienceSeconds = 20) {
   if (entry.end) return;
   signalTo(entry.pid, entry.stop);
   const late = new AbortController();

@@ -29,8 +29,7 @@ export async function startOwnCluster(folder, state) {
       appPassword: newSecret(),
     };
     const cluster = { home: place.home, port: await choosePort(), ...passwords, prepared: false };
-    // A new cluster is an empty hub: sign-ins kept for an earlier one are worth nothing.
-    Object.assign(state.values, { cluster, demo: undefined });
+    state.values.cluster = cluster;
     state.save();
     await initialise({ ...place, password: cluster.superuserPassword, log: log() });
   }
@@ -58,25 +57,29 @@ export async function prepareOwnCluster(state) {
 }
 
 function placeOf(folder, state) {
-  const kept = state.values.cluster?.home;
-  const major = kept && majorOfData(kept);
-  if (major)
-    return { home: kept, account: serverAccount(dataOf(kept)), programs: requireServerPrograms(major) };
+  const { home, prepared } = state.values.cluster ?? {};
+  const major = home && majorOfData(home);
+  if (major) return { home, account: serverAccount(dataOf(home)), programs: requireServerPrograms(major) };
 
   const beside = join(folder, 'cluster');
+  if (prepared) {
+    throw new Failure(`The hub's database is gone from ${shown(home)}.`, {
+      remedy: `Bring that folder back, or remove ${shown(state.file)} to begin with an empty hub.`,
+    });
+  }
   if (existsSync(dataOf(beside))) {
     throw new Failure(`${shown(beside)} holds a database whose passwords (${shown(state.file)}) are gone.`, {
       remedy: 'Put that file back, or move the folder away to begin with an empty hub.',
     });
   }
   const account = serverAccount();
-  return { home: kept ?? newHome(beside, account), account, programs: requireServerPrograms() };
+  return { home: newHome([home, beside], account), account, programs: requireServerPrograms() };
 }
 
 /** Beside the other data where the server's user can get there (not below a closed home), or else elsewhere. */
-function newHome(beside, account) {
+function newHome(wishes, account) {
   const name = `hubtack-${randomBytes(4).toString('hex')}`;
-  const homes = [beside, join('/var/lib', name), join(tmpdir(), name)];
+  const homes = [...wishes, join('/var/lib', name), join(tmpdir(), name)].filter(Boolean);
   const home = homes.find((candidate) => giveFolder(candidate, account));
   if (home) return home;
   throw new Failure(`The database finds no folder to live in (tried ${homes.join(', ')}).`, {

@@ -4,6 +4,7 @@ import { setTimeout as pause } from 'node:timers/promises';
 import { signalTo, watchChildren } from './children.mjs';
 import { Failure } from './failure.mjs';
 import { startedAt } from './processes.mjs';
+import { step } from './steps.mjs';
 
 const patienceMilliseconds = 15_000;
 
@@ -19,8 +20,9 @@ export async function claim(folder) {
       remedy: `Stop that one with Ctrl-C where it runs, or with: kill ${found.self.pid}`,
     });
   }
-  // Newest first: the hub's processes before the database that they use.
-  for (const entry of (found?.children ?? []).reverse()) await endLeftBehind(entry);
+  const leftBehind = (found?.children ?? []).filter(isAlive);
+  if (leftBehind.length > 0)
+    await step('What a killed start left running, stopped', () => endAll(leftBehind));
 
   const self = named({ pid: process.pid });
   const write = (children) => {
@@ -32,13 +34,15 @@ export async function claim(folder) {
   process.once('exit', () => rmSync(file, { force: true }));
 }
 
-async function endLeftBehind(entry) {
-  if (!isAlive(entry)) return;
-  signalTo(entry.pid, entry.stop);
-  const deadline = performance.now() + patienceMilliseconds;
-  while (isAlive(entry)) {
-    if (performance.now() > deadline) signalTo(-entry.pid, entry.force);
-    await pause(50);
+async function endAll(entries) {
+  // Newest first: the hub's processes before the database that they use.
+  for (const entry of entries.reverse()) {
+    signalTo(entry.pid, entry.stop);
+    const deadline = performance.now() + patienceMilliseconds;
+    while (isAlive(entry)) {
+      if (performance.now() > deadline) signalTo(-entry.pid, entry.force);
+      await pause(50);
+    }
   }
 }
 

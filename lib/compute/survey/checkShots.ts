@@ -21,7 +21,7 @@ export interface CheckDifference {
   version: number;
   /** The mark took part in the fit: the check shows drift, not independence. */
   inFit: boolean;
-  trusted: boolean;
+  status: ControlMark['status'];
   /** Polar position minus published control, m; null where it could not be formed. */
   difference: { easting: number; northing: number; elevation: number | null };
   /** u of the difference: worst direction in the horizontal, and vertical. */
@@ -86,7 +86,7 @@ export function checkDifferences(input: {
         target: mark.name,
         version: mark.version,
         inFit: cross !== undefined,
-        trusted: mark.status === 'trusted',
+        status: mark.status,
         difference: { easting: east, northing: north, elevation: up },
         uncertainty: { horizontal: uHorizontal, vertical: uVertical },
         horizontal: outcome(Math.hypot(east, north), uHorizontal, tolerance.horizontal),

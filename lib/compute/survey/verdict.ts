@@ -164,7 +164,7 @@ function judgeProof(
   }
   if (!limits.checkRequired) return;
   for (const check of checks) {
-    if (check.inFit || !check.trusted) continue;
+    if (check.inFit || check.status !== 'trusted') continue;
     for (const axis of AXES) {
       if (independent(checks, axis)) continue;
       const { target } = check;
@@ -193,7 +193,7 @@ function judgeLeaveOneOut(fit: StationFit, axis: Axis, limit: number, lower: Low
 
 /** An agreed check on a trusted mark that took no part in the fit. */
 function independent(checks: readonly CheckDifference[], axis: Axis): boolean {
-  return checks.some((check) => !check.inFit && check.trusted && check[axis] === 'agreed');
+  return checks.some((check) => !check.inFit && check.status === 'trusted' && check[axis] === 'agreed');
 }
 
 function sizeOf({ difference }: CheckDifference, axis: Axis): number {

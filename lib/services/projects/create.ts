@@ -6,7 +6,7 @@ import type { VerbContext } from '@/lib/services/context';
 import { Lengths } from '@/lib/services/lengths';
 import { record } from '@/lib/services/record';
 import type { JsonOf } from '@/openapi/contract';
-import type { createProject } from '@/openapi/contracts/projects';
+import type * as contract from '@/openapi/contracts/projects';
 import { classRows, loadClasses } from './classes';
 import { presentProject } from './present';
 
@@ -16,9 +16,9 @@ const CONTROL_SIGMA = 0.003;
 const VALID_MINUTES = 720;
 
 /** Opens a project: its unit and frame stand for good. */
-export async function createProjectVerb(
+export async function createProject(
   context: VerbContext,
-  { body }: { body: JsonOf<typeof createProject> },
+  { body }: { body: JsonOf<typeof contract.createProject> },
 ) {
   const { tenant, caller, runtime } = context;
   if (body.frame.kind !== 'local') {

@@ -6,15 +6,15 @@ import type { VerbContext } from '@/lib/services/context';
 import { Lengths } from '@/lib/services/lengths';
 import { record } from '@/lib/services/record';
 import type { JsonOf } from '@/openapi/contract';
-import type { updateProject } from '@/openapi/contracts/projects';
+import type * as contract from '@/openapi/contracts/projects';
 import { classRows, loadClasses } from './classes';
 import { loadProject, type ProjectRow } from './load';
 import { presentProject } from './present';
 
 /** Changes what may change of a project; results that stand keep the settings they were computed with. */
-export async function updateProjectVerb(
+export async function updateProject(
   context: VerbContext,
-  { params, body }: { params: { projectId: string }; body: JsonOf<typeof updateProject> },
+  { params, body }: { params: { projectId: string }; body: JsonOf<typeof contract.updateProject> },
 ) {
   const { tenant, caller, runtime } = context;
   const { organizationId } = caller;

@@ -1,0 +1,240 @@
+import type * as z from 'zod';
+import { toArcseconds, toDegrees } from '@/lib/compute/units/convert';
+import type { Lengths } from '@/lib/services/lengths';
+import { asMoment } from '@/lib/services/moments';
+import type { Setup, SetupCheck, SetupStatus, SetupTarget } from '@/openapi/schemas/setup';
+import type { CheckRow, LoadedSetup, ReleaseRow, SetupRow } from './load';
+import type { KeptMark, SetupResult } from './result';
+import { RELEASE_CAUTIONS, radioOfSetup, wordsOfNote, wordsOfReason } from './words';
+
+/** The state of a setup now: expiry is derived, never stored. */
+export function statusOf(
+  setup: Pick<SetupRow, 'state' | 'validUntil'>,
+  now: Date,
+): z.output<typeof SetupStatus> {
+  const expired =
+    setup.state === 'released' && setup.validUntil !== null && new Date(setup.validUntil) <= now;
+  return expired ? 'expired' : setup.state;
+}
+
+export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z.output<typeof Setup> {
+  const { setup, result: row, checks, release } = loaded;
+  const { result } = row;
+  const { station } = result;
+  const status = statusOf(setup, now);
+  const deviation = (i: number) => Math.sqrt(station.covariance[i * 6]);
+  const hasHeight = result.heightDetermined;
+  const presentedChecks = checks
+    .filter((check) => check.resultVersion <= row.version)
+    .map((check) => presentCheck(check, length));
+  return {
+    id: setup.id,
+    clientId: setup.clientId,
+    station: setup.station,
+    method: setup.method,
+    instrument: setup.instrumentName,
+    toleranceClass: setup.toleranceClass,
+    observedAt: asMoment(setup.observedAt),
+    status,
+    verdict: result.verdict,
+    verdicts: result.verdicts,
+    reasons: result.reasons.map((reason) => wordsOfReason(reason, length)),
+    notes: result.notes.map((note) => wordsOfNote(note, length)),
+    radio: radioOfSetup(setup.station, result.verdict, result.reasons, setup.toleranceClass, status, length),
+    cautions: [...RELEASE_CAUTIONS],
+    units: { length: length.unit, angle: 'deg' },
+    position: {
+      easting: length.out(station.easting),
+      northing: length.out(station.northing),
+      elevation:
+        hasHeight && setup.instrumentHeight !== null
+          ? length.out(station.axis - setup.instrumentHeight)
+          : null,
+    },
+    instrumentElevation: hasHeight ? length.out(station.axis) : null,
+    instrumentHeight: length.outOrNull(setup.instrumentHeight),
+    orientation: toDegrees(station.orientation),
+    standardDeviations: {
+      easting: length.out(deviation(0)),
+      northing: length.out(deviation(1)),
+      elevation: hasHeight ? length.out(deviation(2)) : null,
+      orientationArcsec: toArcseconds(deviation(3)),
+    },
+    errorEllipse: {
+      semiMajor: length.out(result.ellipse95.semiMajor),
+      semiMinor: length.out(result.ellipse95.semiMinor),
+      azimuth: toDegrees(result.ellipse95.azimuth),
+      confidence: 0.95,
+    },
+    accuracyAtWork: {
+      radius: length.out(result.limits.work.radius),
+      horizontal: length.out(result.work.horizontal),
+      vertical: hasHeight ? length.out(result.work.vertical) : null,
+      confidence: 0.95,
+      limits: {
+        horizontal: length.out(result.limits.work.horizontal),
+        vertical: length.out(result.limits.work.vertical),
+      },
+    },
+    fit: {
+      sigma0: result.test.sigma0,
+      degreesOfFreedom: result.test.degreesOfFreedom,
+      chiSquare: {
+        value: result.test.value,
+        lower: result.test.lower,
+        upper: result.test.upper,
+        passed: result.test.passed,
+      },
+      scaled: result.scale !== 1,
+      converged: result.converged,
+      iterations: result.iterations,
+    },
+    geometry: {
+      targets: result.marks.filter((mark) => mark.horizontal).length,
+      spreadDegrees: toDegrees(result.geometry.spread),
+      insideControl: result.geometry.inside,
+      weakestWithout: weakest(result, length),
+    },
+    faceErrors: result.faceErrors && {
+      twoCollimationArcsec: toArcseconds(result.faceErrors.twoCollimation),
+      verticalIndexArcsec: toArcseconds(result.faceErrors.verticalIndex),
+    },
+    targets: [
+      ...result.marks.map((mark) => presentMark(mark, length)),
+      ...result.leftOut.map(presentLeftOut),
+      ...presentedChecks.filter((check) => check.clientId === null).flatMap(targetsOfCheck),
+    ],
+    checks: presentedChecks,
+    explanations: [],
+    identification: null,
+    release: release && presentRelease(release, length),
+    supersedes: setup.supersedesId,
+    supersededBy: setup.supersededById,
+    excluded: setup.excluded,
+    submittedBy: setup.submittedBy,
+    provenance: {
+      method: row.method,
+      version: row.methodVersion,
+      resultVersion: row.version,
+      uploadId: setup.uploadId,
+      instrument: { name: setup.instrumentName, calibration: setup.calibrationVersion },
+      control: [...result.marks, ...result.leftOut].map(({ name, version }) => ({ name, version })),
+      computedAt: asMoment(row.computedAt),
+    },
+  };
+}
+
+function weakest({ marks }: SetupResult, length: Lengths) {
+  let worst: { target: string; shift: number } | null = null;
+  for (const { name, without } of marks) {
+    if (without && without.horizontal > (worst?.shift ?? -1))
+      worst = { target: name, shift: without.horizontal };
+  }
+  return worst && { target: worst.target, shift: length.out(worst.shift) };
+}
+
+function presentMark(mark: KeptMark, length: Lengths): z.output<typeof SetupTarget> {
+  return {
+    target: mark.name,
+    used: true,
+    purpose: 'orient',
+    status: mark.status,
+    residual: {
+      easting: length.outOrNull(mark.residual.easting),
+      northing: length.outOrNull(mark.residual.northing),
+      elevation: length.outOrNull(mark.residual.elevation),
+    },
+    without: mark.without && {
+      horizontal: length.out(mark.without.horizontal),
+      vertical: length.outOrNull(mark.without.vertical),
+    },
+    observations: mark.readings.map(
+      ({ kind, set, faces, residual, standardised, redundancy, minimalDetectable }) => {
+        const out = kind === 'distance' ? (value: number) => length.out(value) : toArcseconds;
+        return {
+          kind,
+          set,
+          faces,
+          residual: out(residual),
+          unit: kind === 'distance' ? length.unit : ('arcsec' as const),
+          standardised,
+          redundancy,
+          minimalDetectable: minimalDetectable === null ? null : out(minimalDetectable),
+        };
+      },
+    ),
+  };
+}
+
+function presentLeftOut({ name }: { name: string }): z.output<typeof SetupTarget> {
+  return {
+    target: name,
+    used: false,
+    purpose: 'orient',
+    status: 'quarantined',
+    residual: { easting: null, northing: null, elevation: null },
+    without: null,
+    observations: [],
+  };
+}
+
+/** Check shots of the setup's own upload stand among its targets too, unused. */
+function targetsOfCheck({ purpose, targets }: z.output<typeof SetupCheck>): z.output<typeof SetupTarget>[] {
+  return targets.map(({ target, status, difference }) => ({
+    target,
+    used: false,
+    purpose,
+    status,
+    residual: difference,
+    without: null,
+    observations: [],
+  }));
+}
+
+export function presentCheck(row: CheckRow, length: Lengths): z.output<typeof SetupCheck> {
+  const { result } = row;
+  return {
+    id: row.id,
+    clientId: row.clientId,
+    setupId: row.setupId,
+    purpose: row.purpose,
+    observedAt: asMoment(row.observedAt),
+    agreed: row.agreed,
+    targets: result.targets.map((t) => ({
+      target: t.target,
+      role: t.inFit ? ('drift' as const) : ('independent' as const),
+      status: t.status,
+      difference: {
+        easting: length.out(t.difference.easting),
+        northing: length.out(t.difference.northing),
+        elevation: length.outOrNull(t.difference.elevation),
+      },
+      uncertainty: {
+        horizontal: length.out(t.uncertainty.horizontal),
+        vertical: length.outOrNull(t.uncertainty.vertical),
+      },
+      tolerance: {
+        horizontal: length.out(result.tolerance.horizontal),
+        vertical: length.out(result.tolerance.vertical),
+      },
+      horizontal: t.horizontal,
+      vertical: t.vertical,
+    })),
+    setupVerdict: result.verdict,
+    units: { length: length.unit },
+  };
+}
+
+function presentRelease(release: ReleaseRow, length: Lengths) {
+  return {
+    machine: release.machine,
+    layer: release.layerName,
+    layerVersion: release.layerVersion,
+    surfaceSha256: release.surfaceSha256?.toString('hex') ?? null,
+    offset: length.outOrNull(release.offset),
+    note: release.note,
+    releasedAt: asMoment(release.effectiveAt),
+    releasedBy: release.actorName,
+    validUntil: asMoment(release.validUntil!),
+  };
+}

@@ -1,0 +1,203 @@
+import type { Axis, SetupReason, Verdict } from '@/lib/compute/survey/verdict';
+import type { Lengths } from '@/lib/services/lengths';
+import type { SetupNote } from './result';
+
+/** A finding in plain words, with what to do next. */
+export interface Words {
+  code: string;
+  text: string;
+  action?: string;
+}
+
+const PLACE: Record<Axis, string> = { horizontal: 'in plan', vertical: 'in height' };
+const KIND = { direction: 'direction', zenith: 'zenith angle', distance: 'distance' } as const;
+
+function axes(list: readonly Axis[]): string {
+  return list.map((axis) => PLACE[axis]).join(' and ');
+}
+
+/** One decimal more than the unit usually shows: residuals are small. */
+function fine(length: Lengths, metres: number): string {
+  return length.text(metres, length.unit === 'm' ? 4 : 3);
+}
+
+/** Why the verdict is what it is. */
+export function wordsOfReason(reason: SetupReason, length: Lengths): Words {
+  const { code } = reason;
+  switch (code) {
+    case 'not_converged':
+      return {
+        code,
+        text: 'The adjustment did not converge: the shots contradict each other or a target is misnamed.',
+        action: 'Check the target names, then shoot again.',
+      };
+    case 'observation_outlier':
+      return {
+        code,
+        text: `The ${KIND[reason.kind]} to ${reason.target} does not fit the others: w = ${reason.value.toFixed(1)}, limit ${reason.limit}.`,
+        action: `Shoot ${reason.target} again, or refit without it.`,
+      };
+    case 'target_residual_over':
+      return {
+        code,
+        text: `${reason.target} disagrees by ${fine(length, reason.value)} ${PLACE[reason.axis]}, ${fine(length, reason.limit)} allowed.`,
+        action: `Shoot ${reason.target} again, or refit without it.`,
+      };
+    case 'check_over':
+      return {
+        code,
+        text: `The check on ${reason.target} is off by ${fine(length, reason.value)} ${PLACE[reason.axis]}, ${fine(length, reason.limit)} allowed.`,
+        action: reason.inFit
+          ? 'The instrument or the mark has moved: withdraw the setup and set up anew.'
+          : `Check ${reason.target} from another mark before anybody works from this setup.`,
+      };
+    case 'too_few_marks':
+      return {
+        code,
+        text: `${reason.count === 0 ? 'No trusted mark stands' : reason.count === 1 ? 'Only one trusted mark stands' : `Only ${reason.count} trusted marks stand`} in the fit ${PLACE[reason.axis]}; ${reason.limit} are the least.`,
+        action: 'Shoot another trusted mark. Repeats and second faces do not count.',
+      };
+    case 'single_mark_dominates':
+      return {
+        code,
+        text: `Without ${reason.target} the station moves ${fine(length, reason.value)} ${PLACE[reason.axis]}, more than the ${fine(length, reason.limit)} allowed: the setup hangs on that mark.`,
+        action: 'Shoot another mark, on a side where none is yet.',
+      };
+    case 'single_mark_needed':
+      return {
+        code,
+        text: `Without ${reason.target} the other marks do not determine the station ${PLACE[reason.axis]}: nothing checks that mark.`,
+        action: 'Shoot another mark.',
+      };
+    case 'spread_too_large':
+      return {
+        code,
+        text: `The shots scatter more than the stated accuracies allow: σ₀ = ${reason.value.toFixed(2)} of ${reason.limit}, outside the 95 % limit.`,
+        action: 'Look at the largest residual; check the instrument’s and the control’s stated accuracy.',
+      };
+    case 'accuracy_short':
+      return {
+        code,
+        text: `At ${length.text(reason.radius, 0)} a point is good to ${fine(length, reason.value)} ${PLACE[reason.axis]} at 95 %; the work asks for ${fine(length, reason.limit)}.`,
+        action: 'Add marks or sets, stand nearer, or use the setup for coarser work.',
+      };
+    case 'check_disagrees':
+      return {
+        code,
+        text: `The check on ${reason.target} differs by ${fine(length, reason.value)} ${PLACE[reason.axis]}, more than the ${fine(length, reason.limit)} that uncertainty explains.`,
+        action: 'Shoot it again in both faces, or check on another mark.',
+      };
+    case 'check_not_capable':
+      return {
+        code,
+        text: `The check on ${reason.target} could not tell: its uncertainty of ${fine(length, reason.value)} ${PLACE[reason.axis]} is beyond the tolerance of ${fine(length, reason.limit)}.`,
+        action: 'Check in both faces on a mark of better accuracy.',
+      };
+    case 'check_wanted':
+      return {
+        code,
+        text: `The fit is good; an independent check ${axes(reason.axes)} is still wanted: no mark outside the fit was shot.`,
+        action:
+          'Shoot a mark that took no part in the fit, a benchmark for the height, and post it as a setup check.',
+      };
+    case 'within_limits':
+      return {
+        code,
+        text: `${reason.marks} marks agree. At ${length.text(reason.radius, 0)} a point is good to ${fine(length, reason.horizontal)} in plan and ${fine(length, reason.vertical)} in height at 95 %.`,
+      };
+    case 'not_checked': {
+      const parts = [];
+      if (reason.independent.length > 0) parts.push(`a mark outside the fit ${axes(reason.independent)}`);
+      if (reason.singleFace) parts.push('collimation and index, with one face only');
+      return { code, text: `Not checked: ${parts.join('; ')}.` };
+    }
+  }
+}
+
+/** What is worth knowing, though no verdict hangs on it. */
+export function wordsOfNote(note: SetupNote, length: Lengths): Words {
+  const { code } = note;
+  switch (code) {
+    case 'atmosphere_unknown':
+      return {
+        code,
+        text: `No atmosphere was given: the applied ppm stands and all distances share an uncertainty of ${note.ppm} ppm.`,
+        action: 'Send temperature and station pressure with the setup.',
+      };
+    case 'accuracy_default':
+      return {
+        code,
+        text: 'The instrument states no accuracy: 5″, 5″, 2 mm + 2 ppm were taken (common practice).',
+      };
+    case 'control_sigma_default':
+      return {
+        code,
+        text: `${note.targets.join(', ')}: no accuracy stated; the project’s ${fine(length, note.horizontal)} in plan and ${fine(length, note.vertical)} in height were taken.`,
+      };
+    case 'mark_suspect':
+      return { code, text: `${note.target} is suspect: it takes part, but counts for no verdict.` };
+    case 'mark_quarantined':
+      return { code, text: `${note.target} is quarantined: its shots are kept and took no part.` };
+    case 'spread_small':
+      return {
+        code,
+        text: `The shots scatter less than stated (σ₀ = ${note.value.toFixed(2)}): the accuracies may be stated too wide.`,
+      };
+    case 'spread_scaled':
+      return { code, text: `All standard deviations were multiplied by σ₀ = ${note.value.toFixed(2)}.` };
+    case 'outside_control':
+      return {
+        code,
+        text: 'The station stands outside the figure of its marks: errors grow away from them.',
+      };
+    case 'compensator_off':
+      return {
+        code,
+        text: `${note.shots === 1 ? 'One shot was' : `${note.shots} shots were`} read with the compensator off.`,
+      };
+    case 'height_undetermined':
+      return {
+        code,
+        text: 'No mark with an elevation was seen with a zenith angle: the setup has no height.',
+      };
+    case 'check_not_telling':
+      return { code, text: `The check on ${note.target} neither confirms nor contradicts the setup.` };
+  }
+}
+
+/** One line to read out on the radio; it begins with the act. */
+export function radioOfSetup(
+  station: string,
+  verdict: Verdict,
+  reasons: readonly SetupReason[],
+  className: string,
+  status: string,
+  length: Lengths,
+): string {
+  if (status === 'withdrawn') return `Stop. ${station} is withdrawn. Do not work from it.`;
+  if (status === 'superseded') return `Stop. ${station} is superseded. Use the refit.`;
+  if (status === 'expired') return `Stop. ${station} has run out. Check it and release it again.`;
+  const [first] = reasons;
+  switch (verdict) {
+    case 'pass': {
+      const good = reasons.find((reason) => reason.code === 'within_limits');
+      const figure = good
+        ? `, ${length.text(good.horizontal)} in plan and ${length.text(good.vertical)} in height at ${length.text(good.radius, 0)}`
+        : '';
+      return `Go. ${station} is good for ${className}${figure}. Bench the blade before cutting.`;
+    }
+    case 'hold':
+      return `Wait. ${station} is not proven yet. ${wordsOfReason(first, length).action ?? ''}`.trim();
+    case 'fail':
+      return `Stop. ${station} is not to be used. ${wordsOfReason(first, length).action ?? ''}`.trim();
+  }
+}
+
+/** Stands beside everything that lets a machine move. */
+export const RELEASE_CAUTIONS: readonly string[] = [
+  'Before any blade moves: people clear, utilities located and marked, benchmark checked by the machine itself.',
+  'Site rules, local codes and the judgement of a licensed surveyor come before this record; it supports them and replaces none.',
+];
+
+export const WITHDRAWAL_CAUTION =
+  'This stops no machine. Radio every machine named here, now, and have each crew answer.';

@@ -1,0 +1,176 @@
+import { tenantTransaction } from '@/db/tenant';
+import { sha256 } from '@/lib/access/secrets';
+import type { Surface } from '@/lib/compute/grade/surface';
+import type { RawBody } from '@/lib/formats/body';
+import { invalidItems, Problem } from '@/lib/problem';
+import { answerOnce } from '@/lib/services/answerOnce';
+import type { CallerContext, VerbContext } from '@/lib/services/context';
+import { Lengths, otherFoot } from '@/lib/services/lengths';
+import { openSurface } from '@/lib/services/surfaces/open';
+import type { ParamsOf, QueryOf } from '@/openapi/contract';
+import type * as contract from '@/openapi/contracts/uploads';
+import { problemItem } from '@/openapi/problemItem';
+import { UPLOAD_KINDS } from '@/openapi/schemas/upload';
+import { draftBenchChecks } from './benchChecks';
+import { type Document, needsOf, type ReadDocument, readDocument } from './document';
+import { type Draft, pointerOf } from './draft';
+import { draftGradeShots } from './gradeShots';
+import { keepRefused, rawAndUpload } from './keep';
+import { loadReceipt, presentReceipt } from './receipt';
+import { draftSetupChecks } from './setupChecks';
+import { draftSetups } from './setups';
+import { loadSite, type Site } from './site';
+import { writeUpload } from './write';
+
+type Create = typeof contract.createUpload;
+
+/**
+ * Receives observations: the bytes are kept with their results in one transaction or, where nothing of them can be
+ * accepted, as refused in a second one.
+ */
+export async function createUpload(
+  context: CallerContext,
+  input: { params: ParamsOf<Create>; query: QueryOf<Create>; raw: RawBody },
+): Promise<{ status: number; text: string; replayed: boolean }> {
+  const { organizationId } = context.caller;
+  const { projectId } = input.params;
+  let clientId: string | null = null;
+  try {
+    const read = await readDocument(input.raw);
+    clientId = read.value?.clientId ?? null;
+    return await tenantTransaction(organizationId, (tenant) => {
+      const inside = { ...context, tenant };
+      return answerOnce(inside, 'createUpload', async () => {
+        const { status, receipt } = await process(inside, input, read);
+        return { status, text: JSON.stringify(receipt) };
+      });
+    });
+  } catch (error) {
+    if (error instanceof Problem && isKept(error))
+      await keepRefused(context, projectId, input.raw, clientId, error);
+    throw error;
+  }
+}
+
+/** Nothing is kept for a project that is not there, nor twice of a request that is being answered already. */
+function isKept({ code }: Problem): boolean {
+  return (
+    code !== 'not_found' &&
+    code !== 'request_in_progress' &&
+    code !== 'body_too_large' &&
+    code !== 'body_required'
+  );
+}
+
+async function process(
+  context: VerbContext,
+  { params, query, raw }: { params: ParamsOf<Create>; query: QueryOf<Create>; raw: RawBody },
+  read: ReadDocument,
+) {
+  const { tenant, caller, runtime } = context;
+  const { organizationId } = caller;
+  const document = read.value;
+  if (document === null) throw refusal(read);
+  const site = await loadSite(tenant, organizationId, params.projectId, needsOf(document));
+  if (!site) throw new Problem('not_found', 'There is no such project.');
+  const length = new Lengths(query.length ?? site.project.lengthUnit);
+  if (site.before) {
+    if (site.before.sha256 !== sha256(raw.bytes).toString('hex')) throw new Problem('upload_conflict');
+    return { status: 200, receipt: await loadReceipt(tenant, site.project, site.before.id, length) };
+  }
+  const foot = otherFoot(
+    site.project.lengthUnit,
+    document.units.length,
+    document.confirmUnits,
+    '/units/length',
+  );
+  if (foot) throw invalidItems([foot]);
+
+  const draft = newDraft(runtime.uuid(), document, read, site);
+  draftSetups(draft, context);
+  draftSetupChecks(draft, context);
+  draftGradeShots(draft, context, await openLayers(context, site, document));
+  draftBenchChecks(draft, context);
+  refuseUncomputed(draft);
+  const { setups, checks, gradeRows, benchRows, refused } = draft;
+  const accepted = setups.length + checks.length + gradeRows.length + benchRows.length;
+  if (accepted === 0) {
+    const empty = problemItem('', 'required', 'The document holds no item.');
+    throw new Problem('nothing_accepted', undefined, { errors: refused.length > 0 ? refused : [empty] });
+  }
+  const kept = rawAndUpload(context, params.projectId, raw, {
+    uploadId: draft.uploadId,
+    clientId: document.clientId,
+    status: 'processed',
+    accepted,
+    refusals: refused,
+  });
+  writeUpload(tenant, context, draft, kept);
+  const parts = {
+    upload: kept.uploadRow,
+    raw: kept.facts,
+    refused,
+    setups,
+    checks,
+    grade: gradeRows,
+    bench: benchRows,
+  };
+  const layerOf = (row: { layerName: string }) => site.layers.get(row.layerName)!;
+  return { status: 201, receipt: presentReceipt(parts, layerOf, length, site.project.displayDecimals) };
+}
+
+/** A document of which nothing is left: each item was bad, or something beside the items. */
+function refusal({ problems }: ReadDocument): Problem {
+  const itemsAlone = problems.every(({ pointer }) =>
+    UPLOAD_KINDS.some((kind) => pointer.startsWith(`/${kind}/`)),
+  );
+  return itemsAlone
+    ? new Problem('nothing_accepted', undefined, { errors: problems })
+    : invalidItems(problems);
+}
+
+function newDraft(
+  uploadId: string,
+  document: Document,
+  { places, problems }: ReadDocument,
+  site: Site,
+): Draft {
+  return {
+    uploadId,
+    document,
+    places,
+    site,
+    refused: [...problems],
+    setups: [],
+    checks: [],
+    gradeRows: [],
+    benchRows: [],
+    rows: {
+      setups: [],
+      setupResults: [],
+      observations: [],
+      setupChecks: [],
+      gradeChecks: [],
+      benchChecks: [],
+    },
+    rejudged: new Map(),
+    happenings: [],
+  };
+}
+
+async function openLayers({ tenant, caller }: VerbContext, site: Site, document: Document) {
+  const surfaces = new Map<string, Surface>();
+  if (document.gradeShots.length === 0) return surfaces;
+  for (const { surfaceSha256 } of site.layers.values()) {
+    surfaces.set(surfaceSha256, await openSurface(tenant, caller.organizationId, surfaceSha256));
+  }
+  return surfaces;
+}
+
+function refuseUncomputed(draft: Draft): void {
+  for (const kind of ['roverPoints', 'levelRuns'] as const) {
+    draft.document[kind].forEach((_, index) => {
+      draft.refused.push(problemItem(pointerOf(draft, kind, index), 'kind_not_supported'));
+    });
+  }
+}

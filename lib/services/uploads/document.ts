@@ -1,0 +1,65 @@
+import type * as z from 'zod';
+import { BodyError, bodyText, type RawBody } from '@/lib/formats/body';
+import { type Itemwise, parseItemwise } from '@/lib/formats/itemwise';
+import { JsonError, parseStrictJson } from '@/lib/formats/strictJson';
+import { Problem } from '@/lib/problem';
+import { UPLOAD_LIMIT } from '@/openapi/contracts/uploads';
+import { UPLOAD_KINDS, UploadDocument } from '@/openapi/schemas/upload';
+import type { Needs } from './site';
+
+export type Document = z.output<typeof UploadDocument>;
+export type ReadDocument = Itemwise<Document>;
+
+/** @throws Problem where the body cannot be read at all */
+export async function readDocument(raw: RawBody): Promise<ReadDocument> {
+  if (raw.bytes.byteLength === 0) throw new Problem('body_required');
+  try {
+    const text = await bodyText(raw, UPLOAD_LIMIT);
+    if (raw.mediaType !== 'application/json') {
+      const declared = raw.mediaType === '' ? 'nothing' : raw.mediaType.slice(0, 80);
+      throw new BodyError(
+        'media_type_unsupported',
+        `Uploads are application/json; declared was ${declared}.`,
+      );
+    }
+    const { value, flaws } = parseStrictJson(text);
+    return parseItemwise(UploadDocument, UPLOAD_KINDS, value, flaws);
+  } catch (error) {
+    if (error instanceof BodyError || error instanceof JsonError)
+      throw new Problem(error.code, error.message);
+    throw error;
+  }
+}
+
+/** The names in a document. */
+export function needsOf(document: Document): Needs {
+  const needs: Needs = {
+    clientId: document.clientId,
+    control: new Set(),
+    instruments: new Set(),
+    layers: new Set(),
+    setups: new Set(),
+    setupClientIds: document.setups.map((item) => item.clientId),
+    checkClientIds: document.setupChecks.map((item) => item.clientId),
+    gradeClientIds: document.gradeShots.map((item) => item.clientId),
+    benchClientIds: document.benchChecks.map((item) => item.clientId),
+  };
+  for (const setup of document.setups) {
+    needs.instruments.add(setup.instrument);
+    for (const { target } of setup.shots) if (target !== null) needs.control.add(target);
+  }
+  for (const check of document.setupChecks) {
+    needs.setups.add(check.setup);
+    for (const { target } of check.shots) if (target !== null) needs.control.add(target);
+  }
+  for (const shot of document.gradeShots) {
+    needs.layers.add(shot.layer);
+    if (shot.setup !== undefined) needs.setups.add(shot.setup);
+  }
+  for (const bench of document.benchChecks) {
+    needs.control.add(bench.benchmark);
+    if (bench.layer !== undefined) needs.layers.add(bench.layer);
+    if (bench.setup !== undefined) needs.setups.add(bench.setup);
+  }
+  return needs;
+}

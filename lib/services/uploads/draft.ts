@@ -1,0 +1,49 @@
+import type { InferInsertModel } from 'drizzle-orm';
+import type { benchChecks, gradeChecks, observations, setupChecks, setupResults, setups } from '@/db/schema';
+import type { Happening } from '@/lib/services/record';
+import type { CheckRow, LoadedSetup, SetupRow } from '@/lib/services/setups/load';
+import type { ProblemItem } from '@/openapi/schemas/problem';
+import type { Document } from './document';
+import type { BenchRow, Site, SiteSetup } from './site';
+
+type GradeRow = Required<InferInsertModel<typeof gradeChecks>>;
+
+/** What an upload will write, item after item; what a setup becomes is seen by the items behind it. */
+export interface Draft {
+  uploadId: string;
+  document: Document;
+  /** Where each accepted item stood in what was sent. */
+  places: Record<string, number[]>;
+  site: Site;
+  refused: ProblemItem[];
+  setups: LoadedSetup[];
+  checks: CheckRow[];
+  gradeRows: GradeRow[];
+  benchRows: BenchRow[];
+  rows: {
+    setups: InferInsertModel<typeof setups>[];
+    setupResults: InferInsertModel<typeof setupResults>[];
+    observations: InferInsertModel<typeof observations>[];
+    setupChecks: InferInsertModel<typeof setupChecks>[];
+    gradeChecks: InferInsertModel<typeof gradeChecks>[];
+    benchChecks: InferInsertModel<typeof benchChecks>[];
+  };
+  /** Setups that stood before and have a new result. */
+  rejudged: Map<string, SetupRow>;
+  happenings: Happening[];
+}
+
+/** Where item `index` of an array stood in what was sent. */
+export function pointerOf(draft: Draft, kind: string, index: number): string {
+  return `/${kind}/${draft.places[kind]?.[index] ?? index}`;
+}
+
+/** A setup by clientId or id: one of this upload, or one that stood before, in its newest state. */
+export function findSetup(draft: Draft, ref: string): SiteSetup | null {
+  const made = draft.setups.find(({ setup }) => setup.clientId === ref || setup.id === ref);
+  if (made) {
+    const shotIds = draft.rows.observations.filter((o) => o.setupId === made.setup.id).map((o) => o.clientId);
+    return { setup: made.setup, result: made.result.result, checks: made.checks, releases: [], shotIds };
+  }
+  return draft.site.setups.find(({ setup }) => setup.clientId === ref || setup.id === ref) ?? null;
+}

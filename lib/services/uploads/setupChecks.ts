@@ -1,0 +1,105 @@
+import type { CallerContext } from '@/lib/services/context';
+import { utcInstant } from '@/lib/services/moments';
+import { isAgreed, judgeWithCheck } from '@/lib/services/setups/compute';
+import type { CheckRow } from '@/lib/services/setups/load';
+import { METHOD, METHOD_VERSION } from '@/lib/services/setups/result';
+import { problemItem } from '@/openapi/problemItem';
+import type { ProblemItem } from '@/openapi/schemas/problem';
+import type { Document } from './document';
+import { type Draft, findSetup, pointerOf } from './draft';
+import {
+  asEngineShot,
+  incompleteChecks,
+  type NormalShot,
+  normaliseShots,
+  observationRow,
+} from './shotsOfSetup';
+
+type CheckItem = Document['setupChecks'][number];
+
+/** Judges setups again with the check shots that came later. */
+export function draftSetupChecks(draft: Draft, context: CallerContext): void {
+  draft.document.setupChecks.forEach((item, index) => {
+    draft.refused.push(...draftCheck(draft, context, item, pointerOf(draft, 'setupChecks', index)));
+  });
+}
+
+function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, pointer: string): ProblemItem[] {
+  const { site, document, rows } = draft;
+  const { caller, runtime } = context;
+  if (site.taken.checks.has(item.clientId)) {
+    return [
+      problemItem(
+        `${pointer}/clientId`,
+        'client_id_taken',
+        `A setup check ${item.clientId} was accepted before.`,
+      ),
+    ];
+  }
+  const found = findSetup(draft, item.setup);
+  if (!found)
+    return [
+      problemItem(`${pointer}/setup`, 'setup_unknown', `There is no setup ${item.setup} in this project.`),
+    ];
+  const { setup, result, checks } = found;
+  const ids = new Set(found.shotIds);
+  const { shots, problems } = normaliseShots(item.shots, document.units, site, pointer, ids);
+  const at = (shot: NormalShot) =>
+    `${pointer}/shots/${item.shots.findIndex((s) => s.clientId === shot.sent.clientId)}`;
+  problems.push(...incompleteChecks(shots, at));
+  if (problems.length > 0) return problems;
+
+  const earlier = checks.flatMap((check) => check.result.targets);
+  const judged = judgeWithCheck(result, shots.map(asEngineShot), site.control, earlier);
+  const resultVersion = setup.resultVersion + 1;
+  const check: CheckRow = {
+    organizationId: caller.organizationId,
+    id: runtime.uuid(),
+    projectId: site.project.id,
+    setupId: setup.id,
+    uploadId: draft.uploadId,
+    clientId: item.clientId,
+    purpose: item.purpose,
+    agreed: isAgreed(judged.check.targets),
+    result: judged.check,
+    observedAt: item.observedAt === undefined ? runtime.now().toISOString() : utcInstant(item.observedAt),
+    resultVersion,
+  };
+  rows.setupChecks.push(check);
+  draft.checks.push(check);
+  checks.push(check);
+  const resultRow = {
+    organizationId: caller.organizationId,
+    setupId: setup.id,
+    version: resultVersion,
+    method: METHOD,
+    methodVersion: METHOD_VERSION,
+    result: judged.result,
+    computedAt: runtime.now().toISOString(),
+  };
+  rows.setupResults.push(resultRow);
+  const { organizationId, projectId, id: checkId } = check;
+  shots.forEach((shot, seq) => {
+    rows.observations.push(
+      observationRow(shot, seq, { organizationId, projectId, setupId: setup.rootId, checkId }),
+    );
+  });
+  // What follows in this upload sees the setup as it is now.
+  setup.resultVersion = resultVersion;
+  setup.verdict = judged.result.verdict;
+  const made = draft.setups.find((loaded) => loaded.setup.id === setup.id);
+  if (made) made.result = resultRow;
+  else {
+    found.result = judged.result;
+    found.shotIds.push(...shots.map(({ sent }) => sent.clientId));
+    draft.rejudged.set(setup.id, setup);
+  }
+  site.taken.checks.add(item.clientId);
+  draft.happenings.push({
+    type: 'setup.checked',
+    subject: setup.id,
+    projectId,
+    data: { station: setup.station, agreed: check.agreed, verdict: judged.result.verdict },
+  });
+  return [];
+}

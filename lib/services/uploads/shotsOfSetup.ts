@@ -1,0 +1,113 @@
+import type { InferInsertModel } from 'drizzle-orm';
+import type { observations } from '@/db/schema';
+import type { Shot as EngineShot } from '@/lib/compute/survey/shots';
+import { utcInstant } from '@/lib/services/moments';
+import { normaliseShot, type Readings } from '@/lib/services/shots/normalise';
+import type { Units } from '@/lib/services/shots/units';
+import { problemItem } from '@/openapi/problemItem';
+import type { ProblemItem } from '@/openapi/schemas/problem';
+import type { Shot } from '@/openapi/schemas/shot';
+import type { Site } from './site';
+
+export interface NormalShot {
+  sent: Shot & { target: string };
+  readings: Readings;
+}
+
+/**
+ * The shots of a setup or of a check in SI units, all targets known, or everything that is wrong with them: one bad
+ * shot refuses the whole.
+ *
+ * @param taken client ids of shots that the setup has already
+ */
+export function normaliseShots(
+  shots: readonly Shot[],
+  units: Units,
+  site: Site,
+  pointer: string,
+  taken: ReadonlySet<string> = new Set(),
+): { shots: NormalShot[]; problems: ProblemItem[] } {
+  const normal: NormalShot[] = [];
+  const problems: ProblemItem[] = [];
+  const ids = new Set(taken);
+  shots.forEach((shot, i) => {
+    const at = `${pointer}/shots/${i}`;
+    const { target, clientId } = shot;
+    if (ids.has(clientId)) {
+      problems.push(
+        problemItem(`${at}/clientId`, 'target_repeated', `The setup has a shot ${clientId} already.`),
+      );
+    }
+    ids.add(clientId);
+    if (target === null) problems.push(problemItem(`${at}/target`, 'target_required'));
+    else if (!site.control.has(target)) {
+      problems.push(
+        problemItem(`${at}/target`, 'target_unknown', `There is no control point ${target} in this project.`),
+      );
+    }
+    const readings = normaliseShot(shot, units, at);
+    if (Array.isArray(readings)) problems.push(...readings);
+    else if (target !== null) normal.push({ sent: { ...shot, target }, readings });
+  });
+  return { shots: normal, problems: once(problems) };
+}
+
+/** The same finding at the same place, such as a missing unit, is told once. */
+function once(problems: readonly ProblemItem[]): ProblemItem[] {
+  const seen = new Set<string>();
+  return problems.filter(({ pointer, code }) => {
+    const key = `${pointer} ${code}`;
+    return !seen.has(key) && seen.add(key);
+  });
+}
+
+export function asEngineShot({ sent, readings }: NormalShot): EngineShot {
+  return { id: sent.clientId, target: sent.target, purpose: sent.purpose, ...readings };
+}
+
+export function observationRow(
+  { sent, readings }: NormalShot,
+  seq: number,
+  of: { organizationId: string; projectId: string; setupId: string; checkId: string | null },
+): InferInsertModel<typeof observations> {
+  return {
+    ...of,
+    clientId: sent.clientId,
+    seq,
+    target: sent.target,
+    purpose: sent.purpose,
+    face: readings.face,
+    set: readings.set,
+    direction: readings.direction,
+    zenith: readings.zenith,
+    slopeDistance: readings.distance?.slopeDistance ?? null,
+    prismConstantMm: readings.distance?.prismConstantMm ?? null,
+    prismConstantAppliedMm: readings.distance?.prismConstantAppliedMm ?? null,
+    appliedPpm: readings.distance?.appliedPpm ?? null,
+    targetHeight: readings.targetHeight,
+    targetCentringSigma: readings.targetCentringSigma,
+    targetHeightSigma: readings.targetHeightSigma,
+    distanceMode: readings.distanceMode,
+    compensator: readings.compensator,
+    observedAt: sent.observedAt === undefined ? null : utcInstant(sent.observedAt),
+  };
+}
+
+/** A check needs direction, zenith angle and distance to each of its targets, in whatever faces. */
+export function incompleteChecks(
+  shots: readonly NormalShot[],
+  pointers: (shot: NormalShot) => string,
+): ProblemItem[] {
+  const byTarget = new Map<string, NormalShot[]>();
+  for (const shot of shots) {
+    byTarget.set(shot.sent.target, [...(byTarget.get(shot.sent.target) ?? []), shot]);
+  }
+  return [...byTarget.values()].flatMap((group) => {
+    const has = (pick: (readings: Readings) => unknown) =>
+      group.some(({ readings }) => pick(readings) !== null);
+    const complete = has((r) => r.direction) && has((r) => r.zenith) && has((r) => r.distance);
+    if (complete) return [];
+    const detail = `The check of ${group[0].sent.target} lacks a direction, a zenith angle or a distance.`;
+    return [problemItem(pointers(group[0]), 'reading_incomplete', detail)];
+  });
+}

@@ -1,0 +1,68 @@
+import { and, eq } from 'drizzle-orm';
+import { bulkInsert } from '@/db/bulk';
+import {
+  auditEntries,
+  benchChecks,
+  events,
+  gradeChecks,
+  observations,
+  rawBodies,
+  setupChecks,
+  setupResults,
+  setups,
+  uploadRefusals,
+  uploads,
+} from '@/db/schema';
+import type { Tenant } from '@/db/tenant';
+import type { CallerContext } from '@/lib/services/context';
+import { recordRows } from '@/lib/services/record';
+import type { Draft } from './draft';
+import { type rawAndUpload, refusalRows } from './keep';
+
+const insertAll = bulkInsert({
+  rawBodies,
+  uploads,
+  uploadRefusals,
+  setups,
+  setupResults,
+  observations,
+  setupChecks,
+  gradeChecks,
+  benchChecks,
+  events,
+  auditEntries,
+});
+
+/** Writes an upload and all that came of it by one statement; COMMIT follows it on the wire. */
+export function writeUpload(
+  tenant: Tenant,
+  context: CallerContext,
+  draft: Draft,
+  { rawRow, uploadRow }: ReturnType<typeof rawAndUpload>,
+): void {
+  const { organizationId, projectId, id } = uploadRow;
+  const received = {
+    type: 'upload.processed' as const,
+    subject: id,
+    projectId,
+    data: { clientId: uploadRow.clientId, accepted: uploadRow.accepted, refused: uploadRow.refused },
+  };
+  tenant.defer(
+    insertAll(tenant, {
+      rawBodies: [rawRow],
+      uploads: [uploadRow],
+      uploadRefusals: refusalRows(organizationId, id, draft.refused),
+      ...draft.rows,
+      ...recordRows(context, context.caller, [received, ...draft.happenings]),
+    }),
+  );
+  for (const { id: setupId, resultVersion, verdict } of draft.rejudged.values()) {
+    tenant.defer(
+      tenant.db
+        .update(setups)
+        .set({ resultVersion, verdict })
+        .where(and(eq(setups.organizationId, organizationId), eq(setups.id, setupId)))
+        .execute(),
+    );
+  }
+}
