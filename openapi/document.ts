@@ -1,11 +1,11 @@
 import { OpenAPIRegistry, OpenApiGeneratorV31, type ResponseConfig } from '@asteasolutions/zod-to-openapi';
+import { API_BASE } from './base';
 import type { Contract } from './contract';
 import { CONTRACTS } from './contracts';
 import { REQUEST_PROBLEMS, type RequestProblemCode } from './problemCodes';
 import { Problem } from './schemas/problem';
 import { SCOPES } from './scopes';
 
-export const API_BASE = '/api/v1';
 const VERSION = '1.0.0';
 
 const TAGS: Record<string, string> = {

@@ -23,7 +23,7 @@ export interface Entries {
 }
 
 /** The points of a JSON submission. */
-export function entriesOfJson(items: Itemwise<z.output<typeof ControlSubmission>>): Entries {
+function entriesOfJson(items: Itemwise<z.output<typeof ControlSubmission>>): Entries {
   const { value, places, problems } = items;
   if (value === null) {
     const pointsAlone = problems.every(({ pointer }) => /^\/points\/\d/.test(pointer));
@@ -54,7 +54,7 @@ const NEEDED = ['name', 'easting', 'northing'];
 const NUMBER = /^[+-]?(?:\d+\.?\d*|\.\d+)$/;
 
 /** The points of a CSV submission, a row each; empty cells count as absent. */
-export function entriesOfCsv(text: string, unit: LengthUnit | undefined, confirmUnits: boolean): Entries {
+function entriesOfCsv(text: string, unit: LengthUnit | undefined, confirmUnits: boolean): Entries {
   if (!unit) throw invalid('?length', 'units_required', 'A CSV body needs ?length=m, ft or ftUS.');
   const table = readTable(text, COLUMNS, NEEDED);
   const refused = [...table.problems];
@@ -99,4 +99,23 @@ function pointOfRow({ cells }: Table['rows'][number], pointer: string) {
     ...(cells.description ? { description: cells.description } : {}),
   };
   return { value, problems };
+}
+
+/** What a control submission brought, as items of JSON or as text. */
+type Submitted =
+  | { kind: 'items'; items: Itemwise<unknown> }
+  | { kind: 'text'; text: string }
+  | { kind: 'json' | 'none' };
+
+/** Reads the points of a submission when they are wanted: after the project is known. */
+export function entriesOf(
+  body: Submitted,
+  query: { length?: LengthUnit; confirmUnits?: 'true' | 'false' },
+): () => Entries {
+  return () => {
+    if (body.kind === 'text') return entriesOfCsv(body.text, query.length, query.confirmUnits === 'true');
+    if (body.kind === 'items')
+      return entriesOfJson(body.items as Itemwise<z.output<typeof ControlSubmission>>);
+    throw new Problem('body_required');
+  };
 }

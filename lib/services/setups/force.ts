@@ -1,4 +1,5 @@
 import type { SetupRow } from './load';
+import type { Words } from './words';
 
 /** Releases and withdrawals of a setup in their order. */
 export interface Turn {
@@ -10,6 +11,25 @@ export interface Turn {
 }
 
 export type ForceFault = 'setup_not_in_force' | 'setup_superseded' | 'setup_failed_since';
+
+/** What a setup that was not in force says of a check taken from it. */
+export const FORCE_WORDS: Record<ForceFault, Words> = {
+  setup_not_in_force: {
+    code: 'setup_not_in_force',
+    text: 'The setup was not in force then: not released, run out or withdrawn.',
+    action: 'Have the setup released, then shoot again.',
+  },
+  setup_superseded: {
+    code: 'setup_superseded',
+    text: 'The setup was refitted since.',
+    action: 'Name the refit, and shoot again.',
+  },
+  setup_failed_since: {
+    code: 'setup_failed_since',
+    text: 'A check has found the setup wrong.',
+    action: 'Set up anew, then shoot again.',
+  },
+};
 
 /**
  * Why a setup was not in force at an instant: released, unexpired and not withdrawn then, not superseded, and not

@@ -1,6 +1,7 @@
 import { benchReading } from '@/lib/compute/grade/benchCheck';
 import { toMetres } from '@/lib/compute/units/convert';
 import type { CallerContext } from '@/lib/services/context';
+import { isSameOffset } from '@/lib/services/layers/offset';
 import { utcInstant } from '@/lib/services/moments';
 import { forceFault } from '@/lib/services/setups/force';
 import { problemItem } from '@/openapi/problemItem';
@@ -10,9 +11,6 @@ import { type Draft, findSetup, pointerOf } from './draft';
 import type { BenchRow, SiteSetup } from './site';
 
 type BenchItem = Document['benchChecks'][number];
-
-/** Offsets closer than this are the same, m: what a conversion of units leaves over. */
-const SAME_OFFSET = 1e-6;
 
 export function draftBenchChecks(draft: Draft, context: CallerContext): void {
   draft.document.benchChecks.forEach((item, index) => {
@@ -73,7 +71,7 @@ function draftBench(draft: Draft, context: CallerContext, item: BenchItem, point
   const reading = benchReading(benchmark.elevation, elevations, tolerance);
   const holds = [
     ...unfit(benchmark.name, benchmark.status, setup, observedAt),
-    ...(layer && activeOffset !== null && Math.abs(activeOffset - layer.offset) > SAME_OFFSET
+    ...(layer && activeOffset !== null && !isSameOffset(activeOffset, layer.offset)
       ? ['offset_differs']
       : []),
     ...(layer && item.surfaceSha256 !== undefined && item.surfaceSha256 !== layer.surfaceSha256

@@ -1,26 +1,26 @@
-import { and, asc, eq, or, sql } from 'drizzle-orm';
+import { and, asc, eq, sql } from 'drizzle-orm';
 import type * as z from 'zod';
 import {
   benchChecks,
   gradeChecks,
-  layers,
   rawBodies,
   setupChecks,
   setups,
-  surfaces,
   uploadRefusals,
   uploads,
 } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
 import { Problem } from '@/lib/problem';
-import type { GradeRow } from '@/lib/services/grade/present';
-import { type LayerFacts, presentBenchCheck, presentGradeCheck } from '@/lib/services/grade/present';
+import { presentBenchCheck } from '@/lib/services/benchChecks/present';
+import { type GradeRow, presentGradeCheck } from '@/lib/services/gradeChecks/present';
+import { type LayerFacts, layerFacts } from '@/lib/services/layers/facts';
 import type { Lengths } from '@/lib/services/lengths';
 import type { ProjectRow } from '@/lib/services/projects/load';
 import { type CheckRow, completeSetups, type LoadedSetup } from '@/lib/services/setups/load';
 import { presentCheck, presentSetup } from '@/lib/services/setups/present';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 import type { Receipt } from '@/openapi/schemas/upload';
+import { RAW_FACTS } from './list';
 import { presentUpload, type RawFacts, type UploadRow } from './present';
 import type { BenchRow } from './site';
 
@@ -71,15 +71,7 @@ export async function loadReceipt(
   const [found] = await tenant.db
     .select({
       upload: uploads,
-      raw: {
-        organizationId: rawBodies.organizationId,
-        id: rawBodies.id,
-        sha256: rawBodies.sha256,
-        mediaType: rawBodies.mediaType,
-        contentEncoding: rawBodies.contentEncoding,
-        receivedAt: rawBodies.receivedAt,
-        size: sql<number>`octet_length(${rawBodies.bytes})`,
-      },
+      raw: RAW_FACTS,
     })
     .from(uploads)
     .innerJoin(
@@ -155,46 +147,4 @@ export async function loadReceipt(
     bench,
   };
   return presentReceipt(parts, layerOf, length, project.displayDecimals);
-}
-
-/** The layers of grade checks in the versions that they were checked against. */
-export async function layerFacts(
-  tenant: Tenant,
-  project: Pick<ProjectRow, 'organizationId' | 'id'>,
-  rows: readonly Pick<GradeRow, 'layerName' | 'layerVersion'>[],
-): Promise<(row: Pick<GradeRow, 'layerName' | 'layerVersion'>) => LayerFacts> {
-  const keys = new Map(rows.map((row) => [`${row.layerName}\n${row.layerVersion}`, row]));
-  if (keys.size === 0) {
-    return () => {
-      throw new Error('No layer was loaded.');
-    };
-  }
-  const found = await tenant.db
-    .select({
-      name: layers.name,
-      version: layers.version,
-      offset: layers.offset,
-      below: layers.below,
-      above: layers.above,
-      represents: surfaces.represents,
-      surfaceSha256: sql<string>`encode(${surfaces.sha256}, 'hex')`,
-    })
-    .from(layers)
-    .innerJoin(
-      surfaces,
-      and(eq(surfaces.organizationId, layers.organizationId), eq(surfaces.id, layers.surfaceId)),
-    )
-    .where(
-      and(
-        eq(layers.organizationId, project.organizationId),
-        eq(layers.projectId, project.id),
-        or(
-          ...[...keys.values()].map((row) =>
-            and(eq(layers.name, row.layerName), eq(layers.version, row.layerVersion)),
-          ),
-        ),
-      ),
-    );
-  const facts = new Map(found.map((layer) => [`${layer.name}\n${layer.version}`, layer]));
-  return (row) => facts.get(`${row.layerName}\n${row.layerVersion}`)!;
 }

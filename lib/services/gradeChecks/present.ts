@@ -1,24 +1,14 @@
 import type { InferSelectModel } from 'drizzle-orm';
 import type * as z from 'zod';
-import type { benchChecks, gradeChecks } from '@/db/schema';
+import type { gradeChecks } from '@/db/schema';
 import { gradeLabel } from '@/lib/compute/grade/label';
+import type { LayerFacts } from '@/lib/services/layers/facts';
 import type { Lengths } from '@/lib/services/lengths';
 import { asMoment } from '@/lib/services/moments';
-import { RELEASE_CAUTIONS } from '@/lib/services/setups/words';
-import type { BenchCheck } from '@/openapi/schemas/benchCheck';
 import type { GradeCheck } from '@/openapi/schemas/gradeCheck';
-import { benchInstruction, offersCorrection, wordsOfBenchReason, wordsOfGradeReason } from './words';
+import { wordsOfGradeReason } from './words';
 
 export type GradeRow = InferSelectModel<typeof gradeChecks>;
-
-/** What a check's layer says at the version it was checked against. */
-export interface LayerFacts {
-  offset: number;
-  below: number;
-  above: number;
-  represents: 'finish' | 'subgrade' | 'base' | 'ground' | 'other';
-  surfaceSha256: string;
-}
 
 export function presentGradeCheck(
   row: GradeRow,
@@ -54,38 +44,6 @@ export function presentGradeCheck(
     offset: null,
     surface: { id: row.surfaceId, sha256: layer.surfaceSha256 },
     setupId: row.setupId,
-    uploadId: row.uploadId,
-    units: { length: length.unit },
-  };
-}
-
-export function presentBenchCheck(
-  row: InferSelectModel<typeof benchChecks>,
-  length: Lengths,
-): z.output<typeof BenchCheck> {
-  return {
-    id: row.id,
-    clientId: row.clientId,
-    machine: row.machine,
-    setupId: row.setupId,
-    benchmark: row.benchmark,
-    benchmarkVersion: row.benchmarkVersion,
-    edge: row.edge,
-    observedAt: asMoment(row.observedAt),
-    knownElevation: length.out(row.knownElevation),
-    readElevation: length.out(row.readElevation),
-    readings: row.elevations.length,
-    spread: length.outOrNull(row.spread),
-    difference: length.out(row.difference),
-    correction: offersCorrection(row.reasons) ? length.out(-row.difference) : null,
-    tolerance: length.out(row.tolerance),
-    layer: row.layerName,
-    activeOffset: length.outOrNull(row.activeOffset),
-    correctionAppliedFor: row.correctionAppliedFor,
-    verdict: row.verdict,
-    reasons: row.reasons.map(wordsOfBenchReason),
-    instruction: benchInstruction(row, length),
-    cautions: [...RELEASE_CAUTIONS],
     uploadId: row.uploadId,
     units: { length: length.unit },
   };

@@ -1,0 +1,8 @@
+import { endpoint } from '@/lib/http/endpoint';
+import { route } from '@/lib/http/route';
+import { listEvents } from '@/lib/services/events/list';
+import * as contracts from '@/openapi/contracts/record';
+
+export const { GET, HEAD, POST, PUT, PATCH, DELETE, OPTIONS } = route({
+  get: endpoint(contracts.listEvents, listEvents),
+});

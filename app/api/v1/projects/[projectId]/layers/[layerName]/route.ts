@@ -1,0 +1,8 @@
+import { endpoint } from '@/lib/http/endpoint';
+import { route } from '@/lib/http/route';
+import { readLayer } from '@/lib/services/layers/read';
+import * as contracts from '@/openapi/contracts/design';
+
+export const { GET, HEAD, POST, PUT, PATCH, DELETE, OPTIONS } = route({
+  get: endpoint(contracts.getLayer, readLayer),
+});

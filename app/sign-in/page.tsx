@@ -1,0 +1,15 @@
+import type { Metadata } from 'next';
+import { Heading } from '@/app/ui/Heading';
+import { Sheet } from '@/app/ui/Sheet';
+import { SignInForm } from './SignInForm';
+
+export const metadata: Metadata = { title: 'Sign in' };
+
+export default function SignInPage() {
+  return (
+    <Sheet>
+      <Heading lead="With the address that your administrator invited.">Sign in</Heading>
+      <SignInForm />
+    </Sheet>
+  );
+}

@@ -1,0 +1,14 @@
+import Link from 'next/link';
+import { Mark } from './Mark';
+
+export function Brand() {
+  return (
+    <Link
+      href="/"
+      className="inline-flex items-center gap-3 font-head text-[21px] leading-none text-ink no-underline"
+    >
+      <Mark />
+      Hubtack
+    </Link>
+  );
+}

@@ -1,0 +1,34 @@
+import { sql } from 'drizzle-orm';
+import { directory, idempotencyKeys, sessions } from '@/db/schema';
+import { directoryTransaction, tenantTransaction } from '@/db/tenant';
+import type { Runtime } from '@/lib/runtime';
+
+/** Every organization that the directory knows. */
+async function organizationIds(): Promise<string[]> {
+  return directoryTransaction(async ({ db }) => {
+    const rows = await db.selectDistinct({ id: directory.organizationId }).from(directory);
+    return rows.map(({ id }) => id);
+  });
+}
+
+/**
+ * Removes idempotency keys whose time is over and directory entries of sessions that have ended, organization by
+ * organization, each in its own transaction. Doing it twice is harmless.
+ *
+ * @returns how many idempotency keys went
+ */
+export async function sweep(runtime: Runtime): Promise<number> {
+  const now = runtime.now().toISOString();
+  let removed = 0;
+  for (const organizationId of await organizationIds()) {
+    removed += await tenantTransaction(organizationId, async ({ db }) => {
+      const keys = await db.delete(idempotencyKeys).where(sql`${idempotencyKeys.expiresAt} <= ${now}`);
+      await db.delete(directory).where(
+        sql`${directory.kind} = 'session' and ${directory.subjectId} in
+          (select ${sessions.id} from ${sessions} where ${sessions.expiresAt} <= ${now})`,
+      );
+      return keys.rowCount ?? 0;
+    });
+  }
+  return removed;
+}

@@ -1,0 +1,40 @@
+import type { InferSelectModel } from 'drizzle-orm';
+import type * as z from 'zod';
+import type { benchChecks } from '@/db/schema';
+import type { Lengths } from '@/lib/services/lengths';
+import { asMoment } from '@/lib/services/moments';
+import { RELEASE_CAUTIONS } from '@/lib/services/setups/words';
+import type { BenchCheck } from '@/openapi/schemas/benchCheck';
+import { benchInstruction, offersCorrection, wordsOfBenchReason } from './words';
+
+export function presentBenchCheck(
+  row: InferSelectModel<typeof benchChecks>,
+  length: Lengths,
+): z.output<typeof BenchCheck> {
+  return {
+    id: row.id,
+    clientId: row.clientId,
+    machine: row.machine,
+    setupId: row.setupId,
+    benchmark: row.benchmark,
+    benchmarkVersion: row.benchmarkVersion,
+    edge: row.edge,
+    observedAt: asMoment(row.observedAt),
+    knownElevation: length.out(row.knownElevation),
+    readElevation: length.out(row.readElevation),
+    readings: row.elevations.length,
+    spread: length.outOrNull(row.spread),
+    difference: length.out(row.difference),
+    correction: offersCorrection(row.reasons) ? length.out(-row.difference) : null,
+    tolerance: length.out(row.tolerance),
+    layer: row.layerName,
+    activeOffset: length.outOrNull(row.activeOffset),
+    correctionAppliedFor: row.correctionAppliedFor,
+    verdict: row.verdict,
+    reasons: row.reasons.map(wordsOfBenchReason),
+    instruction: benchInstruction(row, length),
+    cautions: [...RELEASE_CAUTIONS],
+    uploadId: row.uploadId,
+    units: { length: length.unit },
+  };
+}

@@ -1,0 +1,48 @@
+import { eq } from 'drizzle-orm';
+import { directory, people } from '@/db/schema';
+import { handleTransaction } from '@/db/tenant';
+import { verifyPassword } from '@/lib/access/passwords';
+import { emailHandle } from '@/lib/access/secrets';
+import { clearFailures, countFailure, requireAttempt } from '@/lib/access/throttle';
+import { Problem } from '@/lib/problem';
+import type { PublicContext } from '@/lib/services/context';
+import type { PersonRow } from '@/lib/services/people/present';
+import { record } from '@/lib/services/record';
+import { type OpenedSession, openSession } from './open';
+
+/** Checks e-mail and password and opens a session; wrong and unknown answer alike, in like time. */
+export async function signIn(
+  context: PublicContext,
+  { body }: { body: { email: string; password: string } },
+): Promise<OpenedSession> {
+  const handle = emailHandle(body.email);
+  const account = handle.toString('hex');
+  await requireAttempt(account, context.address);
+  const person = await findPerson(handle);
+  const usable = person?.status === 'active' ? person : null;
+  if (!(await verifyPassword(body.password, usable?.passwordHash ?? null)) || !usable) {
+    await countFailure(account, context.address);
+    throw new Problem('sign_in_failed');
+  }
+  await clearFailures(account);
+  return handleTransaction(handle, 'email', async (tenant) => {
+    const { organizationId, id, name } = usable;
+    record(
+      { ...context, tenant },
+      { kind: 'system', organizationId, name },
+      { type: 'session.opened', subject: id },
+    );
+    return openSession({ ...context, tenant }, usable);
+  });
+}
+
+function findPerson(handle: Buffer): Promise<PersonRow | undefined> {
+  return handleTransaction(handle, 'email', async (tenant) => {
+    const [row] = await tenant.db
+      .select({ person: people })
+      .from(directory)
+      .innerJoin(people, eq(people.id, directory.subjectId))
+      .where(eq(directory.handleSha256, handle));
+    return row?.person;
+  });
+}

@@ -1,0 +1,208 @@
+import { and, asc, eq, isNull } from 'drizzle-orm';
+import { bulkInsert } from '@/db/bulk';
+import { observations, setupChecks, setupResults, setups, toleranceClasses } from '@/db/schema';
+import type { Shot } from '@/lib/compute/survey/shots';
+import { StationError } from '@/lib/compute/survey/stationFit';
+import { invalid, invalidItems, Problem } from '@/lib/problem';
+import type { VerbContext } from '@/lib/services/context';
+import { asMark, byNames, currentControl } from '@/lib/services/control/load';
+import { Lengths } from '@/lib/services/lengths';
+import { loadProject } from '@/lib/services/projects/load';
+import { record } from '@/lib/services/record';
+import type { JsonOf, ParamsOf, QueryOf } from '@/openapi/contract';
+import type * as contract from '@/openapi/contracts/setups';
+import { problemItem } from '@/openapi/problemItem';
+import { computeSetup, isAgreed } from './compute';
+import { type CheckRow, type LoadedSetup, loadSetup, type SetupRow } from './load';
+import { presentSetup } from './present';
+import { METHOD, METHOD_VERSION } from './result';
+
+type Refit = typeof contract.refitSetup;
+
+const insert = bulkInsert({ setups, setupResults, setupChecks });
+
+/** Computes a setup anew without some of its shots; the new one supersedes, what was left out stays visible. */
+export async function refitSetup(
+  context: VerbContext,
+  { params, query, body }: { params: ParamsOf<Refit>; query: QueryOf<Refit>; body: JsonOf<Refit> },
+) {
+  const { tenant, caller, runtime } = context;
+  const { organizationId } = caller;
+  const project = await loadProject(tenant, organizationId, params.projectId);
+  const before = await loadSetup(tenant, organizationId, project.id, params.setupId, true);
+  if (before.setup.state === 'superseded') {
+    throw new Problem('conflict', 'This setup was refitted before: refit its successor.');
+  }
+  const shots = await loadShots(context, before.setup);
+  const unknown = body.exclude.flatMap((id, i) =>
+    shots.some((shot) => shot.id === id)
+      ? []
+      : [problemItem(`/exclude/${i}`, 'shot_unknown', `The setup has no shot ${id}.`)],
+  );
+  if (unknown.length > 0) throw invalidItems(unknown);
+  const excluded = [
+    ...before.setup.excluded,
+    ...body.exclude
+      .filter((shot) => !before.setup.excluded.some((known) => known.shot === shot))
+      .map((shot) => ({ shot, reason: body.reason })),
+  ];
+  const kept = shots.filter((shot) => !excluded.some((out) => out.shot === shot.id));
+  const names = [...new Set(shots.map((shot) => shot.target))];
+  const marks = await currentControl(tenant, organizationId, project.id, byNames(names));
+  const { result: earlier } = before.result;
+  let computed: ReturnType<typeof computeSetup>;
+  try {
+    computed = computeSetup({
+      shots: kept,
+      control: new Map(marks.map((row) => [row.point.name, asMark(row)])),
+      accuracy: earlier.accuracy,
+      surroundings: earlier.surroundings,
+      ppm: earlier.ppm,
+      limits: await currentLimits(context, before),
+      notes: earlier.notes.filter(({ code }) => ASSUMED.has(code)),
+    });
+  } catch (error) {
+    if (!(error instanceof StationError)) throw error;
+    throw invalid('/exclude', 'setup_not_computable', 'What is left does not determine a station.');
+  }
+  const made = await write(context, before.setup, computed, excluded);
+  record(context, caller, {
+    type: 'setup.refitted',
+    subject: made.setup.id,
+    projectId: project.id,
+    data: {
+      supersedes: before.setup.id,
+      exclude: body.exclude,
+      reason: body.reason,
+      verdict: made.setup.verdict,
+    },
+  });
+  return presentSetup(made, new Lengths(query.length ?? project.lengthUnit), runtime.now());
+}
+
+/** Notes on what was assumed when the setup came in; the others follow from the new fit. */
+const ASSUMED = new Set([
+  'atmosphere_unknown',
+  'accuracy_default',
+  'control_sigma_default',
+  'compensator_off',
+]);
+
+/** The shots of the setup itself; those of later checks belong to the checks. */
+async function loadShots({ tenant, caller }: VerbContext, setup: SetupRow): Promise<Shot[]> {
+  const rows = await tenant.db
+    .select()
+    .from(observations)
+    .where(
+      and(
+        eq(observations.organizationId, caller.organizationId),
+        eq(observations.setupId, setup.rootId),
+        isNull(observations.checkId),
+      ),
+    )
+    .orderBy(asc(observations.seq));
+  return rows.map((row) => ({
+    id: row.clientId,
+    target: row.target,
+    purpose: row.purpose,
+    face: row.face,
+    set: row.set,
+    direction: row.direction,
+    zenith: row.zenith,
+    distance:
+      row.slopeDistance === null
+        ? null
+        : {
+            slopeDistance: row.slopeDistance,
+            prismConstantMm: row.prismConstantMm ?? 0,
+            prismConstantAppliedMm: row.prismConstantAppliedMm ?? 0,
+            appliedPpm: row.appliedPpm ?? 0,
+          },
+    targetHeight: row.targetHeight,
+    targetCentringSigma: row.targetCentringSigma,
+    targetHeightSigma: row.targetHeightSigma,
+  }));
+}
+
+/** The limits of the setup's class as they are now; as they were where the class is gone. */
+async function currentLimits({ tenant, caller }: VerbContext, { setup, result }: LoadedSetup) {
+  const [row] = await tenant.db
+    .select()
+    .from(toleranceClasses)
+    .where(
+      and(
+        eq(toleranceClasses.organizationId, caller.organizationId),
+        eq(toleranceClasses.projectId, setup.projectId),
+        eq(toleranceClasses.name, setup.toleranceClass),
+      ),
+    );
+  if (!row) return result.result.limits;
+  return {
+    residual: { horizontal: row.residualHorizontal, vertical: row.residualVertical },
+    work: { radius: row.workRadius, horizontal: row.workHorizontal, vertical: row.workVertical },
+    checkRequired: row.checkRequired,
+  };
+}
+
+async function write(
+  { tenant, caller, runtime }: VerbContext,
+  before: SetupRow,
+  { result, checks }: ReturnType<typeof computeSetup>,
+  excluded: SetupRow['excluded'],
+): Promise<LoadedSetup> {
+  const { organizationId } = caller;
+  const now = runtime.now().toISOString();
+  const id = runtime.uuid();
+  const setup: SetupRow = {
+    ...before,
+    id,
+    clientId: `${before.clientId.replace(/\.r\d+$/, '')}.r${refitNumber(before.clientId) + 1}`,
+    resultVersion: 1,
+    verdict: result.verdict,
+    state: 'computed',
+    releasedAt: null,
+    validUntil: null,
+    withdrawnAt: null,
+    supersedesId: before.id,
+    supersededById: null,
+    excluded,
+    submittedBy: caller.name,
+    submitterPersonId: caller.personId,
+    createdAt: now,
+  };
+  const resultRow = {
+    organizationId,
+    setupId: id,
+    version: 1,
+    method: METHOD,
+    methodVersion: METHOD_VERSION,
+    result,
+    computedAt: now,
+  };
+  const checkRows = checks.map(
+    ({ purpose, targets }): CheckRow => ({
+      organizationId,
+      id: runtime.uuid(),
+      projectId: setup.projectId,
+      setupId: id,
+      uploadId: setup.uploadId,
+      clientId: null,
+      purpose,
+      agreed: isAgreed(targets),
+      result: { targets, tolerance: result.limits.residual, verdict: result.verdict },
+      observedAt: setup.observedAt,
+      resultVersion: 1,
+    }),
+  );
+  await insert(tenant, { setups: [setup], setupResults: [resultRow], setupChecks: checkRows });
+  await tenant.db
+    .update(setups)
+    .set({ state: 'superseded', supersededById: id })
+    .where(and(eq(setups.organizationId, organizationId), eq(setups.id, before.id)));
+  return { setup, result: resultRow, checks: checkRows, release: null };
+}
+
+/** Refits are named after the setup that they come from: st-7, st-7.r1, st-7.r2. */
+function refitNumber(clientId: string): number {
+  return Number(/\.r(\d+)$/.exec(clientId)?.[1] ?? 0);
+}

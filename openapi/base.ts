@@ -1,0 +1,2 @@
+/** Where the API lives. */
+export const API_BASE = '/api/v1';

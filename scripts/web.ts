@@ -1,0 +1,35 @@
+import next from 'next';
+import { assertDurable } from '@/db/durability';
+import { closeDatabase } from '@/db/tenant';
+import { getConfig } from '@/lib/config';
+import { createHubServer } from '@/lib/http/server';
+import { log } from '@/lib/log/log';
+
+/** How long requests under way may take to end after SIGTERM. */
+const DRAIN_MS = 20_000;
+
+const { mode, host, port } = getConfig();
+await assertDurable();
+const app = next({ dev: mode === 'development', hostname: host, port });
+await app.prepare();
+const server = createHubServer(app.getRequestHandler());
+server.listen(port, host, () => {
+  const address = server.address();
+  const bound = typeof address === 'object' && address ? address.port : port;
+  log().info({ host, port: bound }, 'web ready');
+});
+
+let draining = false;
+
+async function drain(signal: string): Promise<void> {
+  if (draining) return;
+  draining = true;
+  log().info({ signal }, 'web draining');
+  const closed = new Promise<void>((resolve) => server.close(() => resolve()));
+  server.closeIdleConnections();
+  await Promise.race([closed, new Promise((resolve) => setTimeout(resolve, DRAIN_MS))]);
+  await closeDatabase();
+  process.exit(0);
+}
+
+for (const signal of ['SIGTERM', 'SIGINT'] as const) process.on(signal, () => void drain(signal));
