@@ -1,3 +1,4 @@
+import { createHash } from 'node:crypto';
 import type { InferInsertModel } from 'drizzle-orm';
 import { getTableConfig, type PgColumn, type PgTable } from 'drizzle-orm/pg-core';
 import type { NamedStatement, Tenant } from './tenant';
@@ -40,34 +41,42 @@ function insertOf(table: PgTable, first: number): { text: string; columns: Colum
   return { text, columns: parts.map(({ key, encode }) => ({ key, encode })) };
 }
 
+interface Plan {
+  statement: NamedStatement;
+  columns: { key: string; column: Column }[];
+}
+
+/** One statement that inserts into those of the tables that have rows. */
+function planOf(tables: Record<string, PgTable>, keys: readonly string[]): Plan {
+  const columns: Plan['columns'] = [];
+  const inserts = keys.map((key) => {
+    const insert = insertOf(tables[key], columns.length + 1);
+    columns.push(...insert.columns.map((column) => ({ key, column })));
+    return insert.text;
+  });
+  const last = inserts.pop();
+  const ctes = inserts.map((text, i) => `i${i} as (${text})`).join(', ');
+  // PostgreSQL keeps 63 characters of a name.
+  const name = `insert_${createHash('sha256').update(keys.join()).digest('hex').slice(0, 40)}`;
+  return { statement: { name, text: `${ctes ? `with ${ctes} ` : ''}${last}` }, columns };
+}
+
 /**
  * Inserts any number of rows into several tables by one statement, INSERT … SELECT FROM unnest for each: several
  * times faster than lists of VALUES, one round trip, and never near the limit of 65,535 parameters. Foreign keys
  * among them hold, since they are checked when the whole statement is done. Columns with a default keep it.
  */
 export function bulkInsert<T extends Record<string, PgTable>>(tables: T) {
-  const columns: Record<string, Column[]> = {};
-  const inserts: string[] = [];
-  let first = 1;
-  for (const [key, table] of Object.entries(tables)) {
-    const insert = insertOf(table, first);
-    first += insert.columns.length;
-    columns[key] = insert.columns;
-    inserts.push(insert.text);
-  }
-  const last = inserts.pop();
-  const ctes = inserts.map((text, i) => `i${i} as (${text})`).join(', ');
-  const statement: NamedStatement = {
-    name: `insert_${Object.keys(tables).join('_')}`.slice(0, 63),
-    text: `${ctes ? `with ${ctes} ` : ''}${last}`,
-  };
+  const plans = new Map<string, Plan>();
   return (tenant: Tenant, rows: { [K in keyof T]: readonly InferInsertModel<T[K]>[] }): Promise<unknown> => {
-    if (Object.values(rows).every((list) => list.length === 0)) return Promise.resolve();
-    const values = Object.entries(columns).flatMap(([key, list]) =>
-      list.map((column) =>
-        rows[key].map((row) => column.encode((row as Record<string, unknown>)[column.key])),
-      ),
+    const keys = Object.keys(tables).filter((key) => rows[key].length > 0);
+    if (keys.length === 0) return Promise.resolve();
+    const which = keys.join();
+    const plan = plans.get(which) ?? planOf(tables, keys);
+    plans.set(which, plan);
+    const values = plan.columns.map(({ key, column }) =>
+      rows[key].map((row) => column.encode((row as Record<string, unknown>)[column.key])),
     );
-    return tenant.run(statement, values);
+    return tenant.run(plan.statement, values);
   };
 }

@@ -29,7 +29,7 @@ export function openPool(databaseUrl: string): Pool {
       statement_timeout: 10_000,
       lock_timeout: 2_000,
       idle_in_transaction_session_timeout: 15_000,
-      options: '-c TimeZone=UTC',
+      options: '-c TimeZone=UTC -c plan_cache_mode=force_generic_plan',
       types: parsers,
     });
     // An idle connection that the server ends is replaced at the next use.

@@ -1,3 +1,4 @@
+import type { Writable } from 'node:stream';
 import { drizzle, type NodePgDatabase } from 'drizzle-orm/node-postgres';
 import type { PoolClient, QueryConfig, QueryResult, QueryResultRow } from 'pg';
 import { getConfig } from '@/lib/config';
@@ -23,51 +24,60 @@ export class RolledBackError extends Error {
   override readonly name = 'RolledBackError';
 }
 
-const OPEN: NamedStatement = {
-  name: 'tenant_open',
-  text: `select set_config('app.organization_id', $1, true)`,
-};
+const UUID = /^[0-9a-f]{8}(?:-[0-9a-f]{4}){3}-[0-9a-f]{12}$/i;
 
-const OPEN_BY_HANDLE: NamedStatement = {
-  name: 'tenant_open_by_handle',
-  text: `select set_config('app.organization_id',
-    (select organization_id::text from directory where handle_sha256 = $1 and kind = $2), true)`,
-};
+/** Opens a transaction and sets its tenant; what follows comes in messages of its own. */
+function open(organization: string): string {
+  return `begin; select set_config('app.organization_id', ${organization}, true)`;
+}
 
 /** Runs `work` in one transaction of an organization and commits; rolls back where it throws. */
 export function tenantTransaction<T>(
   organizationId: string,
   work: (tenant: Tenant) => Promise<T>,
 ): Promise<T> {
-  return transaction(OPEN, [organizationId], work);
+  if (!UUID.test(organizationId)) throw new Error('An organization has a UUID.');
+  return transaction(open(`'${organizationId}'`), work);
 }
 
 /** The same for the organization that the directory knows under a handle's hash; of nobody's where it knows none. */
 export function handleTransaction<T>(
   handleSha256: Buffer,
-  kind: 'email' | 'apiKey' | 'session' | 'invitation',
+  kind: 'email' | 'invitation',
   work: (tenant: Tenant) => Promise<T>,
 ): Promise<T> {
-  return transaction(OPEN_BY_HANDLE, [handleSha256, kind], work);
+  const handle = `'\\x${handleSha256.toString('hex')}'::bytea`;
+  return transaction(
+    open(
+      `(select organization_id::text from directory where handle_sha256 = ${handle} and kind = '${kind}')`,
+    ),
+    work,
+  );
 }
 
 /** Runs `work` outside every organization: it sees the directory and nothing else. */
 export function directoryTransaction<T>(work: (tenant: Tenant) => Promise<T>): Promise<T> {
-  return transaction(OPEN, [''], work);
+  return transaction(open(`''`), work);
+}
+
+/** One of the functions that find a tenant by a handle and read from it, in a statement of its own. */
+export async function identify<R extends object>(statement: NamedStatement, values: unknown[]): Promise<R[]> {
+  const client = await openPool(getConfig().databaseUrl).connect();
+  try {
+    return (await client.query<R & QueryResultRow>(statement, values)).rows;
+  } finally {
+    client.release();
+  }
 }
 
 /** Ends all connections of this process. */
 export const closeDatabase = closePool;
 
-async function transaction<T>(
-  open: NamedStatement,
-  values: unknown[],
-  work: (tenant: Tenant) => Promise<T>,
-): Promise<T> {
+async function transaction<T>(opening: string, work: (tenant: Tenant) => Promise<T>): Promise<T> {
   const client = await openPool(getConfig().databaseUrl).connect();
   let broken: Error | undefined;
   try {
-    return await inTransaction(client, open, values, work);
+    return await inTransaction(client, opening, work);
   } catch (error) {
     broken = await rollBack(client);
     throw error;
@@ -78,26 +88,37 @@ async function transaction<T>(
 
 async function inTransaction<T>(
   client: PoolClient,
-  open: NamedStatement,
-  values: unknown[],
+  opening: string,
   work: (tenant: Tenant) => Promise<T>,
 ): Promise<T> {
-  const pending: Promise<unknown>[] = [client.query('begin'), client.query(open, values)];
   // Each is awaited below; until then a failure must not count as unhandled.
-  for (const statement of pending) statement.catch(() => undefined);
+  const pending: Promise<unknown>[] = [];
+  const later = (statement: Promise<unknown>) => {
+    statement.catch(() => undefined);
+    pending.push(statement);
+  };
+  gatherWrites(client);
+  later(client.query(opening));
   const result = await work({
     db: drizzle(client),
-    run: (statement, parameters) => client.query(statement, parameters),
-    defer: (write) => {
-      write.catch(() => undefined);
-      pending.push(write);
+    run: (statement, parameters) => {
+      gatherWrites(client);
+      return client.query(statement, parameters);
     },
+    defer: later,
   });
   const commit = client.query('commit');
   commit.catch(() => undefined);
   await Promise.all(pending);
   if ((await commit).command !== 'COMMIT') throw new RolledBackError('The transaction was rolled back.');
   return result;
+}
+
+/** Statements sent in one turn of the event loop leave in one packet: system calls are what a small write costs. */
+function gatherWrites(client: PoolClient): void {
+  const { stream } = (client as unknown as { connection: { stream: Writable } }).connection;
+  stream.cork();
+  process.nextTick(() => stream.uncork());
 }
 
 /** Answers the error that makes the connection unfit for further use. */

@@ -28,7 +28,7 @@ await conduct(async () => {
   const watch = ['--watch', '--watch-preserve-output'];
   const servers = [...startHub(folder, env, { watch, toTerminal: true }), ...(server ? [server] : [])];
   const broken = whenOneEnds(servers);
-  await Promise.race([broken, step('Web and worker', () => whenReady(address))]);
+  await Promise.race([broken, whenReady(address)]);
   report({ address, demo: isOurs && state.values.demo, verdicts: [], notes: [], folder });
   await broken;
 });

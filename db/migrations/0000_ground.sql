@@ -635,6 +635,46 @@ GRANT SELECT, INSERT, UPDATE ON "acknowledgements" TO "hubtack_app";--> statemen
 GRANT SELECT, INSERT, UPDATE, DELETE ON "tolerance_classes" TO "hubtack_app";--> statement-breakpoint
 GRANT SELECT, INSERT, DELETE ON "idempotency_keys" TO "hubtack_app";--> statement-breakpoint
 GRANT SELECT, INSERT, DELETE ON "directory" TO "hubtack_app";--> statement-breakpoint
--- The queue makes and owns its tables here; the app runs its migrations.
-CREATE SCHEMA "graphile_worker";--> statement-breakpoint
-GRANT USAGE, CREATE ON SCHEMA "graphile_worker" TO "hubtack_app";
+-- The queue's schema is the app's own. Its table of migrations is made here, since the queue would otherwise begin
+-- with CREATE SCHEMA, which needs a right on the whole database.
+CREATE SCHEMA "graphile_worker" AUTHORIZATION "hubtack_app";--> statement-breakpoint
+CREATE TABLE "graphile_worker"."migrations" (
+  "id" int PRIMARY KEY,
+  "ts" timestamptz DEFAULT now() NOT NULL,
+  "breaking" boolean DEFAULT false NOT NULL
+);--> statement-breakpoint
+ALTER TABLE "graphile_worker"."migrations" OWNER TO "hubtack_app";--> statement-breakpoint
+-- JSON and bytes of a few kilobytes are written on the hot path.
+ALTER TABLE "raw_bodies" ALTER COLUMN "bytes" SET COMPRESSION lz4;--> statement-breakpoint
+ALTER TABLE "setup_results" ALTER COLUMN "result" SET COMPRESSION lz4;--> statement-breakpoint
+ALTER TABLE "setup_checks" ALTER COLUMN "result" SET COMPRESSION lz4;--> statement-breakpoint
+-- Who a handle belongs to, in one statement: the tenant is set from the directory, then read. Invoked as the app
+-- role, so the policies bind the reading.
+CREATE FUNCTION "identify_key"("handle" bytea, "at" timestamptz)
+RETURNS TABLE (organization_id uuid, id uuid, name text, scopes text[], project_ids uuid[], responsible_person_id uuid,
+  expires_at timestamptz, revoked boolean, expired boolean, closed boolean, stale boolean)
+LANGUAGE plpgsql AS $$
+BEGIN
+  PERFORM set_config('app.organization_id', coalesce((SELECT d.organization_id::text FROM directory d
+    WHERE d.handle_sha256 = handle AND d.kind = 'apiKey'), ''), true);
+  RETURN QUERY SELECT k.organization_id, k.id, k.name, k.scopes, k.project_ids, k.responsible_person_id, k.expires_at,
+      k.revoked_at IS NOT NULL, coalesce(k.expires_at <= at, false), p.status = 'closed',
+      k.last_used_at IS NULL OR k.last_used_at < at - interval '1 minute'
+    FROM directory d
+    JOIN api_keys k ON k.organization_id = d.organization_id AND k.id = d.subject_id
+    JOIN people p ON p.organization_id = k.organization_id AND p.id = k.responsible_person_id
+    WHERE d.handle_sha256 = handle AND d.kind = 'apiKey';
+END $$;--> statement-breakpoint
+CREATE FUNCTION "identify_session"("handle" bytea, "at" timestamptz)
+RETURNS TABLE (organization_id uuid, id uuid, person_id uuid, expires_at timestamptz, name text, role text)
+LANGUAGE plpgsql AS $$
+BEGIN
+  PERFORM set_config('app.organization_id', coalesce((SELECT d.organization_id::text FROM directory d
+    WHERE d.handle_sha256 = handle AND d.kind = 'session'), ''), true);
+  RETURN QUERY SELECT s.organization_id, s.id, s.person_id, s.expires_at, p.name, p.role
+    FROM directory d
+    JOIN sessions s ON s.organization_id = d.organization_id AND s.id = d.subject_id
+    JOIN people p ON p.organization_id = s.organization_id AND p.id = s.person_id
+    WHERE d.handle_sha256 = handle AND d.kind = 'session'
+      AND s.revoked_at IS NULL AND s.expires_at > at AND p.status = 'active';
+END $$;

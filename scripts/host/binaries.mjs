@@ -1,6 +1,6 @@
 import { spawnSync } from 'node:child_process';
-import { existsSync, readdirSync } from 'node:fs';
-import { delimiter, join } from 'node:path';
+import { existsSync, readdirSync, realpathSync } from 'node:fs';
+import { delimiter, dirname, join } from 'node:path';
 import { Failure } from './failure.mjs';
 
 const oldestMajor = 15;
@@ -14,9 +14,8 @@ export function findServerPrograms(major) {
   const named = process.env.HUBTACK_POSTGRES_BIN;
   const folders = named ? [named] : [...debianFolders(), ...(process.env.PATH ?? '').split(delimiter)];
   for (const folder of folders) {
-    if (!folder || !existsSync(join(folder, 'postgres')) || !existsSync(join(folder, 'initdb'))) continue;
-    const found = majorOf(folder);
-    if (major ? found === major : found >= oldestMajor) return { folder, major: found };
+    const programs = programsIn(folder);
+    if (programs && (major ? programs.major === major : programs.major >= oldestMajor)) return programs;
   }
   if (!named) return null;
   throw new Failure(
@@ -42,7 +41,11 @@ function debianFolders() {
   return versions.sort((a, b) => Number(b) - Number(a)).map((name) => join(debianFolder, name, 'bin'));
 }
 
-function majorOf(folder) {
+function programsIn(place) {
+  if (!place || !existsSync(join(place, 'postgres'))) return null;
+  // A link on the PATH may stand alone; the programs that belong together are where it leads.
+  const folder = dirname(realpathSync(join(place, 'postgres')));
+  if (!['initdb', 'pg_ctl'].every((name) => existsSync(join(folder, name)))) return null;
   const { stdout } = spawnSync(join(folder, 'postgres'), ['--version'], { encoding: 'utf8' });
-  return Number(/\(PostgreSQL\) (\d+)/.exec(stdout ?? '')?.[1] ?? 0);
+  return { folder, major: Number(/\(PostgreSQL\) (\d+)/.exec(stdout ?? '')?.[1] ?? 0) };
 }

@@ -6,6 +6,7 @@ import { openLog } from './logs.mjs';
 import { root } from './paths.mjs';
 
 const inputFolders = ['app', 'db', 'lib', 'openapi', 'public'];
+const inputScripts = ['scripts/vendor.ts'];
 const inputFile = /\.(ts|mts|js|mjs|cjs|json|css)$/;
 // Written by the build or by the tools around it.
 const products = new Set(['next-env.d.ts', 'public/vendor']);
@@ -16,16 +17,12 @@ export async function build(folder) {
   // Taken first: a file changed while the build runs makes the next one build again.
   const inputs = hashOfInputs();
   if (existsSync(stamp) && readFileSync(stamp, 'utf8') === inputs) return false;
-  await run(
-    'The web app could not be built.',
-    process.execPath,
-    ['node_modules/next/dist/bin/next', 'build'],
-    {
-      env: { ...process.env, NODE_ENV: 'production', NEXT_TELEMETRY_DISABLED: '1' },
-      log: openLog(folder, 'build'),
-      remedy: `Mend what is named below; all of it is in ${join(folder, 'logs', 'build.log')}.`,
-    },
-  );
+  await run('The web app could not be built.', 'npm', ['run', 'build'], {
+    env: { ...process.env, NODE_ENV: 'production', NEXT_TELEMETRY_DISABLED: '1' },
+    log: openLog(folder, 'build'),
+    ending: { patienceSeconds: 2 },
+    remedy: `Mend what is named below; all of it is in ${join(folder, 'logs', 'build.log')}.`,
+  });
   writeFileSync(stamp, inputs);
   return true;
 }
@@ -37,7 +34,7 @@ function hashOfInputs() {
     .filter((entry) => entry.isFile() && inputFile.test(entry.name))
     .map((entry) => entry.name);
   const folders = inputFolders.filter((name) => existsSync(join(root, name)));
-  for (const path of [...files, ...folders.flatMap(filesIn)].sort()) {
+  for (const path of [...files, ...inputScripts, ...folders.flatMap(filesIn)].sort()) {
     if (products.has(path)) continue;
     const content = createHash('sha256')
       .update(readFileSync(join(root, path)))

@@ -1,8 +1,8 @@
 import { spawn } from 'node:child_process';
-import { setTimeout as pause } from 'node:timers/promises';
 import { Cancelled, Failure } from './failure.mjs';
 import { lastLines } from './logs.mjs';
 import { root } from './paths.mjs';
+import { childrenOf } from './processes.mjs';
 
 // Stopped in this order, each kind waited for before the next is asked.
 const kinds = ['step', 'hub', 'database'];
@@ -23,7 +23,7 @@ export function watchChildren(listener) {
  */
 export function launch(name, command, args, options = {}) {
   if (cancelled) throw new Cancelled();
-  const { kind = 'step', env, cwd = root, account, log, capture, signals, ownGroup = true } = options;
+  const { kind = 'step', env, cwd = root, account, log, capture, ending, ownGroup = true } = options;
   const sink = log?.descriptor ?? 'inherit';
   const child = spawn(command, args, {
     env,
@@ -34,7 +34,7 @@ export function launch(name, command, args, options = {}) {
     stdio: [ownGroup ? 'ignore' : 'inherit', capture ? 'pipe' : sink, sink],
   });
   const entry = { name, kind, log, pid: child.pid, ownGroup, written: '', end: null };
-  Object.assign(entry, { stop: 'SIGTERM', force: 'SIGKILL' }, signals);
+  Object.assign(entry, { stop: 'SIGTERM', force: 'SIGKILL', patienceSeconds: 25 }, ending);
   child.stdout?.setEncoding('utf8').on('data', (text) => {
     entry.written += text;
   });
@@ -43,8 +43,8 @@ export function launch(name, command, args, options = {}) {
       entry.end = end;
       running.delete(entry);
       log?.close();
-      changed();
       resolve(end);
+      changed();
     };
     child.once('error', (error) => finish({ code: null, signal: null, error }));
     child.once('close', (code, signal) => finish({ code, signal }));
@@ -73,18 +73,15 @@ export async function handOver(command, args) {
   return code ?? 1;
 }
 
-/** Asks a process to end in its own way and waits; what has not ended in time is made to. */
-export async function stop(entry, patienceSeconds = 20) {
+/** Asks a process to end in its own way and waits; what has not ended in time is made to, with all it started. */
+export async function stop(entry) {
   if (entry.end) return;
+  const started = entry.ownGroup ? [] : childrenOf(entry.pid);
   signalTo(entry.pid, entry.stop);
-  const late = new AbortController();
-  const inTime = await Promise.race([
-    entry.exited.then(() => true),
-    pause(patienceSeconds * 1000, false, { signal: late.signal }).catch(() => true),
-  ]);
-  late.abort();
-  if (!inTime) force(entry);
+  const late = setTimeout(() => force(entry), entry.patienceSeconds * 1000);
   await entry.exited;
+  clearTimeout(late);
+  for (const pid of entry.ownGroup ? [-entry.pid] : started) signalTo(pid, 'SIGKILL');
 }
 
 /** Ends everything: steps under way first, then the hub's own processes, the database last. */

@@ -1,5 +1,6 @@
 import { run } from './children.mjs';
 import { Failure } from './failure.mjs';
+import { get } from './get.mjs';
 import { lastLines, openLog } from './logs.mjs';
 
 /** On an empty hub makes the demo's people and its key, and keeps them beside the data. */
@@ -58,13 +59,9 @@ export async function readVerdicts(state, address) {
 }
 
 async function read(url, key) {
-  const answer = await fetch(url, {
-    headers: { authorization: `Bearer ${key}` },
-    signal: AbortSignal.timeout(10_000),
-  });
-  const text = await answer.text();
-  if (answer.ok) return JSON.parse(text);
-  throw new Failure(`The demo's results could not be read: ${url} answers ${answer.status}.`, {
+  const { status, text } = await get(url, { authorization: `Bearer ${key}` });
+  if (status === 200) return JSON.parse(text);
+  throw new Failure(`The demo's results could not be read: ${url} answers ${status}.`, {
     tail: lastLines(text),
   });
 }

@@ -15,6 +15,7 @@ export async function installDependencies(folder) {
     {
       env: { ...process.env, NODE_ENV: 'development' },
       log: openLog(folder, 'npm'),
+      ending: { patienceSeconds: 2 },
       remedy: 'Check that the npm registry can be reached, then start again.',
       excerpt: firstErrors,
     },

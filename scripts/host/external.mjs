@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto';
 import { Failure } from './failure.mjs';
-import { appRights, appRole, ensureRole, withConnection } from './roles.mjs';
+import { appRights, appRole, ensureRole, roleExists, withConnection } from './roles.mjs';
 import { newSecret } from './state.mjs';
 import { say } from './steps.mjs';
 
@@ -22,16 +22,26 @@ export async function useServer(ownerUrl, state) {
     });
   });
   const appUrl = process.env.DATABASE_APP_URL || (await ownAppUrl(owner, state));
-  const app = parsed('DATABASE_APP_URL', appUrl);
-  await withConnection(appUrl, () => {}).catch((error) => {
-    throw new Failure(
-      `The app's role ${app.username} gets no connection at ${app.host}: ${reasonOf(error)}.`,
-      {
-        remedy: "Check DATABASE_APP_URL, and that the server's pg_hba.conf lets that role in.",
-      },
-    );
-  });
+  await checkApp(appUrl);
   return { ownerUrl, appUrl };
+}
+
+async function checkApp(appUrl) {
+  const { username, host } = parsed('DATABASE_APP_URL', appUrl);
+  const bypasses = await withConnection(appUrl, async (client) => {
+    const answer = await client.query(
+      'select rolsuper or rolbypassrls as bypasses from pg_roles where rolname = current_user',
+    );
+    return answer.rows[0].bypasses;
+  }).catch((error) => {
+    throw new Failure(`The app's role ${username} gets no connection at ${host}: ${reasonOf(error)}.`, {
+      remedy: "Check DATABASE_APP_URL, and that the server's pg_hba.conf lets that role in.",
+    });
+  });
+  if (!bypasses) return;
+  throw new Failure(`The app's role ${username} bypasses row security, which keeps organizations apart.`, {
+    remedy: 'Give DATABASE_APP_URL a role that is NOSUPERUSER and NOBYPASSRLS.',
+  });
 }
 
 async function ownAppUrl(owner, state) {
@@ -44,9 +54,9 @@ async function ownAppUrl(owner, state) {
     await ensureRole(client, appRole, password, appRights);
     await letOwnerHandOver(client);
     await client.query('commit');
-  }).catch((error) => {
+  }).catch(async (error) => {
     throw new Failure(`The role ${appRole} could not be made or given a password: ${reasonOf(error)}.`, {
-      remedy: instructions(owner),
+      remedy: await instructions(owner),
     });
   });
   state.values.appPassword = password;
@@ -61,16 +71,18 @@ async function letOwnerHandOver(client) {
   if (!rows[0].rolsuper) await client.query(`grant ${appRole} to current_user`);
 }
 
-function instructions(owner) {
-  const rights = appRights.toUpperCase();
-  const example = new URL(withAppRole(owner, 'the-password'));
+async function instructions(owner) {
+  const isThere = await withConnection(owner.href, (client) => roleExists(client, appRole)).catch(
+    () => false,
+  );
+  const start = isThere ? `ALTER ROLE ${appRole}` : `CREATE ROLE ${appRole} ${appRights.toUpperCase()}`;
   return [
     'Have someone who may run this on the server, with a password of your own:',
     '',
-    `  CREATE ROLE ${appRole} LOGIN ${rights} PASSWORD 'the-password';`,
+    `  ${start} LOGIN PASSWORD 'the-password';`,
     `  GRANT ${appRole} TO "${decodeURIComponent(owner.username)}";`,
     '',
-    `Then start again with DATABASE_APP_URL='${example.href}'`,
+    `Then start again with DATABASE_APP_URL='${withAppRole(owner, 'the-password')}'`,
   ].join('\n');
 }
 

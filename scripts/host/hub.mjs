@@ -2,6 +2,7 @@ import { isIP } from 'node:net';
 import { setTimeout as pause } from 'node:timers/promises';
 import { launch } from './children.mjs';
 import { Failure } from './failure.mjs';
+import { get } from './get.mjs';
 import { lastLines, openLog } from './logs.mjs';
 import { chooseWebPort } from './ports.mjs';
 
@@ -48,10 +49,7 @@ export function startHub(folder, env, { watch = [], toTerminal = false } = {}) {
 export async function whenReady(address) {
   const deadline = performance.now() + readyWithinSeconds * 1000;
   while (performance.now() < deadline) {
-    const answer = await fetch(`${address.localUrl}/api/health/ready`, {
-      signal: AbortSignal.timeout(5000),
-    }).catch(() => null);
-    await answer?.body?.cancel();
+    const answer = await get(`${address.localUrl}/api/health/ready`).catch(() => null);
     if (answer?.status === 200) return;
     await pause(40);
   }

@@ -1,6 +1,6 @@
 import { forceAll, stopAll } from './children.mjs';
 import { Cancelled, explain } from './failure.mjs';
-import { say } from './steps.mjs';
+import { endSteps, say } from './steps.mjs';
 
 // npm passes on the signal that the terminal has sent already: the echo is no second Ctrl-C.
 const echoMilliseconds = 1000;
@@ -20,6 +20,7 @@ export async function conduct(main, { codeWhenStopped = 0 } = {}) {
   const asked = (signal) => {
     if (!ending) {
       askedAt = performance.now();
+      endSteps();
       say('\n  Stopping …');
       end(codeWhenStopped);
     } else if (signal === 'SIGINT' && performance.now() - askedAt > echoMilliseconds) {
@@ -27,12 +28,17 @@ export async function conduct(main, { codeWhenStopped = 0 } = {}) {
       process.exit(130);
     }
   };
+  const failed = (error) => {
+    endSteps();
+    if (!ending && !(error instanceof Cancelled)) process.stderr.write(explain(error));
+    return end(1);
+  };
   for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, asked);
+  process.on('uncaughtException', failed);
 
   try {
     await end((await main()) ?? 0);
   } catch (error) {
-    if (!ending && !(error instanceof Cancelled)) process.stderr.write(explain(error));
-    await end(1);
+    await failed(error);
   }
 }

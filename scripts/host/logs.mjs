@@ -18,6 +18,6 @@ export function openLog(folder, name) {
   };
 }
 
-export function lastLines(text, lines = 20) {
+export function lastLines(text, lines = 30) {
   return text.trimEnd().split('\n').slice(-lines).join('\n');
 }

@@ -17,11 +17,15 @@ export async function withConnection(url, work) {
   }
 }
 
-/** Makes the role where it is missing, and gives it this password. */
-export async function ensureRole(client, name, password, rights) {
+export async function roleExists(client, name) {
   const { rowCount } = await client.query('select from pg_roles where rolname = $1', [name]);
-  const verb = rowCount === 0 ? 'create' : 'alter';
-  await client.query(`${verb} role ${name} login ${rights} password '${scramVerifier(password)}'`);
+  return rowCount > 0;
+}
+
+/** Makes the role with these rights, or gives the one that is there this password. */
+export async function ensureRole(client, name, password, rights) {
+  const verb = (await roleExists(client, name)) ? `alter role ${name}` : `create role ${name} ${rights}`;
+  await client.query(`${verb} login password '${scramVerifier(password)}'`);
 }
 
 export const ownerRights = 'nosuperuser createdb nocreaterole noreplication nobypassrls';

@@ -74,7 +74,8 @@ export async function serve({ programs, account, home, port, log }) {
     cwd: '/',
     env: serverEnvironment(),
     log,
-    signals: { stop: 'SIGINT', force: 'SIGQUIT' },
+    // A fast shutdown, and where that takes too long an immediate one.
+    ending: { stop: 'SIGINT', force: 'SIGQUIT' },
   });
   const deadline = performance.now() + readyWithinSeconds * 1000;
   while (!isReady(home, server.pid)) {

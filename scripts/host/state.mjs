@@ -19,8 +19,9 @@ export function openState(folder, name) {
 export const newSecret = () => randomBytes(32).toString('base64url');
 
 function parsed(file) {
+  const text = readFileSync(file, 'utf8');
   try {
-    return JSON.parse(readFileSync(file, 'utf8'));
+    return JSON.parse(text);
   } catch (error) {
     throw new Failure(`${file} cannot be read: ${error.message}.`, {
       remedy: 'It holds the passwords of the database beside it: put back a good copy, or move both away.',

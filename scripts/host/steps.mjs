@@ -3,6 +3,7 @@ const coloured = terminal && !process.env.NO_COLOR;
 const labelWidth = 44;
 const running = new Set();
 let ticker;
+let silent = false;
 
 // A closed terminal must not keep the clean stop from finishing.
 process.stdout.on('error', () => {});
@@ -24,10 +25,10 @@ export function say(text = '') {
 export async function step(label, work) {
   const entry = { label, started: performance.now(), nextNotice: 1 };
   running.add(entry);
-  ticker ??= setInterval(showRunning, terminal ? 100 : 500).unref();
+  if (!silent) ticker ??= setInterval(showRunning, terminal ? 100 : 500).unref();
   try {
     const result = await work();
-    if (result !== false) {
+    if (result !== false && !silent) {
       const text = typeof result === 'string' ? `${label}, ${result}` : label;
       say(`  ${green('✓')} ${text.padEnd(labelWidth)} ${faint(seconds(entry))}`);
     }
@@ -35,11 +36,20 @@ export async function step(label, work) {
   } finally {
     running.delete(entry);
     clearLive();
-    if (running.size === 0) {
-      clearInterval(ticker);
-      ticker = undefined;
-    }
+    if (running.size === 0) endTicker();
   }
+}
+
+/** Ends the telling of steps, so that what is said of a failure or a stop is the last word. */
+export function endSteps() {
+  clearLive();
+  silent = true;
+  endTicker();
+}
+
+function endTicker() {
+  clearInterval(ticker);
+  ticker = undefined;
 }
 
 function seconds(entry) {
