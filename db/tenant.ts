@@ -37,7 +37,7 @@ export function tenantTransaction<T>(
   work: (tenant: Tenant) => Promise<T>,
 ): Promise<T> {
   if (!UUID.test(organizationId)) throw new Error('An organization has a UUID.');
-  return transaction(open(`'${organizationId}'`), work);
+  return transaction((client) => client.query(open(`'${organizationId}'`)), work);
 }
 
 /** The same for the organization that the directory knows under a handle's hash; of nobody's where it knows none. */
@@ -47,33 +47,41 @@ export function handleTransaction<T>(
   work: (tenant: Tenant) => Promise<T>,
 ): Promise<T> {
   const handle = `'\\x${handleSha256.toString('hex')}'::bytea`;
-  return transaction(
-    open(
-      `(select organization_id::text from directory where handle_sha256 = ${handle} and kind = '${kind}')`,
-    ),
-    work,
-  );
+  const organization = `(select organization_id::text from directory where handle_sha256 = ${handle} and kind = '${kind}')`;
+  return transaction((client) => client.query(open(organization)), work);
 }
 
 /** Runs `work` outside every organization: it sees the directory and nothing else. */
 export function directoryTransaction<T>(work: (tenant: Tenant) => Promise<T>): Promise<T> {
-  return transaction(open(`''`), work);
+  return transaction((client) => client.query(open(`''`)), work);
 }
 
-/** One of the functions that find a tenant by a handle and read from it, in a statement of its own. */
-export async function identify<R extends object>(statement: NamedStatement, values: unknown[]): Promise<R[]> {
-  const client = await openPool(getConfig().databaseUrl).connect();
-  try {
-    return (await client.query<R & QueryResultRow>(statement, values)).rows;
-  } finally {
-    client.release();
-  }
+/**
+ * Runs `work` in a transaction whose first statement finds the tenant by a handle, sets it, and answers who that is:
+ * what `work` reads at once travels in the same packet, and row security confines it to that tenant.
+ */
+export function identifiedTransaction<R extends object, T>(
+  statement: NamedStatement,
+  values: unknown[],
+  work: (tenant: Tenant, identified: Promise<R[]>) => Promise<T>,
+): Promise<T> {
+  return transaction(
+    (client) => Promise.all([client.query('begin'), client.query<R & QueryResultRow>(statement, values)]),
+    (tenant, opened) =>
+      work(
+        tenant,
+        opened.then(([, { rows }]) => rows),
+      ),
+  );
 }
 
 /** Ends all connections of this process. */
 export const closeDatabase = closePool;
 
-async function transaction<T>(opening: string, work: (tenant: Tenant) => Promise<T>): Promise<T> {
+type Opening<O> = (client: PoolClient) => Promise<O>;
+type Work<O, T> = (tenant: Tenant, opened: Promise<O>) => Promise<T>;
+
+async function transaction<O, T>(opening: Opening<O>, work: Work<O, T>): Promise<T> {
   const client = await openPool(getConfig().databaseUrl).connect();
   let broken: Error | undefined;
   try {
@@ -86,11 +94,7 @@ async function transaction<T>(opening: string, work: (tenant: Tenant) => Promise
   }
 }
 
-async function inTransaction<T>(
-  client: PoolClient,
-  opening: string,
-  work: (tenant: Tenant) => Promise<T>,
-): Promise<T> {
+async function inTransaction<O, T>(client: PoolClient, opening: Opening<O>, work: Work<O, T>): Promise<T> {
   // Each is awaited below; until then a failure must not count as unhandled.
   const pending: Promise<unknown>[] = [];
   const later = (statement: Promise<unknown>) => {
@@ -98,15 +102,22 @@ async function inTransaction<T>(
     pending.push(statement);
   };
   gatherWrites(client);
-  later(client.query(opening));
-  const result = await work({
-    db: drizzle(client),
+  const opened = opening(client);
+  later(opened);
+  let db: NodePgDatabase | undefined;
+  const tenant: Tenant = {
+    // Made at first use: a hot path asks for named statements alone.
+    get db() {
+      db ??= drizzle(client);
+      return db;
+    },
     run: (statement, parameters) => {
       gatherWrites(client);
       return client.query(statement, parameters);
     },
     defer: later,
-  });
+  };
+  const result = await work(tenant, opened);
   const commit = client.query('commit');
   commit.catch(() => undefined);
   await Promise.all(pending);

@@ -8,7 +8,7 @@ const flag = z
 const Environment = z.object({
   NODE_ENV: z.enum(['development', 'production', 'test']).default('production'),
   /** Connection of the app role, which row security binds. */
-  DATABASE_URL: z.url({ protocol: /^postgres(ql)?$/ }),
+  DATABASE_URL: z.string().regex(/^postgres(?:ql)?:\/\//),
   /** Signs session cookies; 32 random bytes in base64url. */
   HUBTACK_SECRET: z.string().min(43),
   HOST: z.string().default('127.0.0.1'),

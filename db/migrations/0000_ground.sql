@@ -378,7 +378,7 @@ CREATE TABLE "setup_checks" (
 	"client_id" text,
 	"purpose" text NOT NULL,
 	"agreed" boolean NOT NULL,
-	"result" jsonb NOT NULL,
+	"result" json NOT NULL,
 	"observed_at" timestamp(6) with time zone NOT NULL,
 	"result_version" integer NOT NULL,
 	CONSTRAINT "setup_checks_organization_id_id_pk" PRIMARY KEY("organization_id","id"),
@@ -414,7 +414,7 @@ CREATE TABLE "setup_results" (
 	"version" integer NOT NULL,
 	"method" text NOT NULL,
 	"method_version" text NOT NULL,
-	"result" jsonb NOT NULL,
+	"result" json NOT NULL,
 	"computed_at" timestamp(6) with time zone NOT NULL,
 	CONSTRAINT "setup_results_organization_id_setup_id_version_pk" PRIMARY KEY("organization_id","setup_id","version")
 );

@@ -6,6 +6,7 @@ import {
   foreignKey,
   index,
   integer,
+  json,
   jsonb,
   pgTable,
   primaryKey,
@@ -86,8 +87,8 @@ export const setupResults = pgTable(
     version: integer('version').notNull(),
     method: text('method').notNull(),
     methodVersion: text('method_version').notNull(),
-    /** lib/services/setups/result.ts gives its shape; SI units. */
-    result: jsonb('result').notNull(),
+    /** lib/services/setups/result.ts gives its shape; SI units. Kept as text: nothing looks inside it here. */
+    result: json('result').notNull(),
     computedAt: instant('computed_at').notNull(),
   },
   (t) => [
@@ -113,7 +114,7 @@ export const setupChecks = pgTable(
     purpose: text('purpose').$type<'check' | 'closing'>().notNull(),
     agreed: boolean('agreed').notNull(),
     /** Differences target by target; SI units. */
-    result: jsonb('result').notNull(),
+    result: json('result').notNull(),
     observedAt: instant('observed_at').notNull(),
     /** Result version of the setup with this check. */
     resultVersion: integer('result_version').notNull(),

@@ -1,5 +1,4 @@
-import type { Caller } from '@/lib/access/actor';
-import { identifyKey, identifySession } from '@/lib/access/identify';
+import { type Credential, credential } from '@/lib/access/identify';
 import { isSecret } from '@/lib/access/secrets';
 import { readSession, SESSION_COOKIE } from '@/lib/access/sessionToken';
 import { getConfig } from '@/lib/config';
@@ -7,36 +6,25 @@ import { Problem } from '@/lib/problem';
 
 const BEARER = /^Bearer +(\S+)$/i;
 
-/** Who sends a request: by key, or by session cookie. */
-export async function authenticate(request: Request, now: Date): Promise<Caller> {
+/** What a request shows to be let in: an API key, or a session cookie. */
+export async function readCredential(request: Request, now: Date): Promise<Credential> {
   const authorization = request.headers.get('authorization');
-  if (authorization !== null) return byKey(authorization, now);
+  if (authorization !== null) return keyCredential(authorization);
   const cookie = sessionCookie(request);
   if (cookie === null) throw new Problem('unauthenticated', 'No key and no session came with the request.');
   if (request.method !== 'GET' && request.method !== 'HEAD') requireSameOrigin(request, true);
   const handle = await readSession(cookie, getConfig().secret, now);
-  const caller = handle && (await identifySession(handle, now));
-  if (!caller) throw new Problem('session_ended');
-  return caller;
+  if (handle === null) throw new Problem('session_ended');
+  return credential('session', handle);
 }
 
-async function byKey(authorization: string, now: Date): Promise<Caller> {
+function keyCredential(authorization: string): Credential {
   const secret = BEARER.exec(authorization)?.[1];
   if (!secret)
     throw new Problem('unauthenticated', 'The Authorization header is not of the form Bearer htk_….');
   if (!isSecret(secret, 'htk'))
     throw new Problem('unauthenticated', 'That is not an API key of a hub: its checksum is off.');
-  const caller = await identifyKey(secret, now);
-  switch (caller) {
-    case 'unknown':
-      throw new Problem('unauthenticated', 'The hub does not know this API key.');
-    case 'revoked':
-      throw new Problem('key_revoked');
-    case 'expired':
-      throw new Problem('key_expired');
-    default:
-      return caller;
-  }
+  return credential('key', secret);
 }
 
 function sessionCookie(request: Request): string | null {

@@ -1,5 +1,6 @@
-import { tenantTransaction } from '@/db/tenant';
+import type { Tenant } from '@/db/tenant';
 import { type Caller, mayUseProject } from '@/lib/access/actor';
+import { callerTransaction } from '@/lib/access/identify';
 import { getConfig } from '@/lib/config';
 import type { RawBody } from '@/lib/formats/body';
 import { log } from '@/lib/log/log';
@@ -17,7 +18,7 @@ import {
 } from '@/openapi/contract';
 import type { Scope } from '@/openapi/scopes';
 import { Attachment, attachmentResponse, jsonResponse, problemResponse, Reply } from './answer';
-import { authenticate, requireSameOrigin } from './authenticate';
+import { readCredential, requireSameOrigin } from './authenticate';
 import { checkAnswer } from './checkAnswer';
 import { loggable, problemOf } from './faults';
 import { type BodyInput, DEFAULT_LIMIT, readIdempotency, readInput, readParams, readQuery } from './input';
@@ -40,6 +41,14 @@ export interface Input<C extends Contract> {
 
 type Answered<C extends Contract> = Promise<AnswerOf<C> | Reply | Attachment>;
 
+/** A request as it arrived: read, but not yet known to come from anybody. */
+export interface Arrived<C extends Contract> {
+  params: ParamsOf<C>;
+  query: QueryOf<C>;
+  raw: RawBody | null;
+  idempotency: CallerContext['idempotency'];
+}
+
 /**
  * An operation on an organization's own things: the caller is known, allowed and valid, and the verb runs in one
  * transaction, with its answer kept under the Idempotency-Key if there is one.
@@ -58,55 +67,130 @@ export function bodyEndpoint<C extends Contract>(
   operation: C,
   verb: (context: VerbContext, input: Omit<Input<C>, 'body'>, body: BodyInput) => Answered<C>,
 ): Handler {
-  return handler(operation, async (request, base, params) => {
-    const caller = await admit(request, operation, base);
-    const input = { params: readParams(operation.params, params), query: readQueryOf(request, operation) };
-    requireProject(caller, input.params);
-    const raw = operation.body ? await readBody(request, operation.body.limit ?? DEFAULT_LIMIT) : null;
-    const body = raw && operation.body ? await readInput(operation.body, raw) : ({ kind: 'none' } as const);
-    const idempotency = readIdempotency(request, operation, raw?.bytes ?? null);
-    const kept = await tenantTransaction(caller.organizationId, async (tenant) => {
-      const context = { ...base, caller, idempotency, tenant };
-      let plain: Reply | Attachment | undefined;
+  return callerHandler(operation, {
+    prepare: async ({ raw }): Promise<BodyInput> =>
+      raw && operation.body ? readInput(operation.body, raw) : { kind: 'none' },
+    run: async (context, { params, query }, body) => {
+      let answer: Reply | Attachment | undefined;
       const produce = async () => {
-        const answer = await verb(context, input as Omit<Input<C>, 'body'>, body);
-        plain =
-          answer instanceof Reply || answer instanceof Attachment
-            ? answer
-            : new Reply(successStatus(operation), answer);
-        return plain instanceof Reply
-          ? { status: plain.status, text: replyText(operation, plain) ?? '' }
-          : { status: 200, text: '' };
+        const given = await verb(context, { params, query }, body);
+        answer =
+          given instanceof Reply || given instanceof Attachment
+            ? given
+            : new Reply(successStatus(operation), given);
+        if (answer instanceof Attachment) return { status: 200, text: '' };
+        return { status: answer.status, text: replyText(operation, answer) ?? '' };
       };
-      const answer = await answerOnce(context, operation.id, produce, operation.secret);
-      return { ...answer, plain };
-    });
-    if (kept.plain instanceof Attachment) return attachmentResponse(kept.plain, base.requestId);
-    const headers = { ...kept.plain?.headers, ...(kept.replayed ? { 'Idempotency-Replayed': 'true' } : {}) };
-    return jsonResponse(kept.status, kept.text === '' ? null : kept.text, base.requestId, headers);
+      const { status, text, replayed } = await answerOnce(context, operation.id, produce, operation.secret);
+      if (answer instanceof Attachment) return attachmentResponse(answer, context.requestId);
+      const headers = { ...answer?.headers, ...(replayed ? REPLAYED : {}) };
+      return jsonResponse(status, text === '' ? null : text, context.requestId, headers);
+    },
   });
 }
 
-/** An operation whose verb reads the bytes itself and runs its own transactions, so that they are never lost. */
-export function rawEndpoint<C extends Contract>(
-  operation: C,
-  verb: (
+const REPLAYED = { 'Idempotency-Replayed': 'true' };
+
+/** An operation that keeps the bytes it gets whatever becomes of them. */
+export interface RawOperation<C extends Contract, P, A> {
+  /** Reads the bytes; what is wrong with them is part of the answer, not thrown. */
+  prepare(raw: RawBody): Promise<P>;
+  /** Reads ahead of knowing the caller, in the same packet; not looked at until the caller is let in. */
+  ahead(tenant: Tenant, input: Omit<Input<C>, 'body'>, prepared: P): Promise<A> | null;
+  run(
+    context: VerbContext,
+    input: Omit<Input<C>, 'body'> & { raw: RawBody },
+    prepared: P,
+    ahead: Promise<A> | null,
+  ): Promise<{ status: number; text: string; replayed: boolean }>;
+  /** Keeps what was refused, after the rollback. */
+  refused(
     context: CallerContext,
     input: Omit<Input<C>, 'body'> & { raw: RawBody },
-  ) => Promise<{ status: number; text: string; replayed: boolean }>,
-): Handler {
-  return handler(operation, async (request, base, params) => {
-    const caller = await admit(request, operation, base);
-    const input = { params: readParams(operation.params, params), query: readQueryOf(request, operation) };
-    requireProject(caller, input.params);
-    const raw = await readBody(request, operation.body?.limit ?? DEFAULT_LIMIT);
-    const idempotency = readIdempotency(request, operation, raw.bytes);
-    const context = { ...base, caller, idempotency };
-    const answer = await verb(context, { ...(input as Omit<Input<C>, 'body'>), raw });
-    if (getConfig().validateAnswers) checkAnswer(operation, answer.status, JSON.parse(answer.text));
-    const headers: Record<string, string> = answer.replayed ? { 'Idempotency-Replayed': 'true' } : {};
-    return jsonResponse(answer.status, answer.text, base.requestId, headers);
+    prepared: P,
+    problem: Problem,
+  ): Promise<void>;
+}
+
+export function rawEndpoint<C extends Contract, P, A>(operation: C, steps: RawOperation<C, P, A>): Handler {
+  const withRaw = ({ params, query, raw }: Arrived<C>) => ({ params, query, raw: raw! });
+  return callerHandler(operation, {
+    prepare: ({ raw }) => steps.prepare(raw!),
+    ahead: (tenant, arrived, prepared) => steps.ahead(tenant, arrived, prepared),
+    run: async (context, arrived, prepared, ahead) => {
+      const answer = await steps.run(context, withRaw(arrived), prepared, ahead);
+      if (getConfig().validateAnswers) checkAnswer(operation, answer.status, JSON.parse(answer.text));
+      return jsonResponse(answer.status, answer.text, context.requestId, answer.replayed ? REPLAYED : {});
+    },
+    refused: (context, arrived, prepared, problem) =>
+      steps.refused(context, withRaw(arrived), prepared, problem),
   });
+}
+
+interface CallerSteps<C extends Contract, P, A> {
+  prepare(arrived: Arrived<C>): Promise<P>;
+  ahead?(tenant: Tenant, arrived: Arrived<C>, prepared: P): Promise<A> | null;
+  run(context: VerbContext, arrived: Arrived<C>, prepared: P, ahead: Promise<A> | null): Promise<Response>;
+  refused?(context: CallerContext, arrived: Arrived<C>, prepared: P, problem: Problem): Promise<void>;
+}
+
+/** Bodies up to this size are read before their sender is known; larger ones only from somebody who may send them. */
+const SMALL_BODY = 65_536;
+
+/**
+ * One request of a caller. What arrived is read first, but whatever is wrong with it waits until the caller is known
+ * and allowed; then identification, the verb's reading and its writing share one transaction.
+ */
+function callerHandler<C extends Contract, P, A>(operation: C, steps: CallerSteps<C, P, A>): Handler {
+  return handler(operation, async (request, base, pathParams) => {
+    const now = runtime.now();
+    const shown = await readCredential(request, now);
+    if (operation.body && !(Number(request.headers.get('content-length') ?? Number.NaN) <= SMALL_BODY)) {
+      await callerTransaction(shown, now, async (_, identified) => admit(await identified, operation, base));
+    }
+    const read = await attempt(async () => {
+      const arrived = await readArrived(request, operation, pathParams);
+      return { arrived, prepared: await steps.prepare(arrived) };
+    });
+    let known: CallerContext | undefined;
+    try {
+      return await callerTransaction(shown, now, async (tenant, identified) => {
+        const ahead =
+          'value' in read ? (steps.ahead?.(tenant, read.value.arrived, read.value.prepared) ?? null) : null;
+        ahead?.catch(() => undefined);
+        const caller = admit(await identified, operation, base);
+        if ('failure' in read) throw read.failure;
+        const { arrived, prepared } = read.value;
+        requireProject(caller, arrived.params);
+        known = { ...base, caller, idempotency: arrived.idempotency };
+        return steps.run({ ...known, tenant }, arrived, prepared, ahead);
+      });
+    } catch (error) {
+      if (error instanceof Problem && known && 'value' in read) {
+        await steps.refused?.(known, read.value.arrived, read.value.prepared, error);
+      }
+      throw error;
+    }
+  });
+}
+
+async function attempt<T>(work: () => Promise<T>): Promise<{ value: T } | { failure: unknown }> {
+  try {
+    return { value: await work() };
+  } catch (failure) {
+    return { failure };
+  }
+}
+
+async function readArrived<C extends Contract>(
+  request: Request,
+  operation: C,
+  pathParams: Record<string, unknown>,
+): Promise<Arrived<C>> {
+  const params = readParams(operation.params, pathParams) as ParamsOf<C>;
+  const query = readQueryOf(request, operation) as QueryOf<C>;
+  const raw = operation.body ? await readBody(request, operation.body.limit ?? DEFAULT_LIMIT) : null;
+  return { params, query, raw, idempotency: readIdempotency(request, operation, raw?.bytes ?? null) };
 }
 
 /** An operation that anybody may ask for. */
@@ -162,8 +246,8 @@ interface Noted {
   noted: { actor?: string; organization?: string };
 }
 
-async function admit(request: Request, operation: Contract, base: PublicContext & Noted): Promise<Caller> {
-  const caller = await authenticate(request, runtime.now());
+/** Notes who asks and refuses who may not. */
+function admit(caller: Caller, operation: Contract, base: Noted): Caller {
   base.noted = { actor: `${caller.kind}:${caller.name}`, organization: caller.organizationId };
   const scope = operation.access;
   if (scope !== 'signedIn' && !caller.scopes.includes(scope as Scope)) {

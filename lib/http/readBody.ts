@@ -7,27 +7,35 @@ import { Problem } from '@/lib/problem';
  * @throws Problem where it exceeds `limit` bytes or breaks off
  */
 export async function readBody(request: Request, limit: number): Promise<RawBody> {
+  const bytes = await readBytes(request, limit);
+  const [mediaType, ...parameters] = (request.headers.get('content-type') ?? '').toLowerCase().split(';');
+  const charset = parameters.map((p) => /^\s*charset\s*=\s*"?([^"\s]+)"?\s*$/.exec(p)?.[1]).find(Boolean);
+  const encoding = request.headers.get('content-encoding')?.trim().toLowerCase();
+  return {
+    bytes,
+    mediaType: mediaType.trim(),
+    charset: charset ?? null,
+    contentEncoding: encoding && encoding !== 'identity' ? encoding : null,
+  };
+}
+
+async function readBytes(request: Request, limit: number): Promise<Uint8Array> {
   const tooLarge = () => new Problem('body_too_large', `Bodies here are limited to ${limit} bytes.`);
-  if (Number(request.headers.get('content-length') ?? 0) > limit) throw tooLarge();
-  const chunks: Uint8Array[] = [];
-  let size = 0;
+  const declared = request.headers.get('content-length');
+  if (declared !== null && Number(declared) > limit) throw tooLarge();
   try {
+    // The server lets no more through than was declared, so that only an undeclared length needs counting.
+    if (declared !== null) return new Uint8Array(await request.arrayBuffer());
+    const chunks: Uint8Array[] = [];
+    let size = 0;
     for await (const chunk of (request.body ?? []) as AsyncIterable<Uint8Array>) {
       size += chunk.byteLength;
       if (size > limit) throw tooLarge();
       chunks.push(chunk);
     }
+    return Buffer.concat(chunks, size);
   } catch (error) {
     if (error instanceof Problem) throw error;
     throw new Problem('body_unreadable', 'The body broke off before its end.');
   }
-  const [mediaType, ...parameters] = (request.headers.get('content-type') ?? '').toLowerCase().split(';');
-  const charset = parameters.map((p) => /^\s*charset\s*=\s*"?([^"\s]+)"?\s*$/.exec(p)?.[1]).find(Boolean);
-  const encoding = request.headers.get('content-encoding')?.trim().toLowerCase();
-  return {
-    bytes: chunks.length === 1 ? chunks[0] : Buffer.concat(chunks, size),
-    mediaType: mediaType.trim(),
-    charset: charset ?? null,
-    contentEncoding: encoding && encoding !== 'identity' ? encoding : null,
-  };
 }

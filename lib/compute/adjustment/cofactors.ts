@@ -57,12 +57,13 @@ export class Cofactors {
     return b === c ? sum + this.inverse[b][row * (model.blocks[b + 1] - model.blocks[b]) + column] : sum;
   }
 
-  /** aᵀQa of a function of the unknowns, a given by its non-zero entries. */
-  variance(columns: ArrayLike<number>, entries: ArrayLike<number>): number {
+  /** aᵀQa of a function of the unknowns, a given by its non-zero entries [from, to) of two lists. */
+  variance(columns: ArrayLike<number>, entries: ArrayLike<number>, from = 0, to = columns.length): number {
     let sum = 0;
-    for (let a = 0; a < columns.length; a++) {
-      sum += entries[a] * entries[a] * this.of(columns[a], columns[a]);
-      for (let b = 0; b < a; b++) sum += 2 * entries[a] * entries[b] * this.of(columns[a], columns[b]);
+    for (let a = from; a < to; a++) {
+      let row = 0.5 * entries[a] * this.of(columns[a], columns[a]);
+      for (let b = from; b < a; b++) row += entries[b] * this.of(columns[a], columns[b]);
+      sum += 2 * entries[a] * row;
     }
     return sum;
   }

@@ -29,9 +29,12 @@ export function reliability(solution: Solution, cofactors: Cofactors): Reliabili
   const minimalDetectable = new Float64Array(rows);
   for (let i = 0; i < rows; i++) {
     const p = model.weights[i];
-    const from = model.rowStart[i];
-    const to = model.rowStart[i + 1];
-    const variance = cofactors.variance(model.columns.subarray(from, to), coefficients.subarray(from, to));
+    const variance = cofactors.variance(
+      model.columns,
+      coefficients,
+      model.rowStart[i],
+      model.rowStart[i + 1],
+    );
     const r = Math.min(1, Math.max(0, 1 - p * variance));
     const controlled = r > CONTROLLED;
     const sigma = 1 / Math.sqrt(p);

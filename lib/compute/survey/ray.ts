@@ -36,11 +36,12 @@ export function rayTo(
   k: number,
   { combinedFactor, earthRadius }: Surroundings,
 ): Ray {
-  const grid = Math.hypot(east, north);
+  // Math.hypot allocates; this runs for every reading of every iteration.
+  const grid = Math.sqrt(east * east + north * north);
   const d = grid / combinedFactor;
   const y = d * (1 + height / earthRadius);
   const x = height - (d * d) / (2 * earthRadius);
-  const slope = Math.hypot(y, x);
+  const slope = Math.sqrt(y * y + x * x);
   const yD = 1 + height / earthRadius;
   const yH = d / earthRadius;
   const xD = -d / earthRadius;

@@ -204,15 +204,18 @@ function markResidual(
   surroundings: Surroundings,
 ): FittedMark['residual'] {
   const places: { point: Point; withHeight: boolean }[] = [];
-  const groups = new Map<string, { erection: number; values: Partial<Record<ReadingKind, number>> }>();
+  // Readings of one erection and set stand together.
+  const groups: { erection: number; set: number; values: Partial<Record<ReadingKind, number>> }[] = [];
   for (const { kind, erection, set, value } of model.readings) {
     if (erections[erection].target !== mark.name) continue;
-    const key = `${erection}/${set}`;
-    const group = groups.get(key) ?? { erection, values: {} };
+    let group = groups.at(-1);
+    if (group?.erection !== erection || group.set !== set) {
+      group = { erection, set, values: {} };
+      groups.push(group);
+    }
     group.values[kind] = value;
-    groups.set(key, group);
   }
-  for (const { erection, values } of groups.values()) {
+  for (const { erection, values } of groups) {
     const { direction, zenith, distance } = values;
     const { targetHeight } = erections[erection];
     if (direction === undefined || distance === undefined) continue;

@@ -80,17 +80,19 @@ export function stationModel(input: {
     blocks[b + 1] = next;
   });
 
-  for (const reading of readings) {
-    const first = markStart.get(erections[reading.erection].target)!;
-    const own = ownStart[reading.erection];
-    const place = (axes: number[]) => axes.flatMap((a) => (own < 0 ? first + a : [first + a, own + a]));
-    const columns =
-      reading.kind === 'direction'
-        ? [EASTING, NORTHING, ORIENTATION, ...(reading.face === 0 ? [] : [collimation]), ...place([0, 1])]
-        : reading.kind === 'zenith'
-          ? [EASTING, NORTHING, AXIS, REFRACTION, ...(reading.face === 0 ? [] : [index]), ...place([0, 1, 2])]
-          : [EASTING, NORTHING, AXIS, ...(scale < 0 ? [] : [scale]), ...place([0, 1, 2])];
-    rows.add(columns, reading.sigma);
+  for (const { kind, erection, face, sigma } of readings) {
+    const columns = kind === 'direction' ? [EASTING, NORTHING, ORIENTATION] : [EASTING, NORTHING, AXIS];
+    if (kind === 'zenith') columns.push(REFRACTION);
+    if (kind === 'direction' && face !== 0) columns.push(collimation);
+    if (kind === 'zenith' && face !== 0) columns.push(index);
+    if (kind === 'distance' && scale >= 0) columns.push(scale);
+    const first = markStart.get(erections[erection].target)!;
+    const own = ownStart[erection];
+    for (let axis = 0; axis < (kind === 'direction' ? 2 : 3); axis++) {
+      columns.push(first + axis);
+      if (own >= 0) columns.push(own + axis);
+    }
+    rows.add(columns, sigma);
   }
 
   const x = new Float64Array(blocks[marks.length]);
@@ -132,6 +134,7 @@ export function stationModel(input: {
   }
 
   const structure = rows.build();
+  const firstOf = Int32Array.from(readings, ({ erection }) => markStart.get(erections[erection].target)!);
   const heldUnknown = Int32Array.from(held, (h) => h.unknown);
   const heldValue = Float64Array.from(held, (h) => h.value);
   return {
@@ -147,7 +150,7 @@ export function stationModel(input: {
     linearise(point, coefficients, misclosures) {
       for (let i = 0; i < readings.length; i++) {
         const { kind, erection, value, face } = readings[i];
-        const first = markStart.get(erections[erection].target)!;
+        const first = firstOf[i];
         const own = ownStart[erection];
         let east = point[first] - point[EASTING];
         let north = point[first + 1] - point[NORTHING];

@@ -8,6 +8,11 @@ export interface WorkAccuracy {
   vertical: number;
 }
 
+const RAYS = Array.from({ length: 72 }, (_, i) => {
+  const azimuth = (i * Math.PI) / 36;
+  return { sine: Math.sin(azimuth), cosine: Math.cos(azimuth) };
+});
+
 /**
  * What a setup can do at a distance. Horizontal: the station and the orientation as a lever of that length, in
  * the worst direction. Vertical: the axis, the zenith angle and refraction over that length.
@@ -23,15 +28,15 @@ export function accuracyAtWork(
 ): WorkAccuracy {
   const q = (i: number, j: number) => station.covariance[i * STATION_UNKNOWNS + j];
   const lever = radius * combinedFactor;
-  // Var(α) in the direction across the ray turns with α: the largest eigenvalue over rays 5° apart.
+  // The variance across the ray turns with it: the largest eigenvalue over rays 5° apart.
   let worst = 0;
-  for (let degree = 0; degree < 360; degree += 5) {
-    const azimuth = (degree * Math.PI) / 180;
-    const [east, north] = [lever * Math.cos(azimuth), -lever * Math.sin(azimuth)];
+  for (const { sine, cosine } of RAYS) {
+    const [east, north] = [lever * cosine, -lever * sine];
     const ee = q(0, 0) + east * east * q(3, 3) + 2 * east * q(0, 3);
     const nn = q(1, 1) + north * north * q(3, 3) + 2 * north * q(1, 3);
     const en = q(0, 1) + east * north * q(3, 3) + east * q(1, 3) + north * q(0, 3);
-    worst = Math.max(worst, (ee + nn) / 2 + Math.hypot((ee - nn) / 2, en));
+    const spread = Math.sqrt(((ee - nn) / 2) ** 2 + en * en);
+    worst = Math.max(worst, (ee + nn) / 2 + spread);
   }
   const bend = -(radius * radius) / (2 * earthRadius);
   const vertical = q(2, 2) + (radius * zenithSigma) ** 2 + bend * bend * q(4, 4) + 2 * bend * q(2, 4);

@@ -1,4 +1,4 @@
-import { tenantTransaction } from '@/db/tenant';
+import type { Tenant } from '@/db/tenant';
 import { sha256 } from '@/lib/access/secrets';
 import type { Surface } from '@/lib/compute/grade/surface';
 import type { RawBody } from '@/lib/formats/body';
@@ -23,34 +23,55 @@ import { loadSite, type Site } from './site';
 import { writeUpload } from './write';
 
 type Create = typeof contract.createUpload;
+type Input = { params: ParamsOf<Create>; query: QueryOf<Create> };
+
+/** The document of a body, or why it cannot be read at all. */
+export type Prepared = ReadDocument | Problem;
 
 /**
  * Receives observations: the bytes are kept with their results in one transaction or, where nothing of them can be
  * accepted, as refused in a second one.
  */
-export async function createUpload(
-  context: CallerContext,
-  input: { params: ParamsOf<Create>; query: QueryOf<Create>; raw: RawBody },
-): Promise<{ status: number; text: string; replayed: boolean }> {
-  const { organizationId } = context.caller;
-  const { projectId } = input.params;
-  let clientId: string | null = null;
-  try {
-    const read = await readDocument(input.raw);
-    clientId = read.value?.clientId ?? null;
-    return await tenantTransaction(organizationId, (tenant) => {
-      const inside = { ...context, tenant };
-      return answerOnce(inside, 'createUpload', async () => {
-        const { status, receipt } = await process(inside, input, read);
-        return { status, text: JSON.stringify(receipt) };
-      });
+export const createUpload = {
+  async prepare(raw: RawBody): Promise<Prepared> {
+    try {
+      return await readDocument(raw);
+    } catch (error) {
+      if (error instanceof Problem) return error;
+      throw error;
+    }
+  },
+
+  /** All that the document names, in one read. */
+  ahead(tenant: Tenant, { params }: Input, prepared: Prepared): Promise<Site | null> | null {
+    if (prepared instanceof Problem || prepared.value === null) return null;
+    return loadSite(tenant, params.projectId, needsOf(prepared.value));
+  },
+
+  run(
+    context: VerbContext,
+    input: Input & { raw: RawBody },
+    prepared: Prepared,
+    ahead: Promise<Site | null> | null,
+  ) {
+    return answerOnce(context, 'createUpload', async () => {
+      if (prepared instanceof Problem) throw prepared;
+      const { status, receipt } = await process(context, input, prepared, await ahead);
+      return { status, text: JSON.stringify(receipt) };
     });
-  } catch (error) {
-    if (error instanceof Problem && isKept(error))
-      await keepRefused(context, projectId, input.raw, clientId, error);
-    throw error;
-  }
-}
+  },
+
+  async refused(
+    context: CallerContext,
+    { params, raw }: Input & { raw: RawBody },
+    prepared: Prepared,
+    problem: Problem,
+  ) {
+    if (!isKept(problem)) return;
+    const clientId = prepared instanceof Problem ? null : (prepared.value?.clientId ?? null);
+    await keepRefused(context, params.projectId, raw, clientId, problem);
+  },
+};
 
 /** Nothing is kept for a project that is not there, nor twice of a request that is being answered already. */
 function isKept({ code }: Problem): boolean {
@@ -64,14 +85,13 @@ function isKept({ code }: Problem): boolean {
 
 async function process(
   context: VerbContext,
-  { params, query, raw }: { params: ParamsOf<Create>; query: QueryOf<Create>; raw: RawBody },
+  { params, query, raw }: Input & { raw: RawBody },
   read: ReadDocument,
+  site: Site | null,
 ) {
-  const { tenant, caller, runtime } = context;
-  const { organizationId } = caller;
+  const { tenant, runtime } = context;
   const document = read.value;
   if (document === null) throw refusal(read);
-  const site = await loadSite(tenant, organizationId, params.projectId, needsOf(document));
   if (!site) throw new Problem('not_found', 'There is no such project.');
   const length = new Lengths(query.length ?? site.project.lengthUnit);
   if (site.before) {

@@ -73,6 +73,9 @@ export interface Site {
 
 export type BenchRow = InferSelectModel<typeof benchChecks>;
 
+/** The transaction's own organization: an upload is looked up before its sender is known by name. */
+const TENANT = `(select nullif(current_setting('app.organization_id', true), '')::uuid)`;
+
 const list = (query: string) => `(select coalesce(json_agg(x), '[]') from (${query}) x)`;
 const one = (query: string) => `(select to_json(x) from (${query}) x)`;
 
@@ -82,22 +85,22 @@ const PROJECT = `select organization_id as "organizationId", id, name, length_un
     control_sigma_vertical as "controlSigmaVertical", position_sigma_horizontal as "positionSigmaHorizontal",
     position_sigma_vertical as "positionSigmaVertical", setup_valid_minutes as "setupValidMinutes",
     display_decimals as "displayDecimals"
-  from projects where organization_id = $1 and id = $2`;
+  from projects where organization_id = ${TENANT} and id = $1`;
 
 const CLASSES = `select name, json_build_object('horizontal', residual_horizontal, 'vertical', residual_vertical) as residual,
     json_build_object('radius', work_radius, 'horizontal', work_horizontal, 'vertical', work_vertical) as work,
     check_required as "checkRequired"
-  from tolerance_classes where organization_id = $1 and project_id = $2 order by position`;
+  from tolerance_classes where organization_id = ${TENANT} and project_id = $1 order by position`;
 
 const BEFORE = `select u.id, encode(r.sha256, 'hex') as sha256
   from uploads u join raw_bodies r on r.organization_id = u.organization_id and r.id = u.raw_body_id
-  where u.organization_id = $1 and u.project_id = $2 and u.client_id = $3 and u.status = 'processed'`;
+  where u.organization_id = ${TENANT} and u.project_id = $1 and u.client_id = $2 and u.status = 'processed'`;
 
 const CONTROL = `select p.name, v.version, v.easting, v.northing, v.elevation, v.sigma_horizontal as "horizontalSigma",
     v.sigma_vertical as "verticalSigma", p.status, v.submitted -> 'sigma' <> 'null'::jsonb as "sigmaStated"
   from control_points p join control_point_versions v on v.organization_id = p.organization_id
     and v.project_id = p.project_id and v.name = p.name and v.version = p.current_version
-  where p.organization_id = $1 and p.project_id = $2 and p.name = any($4::text[])`;
+  where p.organization_id = ${TENANT} and p.project_id = $1 and p.name = any($3::text[])`;
 
 const INSTRUMENTS = `select i.id, i.name, c.version, c.accuracy_stated as "accuracyStated",
     json_build_object('direction', c.direction, 'zenith', c.zenith, 'distance', c.distance,
@@ -106,12 +109,12 @@ const INSTRUMENTS = `select i.id, i.name, c.version, c.accuracy_stated as "accur
     c.carrier_wavelength as "carrierWavelength", c.reference_refractivity as "referenceRefractivity"
   from instruments i join instrument_calibrations c on c.organization_id = i.organization_id
     and c.instrument_id = i.id and c.version = i.calibration_version
-  where i.organization_id = $1 and i.project_id = $2 and i.name = any($5::text[])`;
+  where i.organization_id = ${TENANT} and i.project_id = $1 and i.name = any($4::text[])`;
 
 const LAYERS = `select distinct on (l.name) l.name, l.version, l.surface_id as "surfaceId", l."offset", l.below, l.above,
     s.represents, encode(s.sha256, 'hex') as "surfaceSha256"
   from layers l join surfaces s on s.organization_id = l.organization_id and s.id = l.surface_id
-  where l.organization_id = $1 and l.project_id = $2 and l.name = any($6::text[])
+  where l.organization_id = ${TENANT} and l.project_id = $1 and l.name = any($5::text[])
   order by l.name, l.version desc`;
 
 const camel = (table: string, columns: readonly string[]) =>
@@ -177,20 +180,20 @@ const SETUPS = `select to_json(x) as setup, r.result, x.checks, x.releases, x."s
         order by e.seq`)} as releases,
       (select coalesce(json_agg(b.client_id), '[]') from observations b
         where b.organization_id = s.organization_id and b.setup_id = s.root_id) as "shotIds"
-    from setups s where s.organization_id = $1 and s.project_id = $2
-      and (s.client_id = any($7::text[]) or s.id = any($8::uuid[]))) x
-  join setup_results r on r.organization_id = $1 and r.setup_id = x.id and r.version = x."resultVersion"`;
+    from setups s where s.organization_id = ${TENANT} and s.project_id = $1
+      and (s.client_id = any($6::text[]) or s.id = any($7::uuid[]))) x
+  join setup_results r on r.organization_id = ${TENANT} and r.setup_id = x.id and r.version = x."resultVersion"`;
 
 const taken = (table: string, parameter: number) =>
   `(select coalesce(json_agg(client_id), '[]') from ${table}
-    where organization_id = $1 and project_id = $2 and client_id = any($${parameter}::text[]))`;
+    where organization_id = ${TENANT} and project_id = $1 and client_id = any($${parameter}::text[]))`;
 
 const SITE: NamedStatement = {
   name: 'upload_site',
   text: `select ${one(PROJECT)} as project, ${list(CLASSES)} as classes, ${one(BEFORE)} as before,
     ${list(CONTROL)} as control, ${list(INSTRUMENTS)} as instruments, ${list(LAYERS)} as layers, ${list(SETUPS)} as setups,
-    ${taken('setups', 9)} as taken_setups, ${taken('setup_checks', 10)} as taken_checks,
-    ${taken('grade_checks', 11)} as taken_grade, ${taken('bench_checks', 12)} as taken_bench`,
+    ${taken('setups', 8)} as taken_setups, ${taken('setup_checks', 9)} as taken_checks,
+    ${taken('grade_checks', 10)} as taken_grade, ${taken('bench_checks', 11)} as taken_bench`,
 };
 
 const UUID = /^[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}$/i;
@@ -210,15 +213,9 @@ interface SiteRow {
 }
 
 /** Reads, in one round trip, all that an upload names; null where the project does not exist. */
-export async function loadSite(
-  tenant: Tenant,
-  organizationId: string,
-  projectId: string,
-  needs: Needs,
-): Promise<Site | null> {
+export async function loadSite(tenant: Tenant, projectId: string, needs: Needs): Promise<Site | null> {
   const setups = [...needs.setups];
   const { rows } = await tenant.run<SiteRow & Record<string, unknown>>(SITE, [
-    organizationId,
     projectId,
     needs.clientId,
     [...needs.control],
