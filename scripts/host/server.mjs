@@ -28,6 +28,8 @@ const settings = {
   synchronous_commit: 'on',
   fsync: 'on',
   full_page_writes: 'on',
+  // A hub that fills up at once is planned for its real sizes within seconds.
+  autovacuum_naptime: '10s',
   password_encryption: 'scram-sha-256',
   timezone: 'UTC',
   log_timezone: 'UTC',

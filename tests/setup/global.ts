@@ -4,6 +4,7 @@ import pg from 'pg';
 import type { ProvidedContext } from 'vitest';
 import type { TestProject } from 'vitest/node';
 import { startThrowawayCluster, type ThrowawayCluster } from '../../scripts/host/cluster.mjs';
+import { newDatabase, startHub } from './hub';
 
 const template = 'hubtack_template';
 
@@ -22,6 +23,8 @@ declare module 'vitest' {
       /** The migrated database to copy, by `create database … template …` as the owner. */
       template: string;
     };
+    /** A running hub for each vitest worker; see `ownHub`. */
+    hubs: { url: string; appUrl: string; superuserUrl: string }[];
   }
 }
 
@@ -33,8 +36,21 @@ export default async function setup(project: TestProject) {
     await cluster.stop();
     throw error;
   }
-  project.provide('cluster', waysInto(cluster));
-  return cluster.stop;
+  const ways = waysInto(cluster);
+  project.provide('cluster', ways);
+  const workers = Array.from(
+    { length: project.config.maxWorkers as number },
+    (_, i) => `hubtack_worker_${i + 1}`,
+  );
+  const hubs = await Promise.all(workers.map(async (name) => startHub(await newDatabase(ways, name))));
+  project.provide(
+    'hubs',
+    hubs.map(({ url, appUrl, superuserUrl }) => ({ url, appUrl, superuserUrl })),
+  );
+  return async () => {
+    await Promise.all(hubs.map((hub) => hub.stop()));
+    await cluster.stop();
+  };
 }
 
 function waysInto(cluster: ThrowawayCluster): ProvidedContext['cluster'] {
