@@ -15,6 +15,7 @@ function List({ title, problems }: { title: string; problems: Record<string, Pro
           <li key={code} className="border-b border-rule">
             <Link
               href={`/reference/problems/${code}`}
+              prefetch={false}
               className="group grid gap-x-6 py-2.5 no-underline md:grid-cols-[20rem_3rem_1fr]"
             >
               <code className="font-code text-[13px] text-ink">{code}</code>
