@@ -601,7 +601,7 @@ export const ITEM_PROBLEMS = {
   release_incomplete: problem(
     422,
     'A release to a machine needs its layer',
-    'A machine is released with layer and offset.',
+    'A machine is released with the layer that it will cut.',
     'Send layer with machine.',
   ),
   time_out_of_order: problem(

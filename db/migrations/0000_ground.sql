@@ -332,7 +332,7 @@ CREATE TABLE "acknowledgements" (
 	"project_id" uuid NOT NULL,
 	"setup_id" uuid NOT NULL,
 	"machine" text NOT NULL,
-	"reason" text NOT NULL,
+	"reason" text,
 	"opened_at" timestamp(6) with time zone NOT NULL,
 	"acknowledged_at" timestamp(6) with time zone,
 	"acknowledged_by" text,

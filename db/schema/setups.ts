@@ -217,7 +217,7 @@ export const acknowledgements = pgTable(
     projectId: uuid('project_id').notNull(),
     setupId: uuid('setup_id').notNull(),
     machine: text('machine').notNull(),
-    reason: text('reason').notNull(),
+    reason: text('reason'),
     openedAt: instant('opened_at').notNull(),
     acknowledgedAt: instant('acknowledged_at'),
     acknowledgedBy: text('acknowledged_by'),

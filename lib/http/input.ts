@@ -44,7 +44,7 @@ export type BodyInput =
 
 export async function readInput(body: Body, raw: RawBody): Promise<BodyInput> {
   if (raw.bytes.byteLength === 0) {
-    if (body.optional) return { kind: 'none' };
+    if (body.optional && body.json) return { kind: 'json', value: body.json.parse({}) };
     throw new Problem('body_required');
   }
   const text = await bodyText(raw, body.limit ?? DEFAULT_LIMIT);

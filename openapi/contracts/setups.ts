@@ -93,7 +93,7 @@ export const withdrawSetup = contract({
   access: 'setups:withdraw',
   params: SetupParams,
   query: LengthQuery,
-  body: { json: WithdrawCreate },
+  body: { json: WithdrawCreate, optional: true },
   answers: { 200: { description: 'The setup and what waits for an answer.', json: Withdrawal } },
   problems: ['setup_not_in_force'],
 });
@@ -145,7 +145,7 @@ export const answerAcknowledgement = contract({
   description: 'Says that the machine’s crew knows and has stopped working from the setup.',
   access: 'acknowledgements:write',
   params: AcknowledgementParams,
-  body: { json: AcknowledgementAnswer },
+  body: { json: AcknowledgementAnswer, optional: true },
   answers: { 200: { description: 'The acknowledgement.', json: Acknowledgement } },
   problems: ['already_answered'],
 });

@@ -213,7 +213,10 @@ export const ReleaseCreate = z
       .min(-1e4)
       .max(1e4)
       .optional()
-      .meta({ description: 'In the project’s length unit, signed as the layer’s.' }),
+      .meta({
+        description:
+          'In the project’s length unit, signed as the layer’s; it must be the layer’s, which stands where none is sent.',
+      }),
     validMinutes: z.int().min(5).max(20_160).optional(),
     releasedAt: z
       .string()
@@ -227,8 +230,8 @@ export const ReleaseCreate = z
   });
 
 export const WithdrawCreate = z
-  .strictObject({ reason: Text.min(1) })
-  .meta({ id: 'WithdrawCreate', example: { reason: 'The tripod was bumped.' } });
+  .strictObject({ note: Text.min(1).optional() })
+  .meta({ id: 'WithdrawCreate', example: { note: 'The tripod was bumped.' } });
 
 export const Pointing = z
   .object({

@@ -31,8 +31,8 @@ export const DEFAULT_ACCURACY: InstrumentAccuracy = {
   distancePpm: 2,
   collimation: 5 * ARCSECOND,
   instrumentCentring: 1 * MILLIMETRE,
-  targetCentring: 1.5 * MILLIMETRE,
-  targetHeight: 1.5 * MILLIMETRE,
+  targetCentring: 1 * MILLIMETRE,
+  targetHeight: 1 * MILLIMETRE,
 };
 
 /** Standard deviation in metres of one reading of a distance: a + b ppm as stated, added. */

@@ -15,7 +15,7 @@ export function presentAcknowledgement(
     machine: row.machine,
     setupId: row.setupId,
     station,
-    text: `${row.machine}: stop. ${station} is withdrawn: ${row.reason}`,
+    text: `${row.machine}: stop. ${station} is withdrawn${row.reason === null ? '.' : `: ${row.reason}`}`,
     openedAt: asMoment(row.openedAt),
     acknowledgedAt: asMomentOrNull(row.acknowledgedAt),
     acknowledgedBy: row.acknowledgedBy,

@@ -96,13 +96,6 @@ async function bind(context: VerbContext, project: ProjectRow, body: JsonOf<Rele
   const layer = await currentLayer(context.tenant, project, body.layer);
   if (!layer) throw invalid('/layer', 'layer_unknown', `There is no layer ${body.layer} in this project.`);
   const length = new Lengths(project.lengthUnit);
-  if (body.machine !== undefined && body.offset === undefined) {
-    throw invalid(
-      '/offset',
-      'release_incomplete',
-      `Say the offset that ${body.machine} will use; the layer's is ${length.text(layer.offset)}.`,
-    );
-  }
   if (body.offset !== undefined && !isSameOffset(length.in(body.offset), layer.offset)) {
     const detail = `${body.offset} ${length.name} is not the layer's offset of ${length.text(layer.offset)}.`;
     throw invalid('/offset', 'offset_mismatch', detail);

@@ -38,7 +38,7 @@ export async function withdrawSetup(
     projectId: project.id,
     setupId: setup.id,
     machine,
-    reason: body.reason,
+    reason: body.note ?? null,
     openedAt: now,
     acknowledgedAt: null,
     acknowledgedBy: null,
@@ -56,7 +56,7 @@ export async function withdrawSetup(
         layerVersion: null,
         surfaceSha256: null,
         offset: null,
-        note: body.reason,
+        note: body.note ?? null,
         effectiveAt: now,
         recordedAt: now,
         validUntil: null,
@@ -78,7 +78,7 @@ export async function withdrawSetup(
     type: 'setup.withdrawn',
     subject: setup.id,
     projectId: project.id,
-    data: { station: setup.station, reason: body.reason, machines: opened.map(({ machine }) => machine) },
+    data: { station: setup.station, note: body.note ?? null, machines: opened.map(({ machine }) => machine) },
   });
   const length = new Lengths(query.length ?? project.lengthUnit);
   return {
