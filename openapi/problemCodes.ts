@@ -26,7 +26,7 @@ export const REQUEST_PROBLEMS = {
   url_malformed: problem(
     400,
     'The address cannot be read',
-    'The path holds a broken percent-escape, a control character or a second host.',
+    'It holds a broken percent-escape, a control character, an empty segment, a step up or a second host.',
     'Percent-encode names in the path as UTF-8.',
   ),
   request_malformed: problem(

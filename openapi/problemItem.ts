@@ -23,5 +23,5 @@ export function pointerTo(path: readonly PropertyKey[]): string {
 
 /** Text that a database and a JSON document can hold: no NUL, no half surrogate pair. */
 function keepable(text: string): string {
-  return text.toWellFormed().replaceAll('\u0000', '\uFFFD').slice(0, 1000);
+  return text.slice(0, 1000).toWellFormed().replaceAll('\u0000', '\uFFFD');
 }

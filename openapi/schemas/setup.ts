@@ -18,6 +18,7 @@ export const SetupCheckTarget = z
       .enum(['independent', 'drift'])
       .meta({ description: 'A mark of the fit shows drift, not independence.' }),
     status: z.enum(['trusted', 'suspect', 'quarantined']),
+    published: z.object({ easting: figure, northing: figure, elevation: maybe }),
     difference: z.object({ easting: figure, northing: figure, elevation: maybe }).meta({
       description: 'Polar position minus published control.',
     }),
@@ -53,6 +54,9 @@ export const SetupTarget = z
     used: z.boolean(),
     purpose: z.enum(['orient', 'check', 'closing']),
     status: z.enum(['trusted', 'suspect', 'quarantined']),
+    published: z
+      .object({ easting: figure, northing: figure, elevation: maybe })
+      .meta({ description: 'Control as it was used.' }),
     residual: z.object({ easting: maybe, northing: maybe, elevation: maybe }).meta({
       description: 'Polar position from the fitted station minus published control.',
     }),
@@ -139,6 +143,9 @@ export const Setup = z
     errorEllipse: z
       .object({ semiMajor: figure, semiMinor: figure, azimuth: figure, confidence: z.literal(0.95) })
       .meta({ description: 'azimuth of the major axis from grid north, 0 to 180°.' }),
+    tolerance: z
+      .object({ horizontal: figure, vertical: figure })
+      .meta({ description: 'What targets and checks may show, as the class says.' }),
     accuracyAtWork: z
       .object({
         radius: figure,
@@ -208,15 +215,10 @@ export const ReleaseCreate = z
     machine: Name.optional(),
     layer: Name.optional(),
     surfaceSha256: Sha256.optional(),
-    offset: z
-      .number()
-      .min(-1e4)
-      .max(1e4)
-      .optional()
-      .meta({
-        description:
-          'In the project’s length unit, signed as the layer’s; it must be the layer’s, which stands where none is sent.',
-      }),
+    offset: z.number().min(-1e4).max(1e4).optional().meta({
+      description:
+        'In the project’s length unit, signed as the layer’s; it must be the layer’s, which stands where none is sent.',
+    }),
     validMinutes: z.int().min(5).max(20_160).optional(),
     releasedAt: z
       .string()

@@ -22,6 +22,7 @@ export interface CheckDifference {
   /** The mark took part in the fit: the check shows drift, not independence. */
   inFit: boolean;
   status: ControlMark['status'];
+  published: Pick<ControlMark, 'easting' | 'northing' | 'elevation'>;
   /** Polar position minus published control, m; null where it could not be formed. */
   difference: { easting: number; northing: number; elevation: number | null };
   /** u of the difference: worst direction in the horizontal, and vertical. */
@@ -40,6 +41,7 @@ export function checkDifferences(input: {
   shots: readonly Shot[];
   control: ReadonlyMap<string, ControlMark>;
   station: Station;
+  heightDetermined: boolean;
   crossCovariance: ReadonlyMap<string, ArrayLike<number>>;
   accuracy: InstrumentAccuracy;
   surroundings: Surroundings;
@@ -76,7 +78,8 @@ export function checkDifferences(input: {
 
     const east = point.easting - mark.easting;
     const north = point.northing - mark.northing;
-    const up = mark.elevation === null ? null : point.elevation - mark.elevation;
+    const compared = input.heightDetermined ? mark.elevation : null;
+    const up = compared === null ? null : point.elevation - compared;
     const worst =
       (covariance[0] + covariance[4]) / 2 + Math.hypot((covariance[0] - covariance[4]) / 2, covariance[1]);
     const uHorizontal = Math.sqrt(worst);
@@ -87,6 +90,7 @@ export function checkDifferences(input: {
         version: mark.version,
         inFit: cross !== undefined,
         status: mark.status,
+        published: { easting: mark.easting, northing: mark.northing, elevation: mark.elevation },
         difference: { easting: east, northing: north, elevation: up },
         uncertainty: { horizontal: uHorizontal, vertical: uVertical },
         horizontal: outcome(Math.hypot(east, north), uHorizontal, tolerance.horizontal),

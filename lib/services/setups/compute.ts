@@ -42,11 +42,12 @@ export function computeSetup(task: SetupTask): { result: SetupResult; checks: Ow
   const checks = PURPOSES.flatMap((purpose): OwnCheck[] => {
     const shots = task.shots.filter((shot) => shot.purpose === purpose && isUsed(shot));
     if (shots.length === 0) return [];
-    const { station } = fit;
+    const { station, heightDetermined } = fit;
     const given = {
       ...task,
       shots,
       station,
+      heightDetermined,
       crossCovariance: crossCovariances(fit),
       tolerance: limits.residual,
     };
@@ -68,7 +69,10 @@ export function computeSetup(task: SetupTask): { result: SetupResult; checks: Ow
     geometry: fit.geometry,
     faceErrors: fit.faceErrors,
     marks: fit.marks.map(keepMark),
-    leftOut: leftOut.map((name) => ({ name, version: control.get(name)!.version })),
+    leftOut: leftOut.map((name) => {
+      const { version, easting, northing, elevation } = control.get(name)!;
+      return { name, version, published: { easting, northing, elevation } };
+    }),
     accuracy,
     surroundings,
     ppm,
@@ -92,6 +96,7 @@ export function judgeWithCheck(
     shots: shots.filter((shot) => control.get(shot.target)?.status !== 'quarantined'),
     control,
     station: fit.station,
+    heightDetermined: fit.heightDetermined,
     crossCovariance: crossCovariances(fit),
     accuracy: result.accuracy,
     surroundings: result.surroundings,

@@ -66,6 +66,10 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
       azimuth: toDegrees(result.ellipse95.azimuth),
       confidence: 0.95,
     },
+    tolerance: {
+      horizontal: length.out(result.limits.residual.horizontal),
+      vertical: length.out(result.limits.residual.vertical),
+    },
     accuracyAtWork: {
       radius: length.out(result.limits.work.radius),
       horizontal: length.out(result.work.horizontal),
@@ -101,7 +105,7 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
     },
     targets: [
       ...result.marks.map((mark) => presentMark(mark, length)),
-      ...result.leftOut.map(presentLeftOut),
+      ...result.leftOut.map((mark) => presentLeftOut(mark, length)),
       ...presentedChecks.filter((check) => check.clientId === null).flatMap(targetsOfCheck),
     ],
     checks: presentedChecks,
@@ -139,6 +143,7 @@ function presentMark(mark: KeptMark, length: Lengths): z.output<typeof SetupTarg
     used: true,
     purpose: 'orient',
     status: mark.status,
+    published: presentPlace(mark.published, length),
     residual: {
       easting: length.outOrNull(mark.residual.easting),
       northing: length.outOrNull(mark.residual.northing),
@@ -166,12 +171,24 @@ function presentMark(mark: KeptMark, length: Lengths): z.output<typeof SetupTarg
   };
 }
 
-function presentLeftOut({ name }: { name: string }): z.output<typeof SetupTarget> {
+function presentPlace(place: KeptMark['published'], length: Lengths) {
+  return {
+    easting: length.out(place.easting),
+    northing: length.out(place.northing),
+    elevation: length.outOrNull(place.elevation),
+  };
+}
+
+function presentLeftOut(
+  { name, published }: SetupResult['leftOut'][number],
+  length: Lengths,
+): z.output<typeof SetupTarget> {
   return {
     target: name,
     used: false,
     purpose: 'orient',
     status: 'quarantined',
+    published: presentPlace(published, length),
     residual: { easting: null, northing: null, elevation: null },
     without: null,
     observations: [],
@@ -180,11 +197,12 @@ function presentLeftOut({ name }: { name: string }): z.output<typeof SetupTarget
 
 /** Check shots of the setup's own upload stand among its targets too, unused. */
 function targetsOfCheck({ purpose, targets }: z.output<typeof SetupCheck>): z.output<typeof SetupTarget>[] {
-  return targets.map(({ target, status, difference }) => ({
+  return targets.map(({ target, status, published, difference }) => ({
     target,
     used: false,
     purpose,
     status,
+    published,
     residual: difference,
     without: null,
     observations: [],
@@ -204,6 +222,7 @@ export function presentCheck(row: CheckRow, length: Lengths): z.output<typeof Se
       target: t.target,
       role: t.inFit ? ('drift' as const) : ('independent' as const),
       status: t.status,
+      published: presentPlace(t.published, length),
       difference: {
         easting: length.out(t.difference.easting),
         northing: length.out(t.difference.northing),

@@ -60,7 +60,7 @@ export interface SetupResult extends SetupVerdict {
   faceErrors: FaceErrors | null;
   marks: KeptMark[];
   /** Marks that took no part because they are quarantined. */
-  leftOut: { name: string; version: number }[];
+  leftOut: Pick<FittedMark, 'name' | 'version' | 'published'>[];
   /** What the computation was given beside the shots. */
   accuracy: InstrumentAccuracy;
   surroundings: Surroundings;
