@@ -1,5 +1,5 @@
 import type { Metadata, Viewport } from 'next';
-import { headers } from 'next/headers';
+import { cookies } from 'next/headers';
 import type { ReactNode } from 'react';
 import { code, head, text } from './fonts';
 import './globals.css';
@@ -17,10 +17,15 @@ export const viewport: Viewport = {
 };
 
 export default async function RootLayout({ children }: { children: ReactNode }) {
-  // Reading the headers makes every page dynamic: a page made beforehand could carry no nonce.
-  await headers();
+  // Reading the cookies makes every page dynamic: a page made beforehand could carry no nonce.
+  const theme = (await cookies()).get('hubtack_theme')?.value;
   return (
-    <html lang="en" className={`${text.variable} ${head.variable} ${code.variable}`}>
+    <html
+      lang="en"
+      data-theme={theme === 'day' || theme === 'night' ? theme : undefined}
+      suppressHydrationWarning
+      className={`${text.variable} ${head.variable} ${code.variable}`}
+    >
       <body>{children}</body>
     </html>
   );

@@ -1,6 +1,6 @@
 import Link from 'next/link';
-import { Heading } from './ui/Heading';
-import { Sheet } from './ui/Sheet';
+import { Heading } from '@/app/ui/frame/Heading';
+import { Sheet } from '@/app/ui/frame/Sheet';
 
 export default function NotFound() {
   return (

@@ -1,6 +1,6 @@
 import Link from 'next/link';
-import { Heading } from './ui/Heading';
-import { Sheet } from './ui/Sheet';
+import { Heading } from '@/app/ui/frame/Heading';
+import { Sheet } from '@/app/ui/frame/Sheet';
 
 const WAYS = [
   { href: '/sign-in', name: 'Sign in', what: 'For people who run setups, check grade or keep the hub.' },

@@ -2,7 +2,7 @@
 
 import { useRouter } from 'next/navigation';
 import { type FormEvent, useState } from 'react';
-import { Field } from '@/app/ui/Field';
+import { Field } from '@/app/ui/form/Field';
 import type { Problem } from '@/openapi/schemas/problem';
 
 /** What to tell somebody who could not sign in. */

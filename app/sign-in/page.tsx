@@ -1,6 +1,6 @@
 import type { Metadata } from 'next';
-import { Heading } from '@/app/ui/Heading';
-import { Sheet } from '@/app/ui/Sheet';
+import { Heading } from '@/app/ui/frame/Heading';
+import { Sheet } from '@/app/ui/frame/Sheet';
 import { SignInForm } from './SignInForm';
 
 export const metadata: Metadata = { title: 'Sign in' };

@@ -1,7 +1,7 @@
 import type { Metadata } from 'next';
 import Link from 'next/link';
-import { Heading } from '@/app/ui/Heading';
-import { Sheet } from '@/app/ui/Sheet';
+import { Heading } from '@/app/ui/frame/Heading';
+import { Sheet } from '@/app/ui/frame/Sheet';
 import { ITEM_PROBLEMS, type ProblemCode, REQUEST_PROBLEMS } from '@/openapi/problemCodes';
 
 export const metadata: Metadata = { title: 'Problems' };

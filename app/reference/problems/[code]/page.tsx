@@ -1,8 +1,8 @@
 import type { Metadata } from 'next';
 import Link from 'next/link';
 import { notFound } from 'next/navigation';
-import { Heading } from '@/app/ui/Heading';
-import { Sheet } from '@/app/ui/Sheet';
+import { Heading } from '@/app/ui/frame/Heading';
+import { Sheet } from '@/app/ui/frame/Sheet';
 import { ITEM_PROBLEMS, type ProblemCode, REQUEST_PROBLEMS } from '@/openapi/problemCodes';
 
 const PROBLEMS: Record<string, ProblemCode> = { ...REQUEST_PROBLEMS, ...ITEM_PROBLEMS };

@@ -1,5 +1,5 @@
 import Link from 'next/link';
-import { Mark } from './Mark';
+import { Mark } from '@/app/ui/draw/Mark';
 
 export function Brand() {
   return (

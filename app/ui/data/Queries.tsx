@@ -1,0 +1,24 @@
+'use client';
+
+import { QueryCache, QueryClient, QueryClientProvider } from '@tanstack/react-query';
+import { type ReactNode, useState } from 'react';
+import { Refusal } from './call';
+import { shouldRetry } from './queries';
+
+/** Somebody whose session has ended signs in again and comes back to the same page. */
+function toSignIn(error: Error): void {
+  if (!(error instanceof Refusal) || error.problem.status !== 401) return;
+  const { pathname, search } = window.location;
+  window.location.assign(`/sign-in?next=${encodeURIComponent(pathname + search)}`);
+}
+
+export function Queries({ children }: { children: ReactNode }) {
+  const [client] = useState(
+    () =>
+      new QueryClient({
+        queryCache: new QueryCache({ onError: toSignIn }),
+        defaultOptions: { queries: { retry: shouldRetry, staleTime: 10_000, networkMode: 'always' } },
+      }),
+  );
+  return <QueryClientProvider client={client}>{children}</QueryClientProvider>;
+}

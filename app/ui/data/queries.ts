@@ -1,0 +1,51 @@
+'use client';
+
+import { type QueryClient, useInfiniteQuery, useQuery } from '@tanstack/react-query';
+import type { AnswerOf, Contract } from '@/openapi/contract';
+import { type Call, call, Refusal } from './call';
+
+export function keyOf(path: string, input: object = {}): readonly unknown[] {
+  return [path, input];
+}
+
+/** Reads what an operation answers; `enabled: false` waits. */
+export function useRead<C extends Contract>(path: C['path'], input: Call<C> = {}, enabled = true) {
+  return useQuery<AnswerOf<C>>({
+    queryKey: keyOf(path, input),
+    queryFn: () => call<C>('GET' as Uppercase<C['method']>, path, input),
+    enabled,
+  });
+}
+
+interface Listed {
+  data: unknown[];
+  nextCursor: string | null;
+}
+
+type ItemOf<C extends Contract> = AnswerOf<C> extends { data: (infer T)[] } ? T : never;
+
+/** Reads a list page by page; `rows` holds all pages read so far. */
+export function usePages<C extends Contract>(path: C['path'], input: Call<C> = {}) {
+  const query = useInfiniteQuery({
+    queryKey: [...keyOf(path, input), 'pages'],
+    queryFn: ({ pageParam }) =>
+      call<C>('GET' as Uppercase<C['method']>, path, {
+        ...input,
+        query: { ...input.query, cursor: pageParam ?? undefined } as Call<C>['query'],
+      }) as Promise<unknown> as Promise<Listed>,
+    initialPageParam: null as string | null,
+    getNextPageParam: (last) => last.nextCursor,
+  });
+  const rows = (query.data?.pages ?? []).flatMap((page) => page.data) as ItemOf<C>[];
+  return { ...query, rows };
+}
+
+/** After a change: everything read under these paths is read again. */
+export function refresh(client: QueryClient, ...paths: string[]): Promise<void> {
+  return client.invalidateQueries({ predicate: ({ queryKey }) => paths.includes(String(queryKey[0])) });
+}
+
+/** What is worth asking again: a hub that is busy or out of reach, never a refusal. */
+export function shouldRetry(failures: number, error: Error): boolean {
+  return failures < 2 && !(error instanceof Refusal && error.problem.status < 500);
+}

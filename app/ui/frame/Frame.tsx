@@ -1,0 +1,82 @@
+'use client';
+
+import Link from 'next/link';
+import { useParams, usePathname } from 'next/navigation';
+import type { ReactNode } from 'react';
+import { Brand } from './Brand';
+import { Offline } from './Offline';
+import { ProjectSwitch } from './ProjectSwitch';
+import { SignOut } from './SignOut';
+import { ThemeSwitch } from './ThemeSwitch';
+
+const OF_A_PROJECT = [
+  { path: 'setups', name: 'Setups' },
+  { path: 'control', name: 'Control' },
+  { path: 'grade', name: 'Grade' },
+  { path: 'uploads', name: 'Uploads' },
+];
+
+const OF_THE_HUB = [
+  { path: '/keys', name: 'Keys' },
+  { path: '/people', name: 'People' },
+  { path: '/audit', name: 'Audit' },
+  { path: '/reference', name: 'Reference' },
+];
+
+/** The console's page: the margin line of a field book with its sections, and the sheet beside it. */
+export function Frame({ children }: { children: ReactNode }) {
+  const { projectId } = useParams<{ projectId?: string }>();
+  const pathname = usePathname();
+  const entry = (href: string, name: string) => (
+    <li key={href}>
+      <Link
+        href={href}
+        aria-current={pathname.startsWith(href) ? 'page' : undefined}
+        className="flex py-2 pr-3 font-medium text-ink-second no-underline hover:text-ink aria-[current]:font-semibold aria-[current]:text-ink max-md:border-b-[3px] max-md:border-transparent max-md:px-2 max-md:aria-[current]:border-mark md:-mr-px md:border-r-[3px] md:border-transparent md:aria-[current]:border-mark"
+      >
+        {name}
+      </Link>
+    </li>
+  );
+  return (
+    <div className="min-h-screen md:grid md:grid-cols-[212px_minmax(0,1fr)]">
+      <a
+        href="#page"
+        className="absolute top-2 left-2 z-20 -translate-y-20 rounded bg-ink px-4 py-2 font-semibold text-paper focus:translate-y-0"
+      >
+        Skip to the page
+      </a>
+      <header className="border-mark max-md:border-b md:sticky md:top-0 md:flex md:h-screen md:flex-col md:overflow-y-auto md:border-r md:py-6 md:pl-6 print:hidden">
+        <div className="flex items-center justify-between px-5 py-4 md:p-0">
+          <Brand />
+          <div className="md:hidden">
+            <ThemeSwitch />
+          </div>
+        </div>
+        <ProjectSwitch projectId={projectId} />
+        <nav aria-label="Sections" className="max-md:overflow-x-auto max-md:px-3">
+          <ul className="max-md:flex">
+            {projectId
+              ? OF_A_PROJECT.map(({ path, name }) => entry(`/projects/${projectId}/${path}`, name))
+              : null}
+            {projectId ? (
+              <li aria-hidden="true" className="my-2.5 mr-6 border-t border-rule max-md:hidden" />
+            ) : null}
+            {OF_THE_HUB.map(({ path, name }) => entry(path, name))}
+          </ul>
+        </nav>
+        <div className="mt-auto space-y-3 pt-8 pr-6 max-md:hidden">
+          <ThemeSwitch />
+          <SignOut />
+        </div>
+      </header>
+      <main id="page" tabIndex={-1} className="max-w-[1300px] px-5 pt-6 pb-14 outline-none md:px-10">
+        <Offline />
+        {children}
+        <div className="mt-12 md:hidden">
+          <SignOut />
+        </div>
+      </main>
+    </div>
+  );
+}

@@ -1,0 +1,67 @@
+/** Figures as people read them: grouped, with a true minus sign, rounded only here. */
+
+const MINUS = '\u2212';
+const formats = new Map<number, Intl.NumberFormat>();
+
+export function fixed(value: number, decimals: number): string {
+  let format = formats.get(decimals);
+  if (!format) {
+    format = new Intl.NumberFormat('en-US', {
+      minimumFractionDigits: decimals,
+      maximumFractionDigits: decimals,
+    });
+    formats.set(decimals, format);
+  }
+  const text = format.format(Math.abs(value));
+  return value < 0 && Number(text.replaceAll(',', '')) !== 0 ? `${MINUS}${text}` : text;
+}
+
+/** The same with its sign always shown. */
+export function signed(value: number, decimals: number): string {
+  const text = fixed(value, decimals);
+  return text.startsWith(MINUS) || Number(text.replaceAll(',', '')) === 0 ? text : `+${text}`;
+}
+
+/** Decimal degrees as degrees, minutes and seconds. */
+export function sexagesimal(degrees: number, secondDecimals = 0): string {
+  const scale = 10 ** secondDecimals;
+  const total = Math.round(Math.abs(degrees) * 3600 * scale);
+  const seconds = (total / scale) % 60;
+  const minutes = Math.floor(total / scale / 60) % 60;
+  const whole = Math.floor(total / scale / 3600);
+  const pad = seconds.toFixed(secondDecimals).padStart(secondDecimals ? 3 + secondDecimals : 2, '0');
+  return `${degrees < 0 ? MINUS : ''}${whole}°${String(minutes).padStart(2, '0')}′${pad}″`;
+}
+
+const UNIT_NAMES = { m: 'metres', ft: 'international feet', ftUS: 'US survey feet' } as const;
+export type LengthUnit = keyof typeof UNIT_NAMES;
+
+export function unitName(unit: LengthUnit): string {
+  return UNIT_NAMES[unit];
+}
+
+export function unitSign(unit: LengthUnit): string {
+  return unit === 'm' ? 'm' : 'ft';
+}
+
+/** Decimals of a coordinate and of a residual. */
+export const COORDINATE = 3;
+
+const MOMENT = new Intl.DateTimeFormat('en-GB', {
+  day: 'numeric',
+  month: 'short',
+  hour: '2-digit',
+  minute: '2-digit',
+});
+const DAY = new Intl.DateTimeFormat('en-GB', { day: 'numeric', month: 'short', year: 'numeric' });
+
+/** An instant in the reader's own time. */
+export function moment(text: string): string {
+  const date = new Date(text);
+  const sameYear = date.getFullYear() === new Date().getFullYear();
+  return sameYear ? MOMENT.format(date) : `${DAY.format(date)}, ${MOMENT.format(date).split(', ').at(-1)}`;
+}
+
+export function timeZone(): string {
+  return Intl.DateTimeFormat().resolvedOptions().timeZone;
+}
