@@ -30,4 +30,4 @@ export function proxy(request: NextRequest): NextResponse {
   return response;
 }
 
-export const config = { matcher: ['/((?!api|_next/static|vendor).*)'] };
+export const config = { matcher: ['/((?!api|_next/static|vendor|theme.js).*)'] };

@@ -1,5 +1,5 @@
 import type { Metadata, Viewport } from 'next';
-import { cookies } from 'next/headers';
+import { headers } from 'next/headers';
 import type { ReactNode } from 'react';
 import { code, head, text } from './fonts';
 import './globals.css';
@@ -17,15 +17,13 @@ export const viewport: Viewport = {
 };
 
 export default async function RootLayout({ children }: { children: ReactNode }) {
-  // Reading the cookies makes every page dynamic: a page made beforehand could carry no nonce.
-  const theme = (await cookies()).get('hubtack_theme')?.value;
+  // Reading the headers makes every page dynamic: a page made beforehand could carry no nonce.
+  const nonce = (await headers()).get('x-nonce') ?? undefined;
   return (
-    <html
-      lang="en"
-      data-theme={theme === 'day' || theme === 'night' ? theme : undefined}
-      suppressHydrationWarning
-      className={`${text.variable} ${head.variable} ${code.variable}`}
-    >
+    <html lang="en" suppressHydrationWarning className={`${text.variable} ${head.variable} ${code.variable}`}>
+      <head>
+        <script src="/theme.js" nonce={nonce} />
+      </head>
       <body>{children}</body>
     </html>
   );

@@ -19,6 +19,7 @@ export const SetupCheckTarget = z
       .meta({ description: 'A mark of the fit shows drift, not independence.' }),
     status: z.enum(['trusted', 'suspect', 'quarantined']),
     published: z.object({ easting: figure, northing: figure, elevation: maybe }),
+    shots: z.array(z.string()),
     difference: z.object({ easting: figure, northing: figure, elevation: maybe }).meta({
       description: 'Polar position minus published control.',
     }),
@@ -52,6 +53,7 @@ export const SetupTarget = z
   .object({
     target: z.string().nullable(),
     used: z.boolean(),
+    shots: z.array(z.string()).meta({ description: 'clientIds of its shots: what a refit leaves out.' }),
     purpose: z.enum(['orient', 'check', 'closing']),
     status: z.enum(['trusted', 'suspect', 'quarantined']),
     published: z

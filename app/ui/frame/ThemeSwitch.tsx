@@ -14,15 +14,14 @@ function current(): Theme {
   return (document.documentElement.dataset.theme as Theme | undefined) ?? 'system';
 }
 
-/** Day, night, or as the system says; remembered in a cookie, so that the first paint is right. */
+/** Day, night, or as the system says; remembered by the browser; public/theme.js sets it before the first paint. */
 export function ThemeSwitch() {
   const [theme, setTheme] = useState<Theme>(current);
   function choose(next: Theme) {
     setTheme(next);
     if (next === 'system') delete document.documentElement.dataset.theme;
     else document.documentElement.dataset.theme = next;
-    const age = next === 'system' ? 0 : 31_536_000;
-    document.cookie = `hubtack_theme=${next}; Path=/; Max-Age=${age}; SameSite=Lax`;
+    localStorage.setItem('hubtack-theme', next);
   }
   return (
     <label className="flex items-center gap-2 text-[13.5px] text-ink-second">

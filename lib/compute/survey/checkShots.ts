@@ -23,6 +23,8 @@ export interface CheckDifference {
   inFit: boolean;
   status: ControlMark['status'];
   published: Pick<ControlMark, 'easting' | 'northing' | 'elevation'>;
+  /** Ids of its shots. */
+  shots: string[];
   /** Polar position minus published control, m; null where it could not be formed. */
   difference: { easting: number; northing: number; elevation: number | null };
   /** u of the difference: worst direction in the horizontal, and vertical. */
@@ -36,6 +38,7 @@ export interface CheckDifference {
  * A mark that was in the fit is correlated with the station; that correlation is in u.
  *
  * @param crossCovariance covariance (5 × 3) of the station with the published coordinates of marks of its fit
+ * @param scale σ₀ that the station's covariance was multiplied by: it holds for the marks of the fit as well
  */
 export function checkDifferences(input: {
   shots: readonly Shot[];
@@ -43,6 +46,7 @@ export function checkDifferences(input: {
   station: Station;
   heightDetermined: boolean;
   crossCovariance: ReadonlyMap<string, ArrayLike<number>>;
+  scale: number;
   accuracy: InstrumentAccuracy;
   surroundings: Surroundings;
   ppm: number | null;
@@ -74,7 +78,8 @@ export function checkDifferences(input: {
       surroundings,
     );
     const cross = input.crossCovariance.get(mark.name);
-    addMark(covariance, mark, cross ? crossTerm(station, reading, cross, surroundings) : null);
+    if (cross) addMark(covariance, mark, input.scale, crossTerm(station, reading, cross, surroundings));
+    else addMark(covariance, mark);
 
     const east = point.easting - mark.easting;
     const north = point.northing - mark.northing;
@@ -91,6 +96,7 @@ export function checkDifferences(input: {
         inFit: cross !== undefined,
         status: mark.status,
         published: { easting: mark.easting, northing: mark.northing, elevation: mark.elevation },
+        shots: input.shots.flatMap((shot) => (shot.target === mark.name ? shot.id : [])),
         difference: { easting: east, northing: north, elevation: up },
         uncertainty: { horizontal: uHorizontal, vertical: uVertical },
         horizontal: outcome(Math.hypot(east, north), uHorizontal, tolerance.horizontal),
@@ -135,10 +141,10 @@ function meanOf(readings: readonly Reading[], kind: ReadingKind): MeanReading | 
 }
 
 /** Adds the mark's own variance and takes off twice its covariance with the polar point. */
-function addMark(covariance: Float64Array, mark: ControlMark, cross: Float64Array | null): void {
+function addMark(covariance: Float64Array, mark: ControlMark, scale = 1, cross?: Float64Array): void {
   const own = [mark.horizontalSigma, mark.horizontalSigma, mark.verticalSigma];
   for (let i = 0; i < 3; i++) {
-    covariance[i * 3 + i] += own[i] ** 2;
+    covariance[i * 3 + i] += (scale * own[i]) ** 2;
     for (let j = 0; cross && j < 3; j++) covariance[i * 3 + j] -= cross[i * 3 + j] + cross[j * 3 + i];
   }
 }

@@ -40,6 +40,10 @@ export interface FittedMark {
   name: string;
   version: number;
   status: ControlMark['status'];
+  /** The coordinates that it was held at. */
+  published: Pick<ControlMark, 'easting' | 'northing' | 'elevation'>;
+  /** Ids of its shots. */
+  shots: string[];
   /** Took part in easting and northing; in the height. */
   horizontal: boolean;
   vertical: boolean;
@@ -106,7 +110,7 @@ export function fitStation(input: {
   const statistics = reliability(solution, cofactors);
   const test = globalTest(solution.weightedSquares, solution.degreesOfFreedom);
   const scale = test.passed ? 1 : test.sigma0;
-  const station = fittedStation(solution, cofactors, scale);
+  const station = fittedStation(model, solution, cofactors, scale);
   const axes = standardEllipse(station.covariance[0], station.covariance[6], station.covariance[1]);
   const factor = ellipseFactor95(test.passed ? null : test.degreesOfFreedom);
   const shifts = shiftsWithout(model, solution);
@@ -119,6 +123,8 @@ export function fitStation(input: {
       name,
       version: mark.version,
       status: mark.status,
+      published: { easting: mark.easting, northing: mark.northing, elevation: mark.elevation },
+      shots: input.shots.flatMap((shot) => (shot.target === name ? shot.id : [])),
       horizontal: kinds.has('direction') || kinds.has('distance'),
       vertical: kinds.has('zenith') && mark.elevation !== null,
       residual: markResidual(mark, station, model, erections, surroundings),
@@ -159,7 +165,12 @@ function solveOrRefuse(model: StationModel): Solution {
   }
 }
 
-function fittedStation(solution: Solution, cofactors: Cofactors, scale: number): Station {
+function fittedStation(
+  { origin }: StationModel,
+  solution: Solution,
+  cofactors: Cofactors,
+  scale: number,
+): Station {
   const { unknowns } = solution;
   const covariance = new Float64Array(STATION_UNKNOWNS * STATION_UNKNOWNS);
   for (let i = 0; i < STATION_UNKNOWNS; i++) {
@@ -168,8 +179,8 @@ function fittedStation(solution: Solution, cofactors: Cofactors, scale: number):
     }
   }
   return {
-    easting: unknowns[EASTING],
-    northing: unknowns[NORTHING],
+    easting: origin.easting + unknowns[EASTING],
+    northing: origin.northing + unknowns[NORTHING],
     axis: unknowns[AXIS],
     orientation: wrapTurn(unknowns[ORIENTATION]),
     refraction: unknowns[REFRACTION],

@@ -42,12 +42,13 @@ export function computeSetup(task: SetupTask): { result: SetupResult; checks: Ow
   const checks = PURPOSES.flatMap((purpose): OwnCheck[] => {
     const shots = task.shots.filter((shot) => shot.purpose === purpose && isUsed(shot));
     if (shots.length === 0) return [];
-    const { station, heightDetermined } = fit;
+    const { station, heightDetermined, scale } = fit;
     const given = {
       ...task,
       shots,
       station,
       heightDetermined,
+      scale,
       crossCovariance: crossCovariances(fit),
       tolerance: limits.residual,
     };
@@ -71,7 +72,8 @@ export function computeSetup(task: SetupTask): { result: SetupResult; checks: Ow
     marks: fit.marks.map(keepMark),
     leftOut: leftOut.map((name) => {
       const { version, easting, northing, elevation } = control.get(name)!;
-      return { name, version, published: { easting, northing, elevation } };
+      const shots = orienting.flatMap((shot) => (shot.target === name ? shot.id : []));
+      return { name, version, published: { easting, northing, elevation }, shots };
     }),
     accuracy,
     surroundings,
@@ -81,15 +83,18 @@ export function computeSetup(task: SetupTask): { result: SetupResult; checks: Ow
 }
 
 /**
- * A kept setup judged again with check shots that came later. The latest check on each mark counts.
+ * A kept setup judged again with check shots that came later. The check on each mark that was observed last counts,
+ * in whatever order they came in.
  *
- * @param earlier differences of the checks so far, oldest first
+ * @param earlier differences of the checks observed before these shots, oldest first
+ * @param later those of checks observed after them, sent in before
  */
 export function judgeWithCheck(
   result: SetupResult,
   shots: readonly Shot[],
   control: ReadonlyMap<string, ControlMark>,
   earlier: readonly CheckDifference[],
+  later: readonly CheckDifference[],
 ): { result: SetupResult; check: CheckResult } {
   const fit = fitOf(result);
   const targets = checkDifferences({
@@ -97,13 +102,14 @@ export function judgeWithCheck(
     control,
     station: fit.station,
     heightDetermined: fit.heightDetermined,
+    scale: fit.scale,
     crossCovariance: crossCovariances(fit),
     accuracy: result.accuracy,
     surroundings: result.surroundings,
     ppm: result.ppm,
     tolerance: result.limits.residual,
   });
-  const judged = judgeSetup(fit, result.limits, latestOf([...earlier, ...targets]), result.work);
+  const judged = judgeSetup(fit, result.limits, latestOf([...earlier, ...targets, ...later]), result.work);
   return {
     result: { ...result, ...judged },
     check: { targets, tolerance: result.limits.residual, verdict: judged.verdict },

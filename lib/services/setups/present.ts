@@ -141,6 +141,7 @@ function presentMark(mark: KeptMark, length: Lengths): z.output<typeof SetupTarg
   return {
     target: mark.name,
     used: true,
+    shots: mark.shots,
     purpose: 'orient',
     status: mark.status,
     published: presentPlace(mark.published, length),
@@ -180,12 +181,13 @@ function presentPlace(place: KeptMark['published'], length: Lengths) {
 }
 
 function presentLeftOut(
-  { name, published }: SetupResult['leftOut'][number],
+  { name, published, shots }: SetupResult['leftOut'][number],
   length: Lengths,
 ): z.output<typeof SetupTarget> {
   return {
     target: name,
     used: false,
+    shots,
     purpose: 'orient',
     status: 'quarantined',
     published: presentPlace(published, length),
@@ -197,9 +199,10 @@ function presentLeftOut(
 
 /** Check shots of the setup's own upload stand among its targets too, unused. */
 function targetsOfCheck({ purpose, targets }: z.output<typeof SetupCheck>): z.output<typeof SetupTarget>[] {
-  return targets.map(({ target, status, published, difference }) => ({
+  return targets.map(({ target, status, published, shots, difference }) => ({
     target,
     used: false,
+    shots,
     purpose,
     status,
     published,
@@ -223,6 +226,7 @@ export function presentCheck(row: CheckRow, length: Lengths): z.output<typeof Se
       role: t.inFit ? ('drift' as const) : ('independent' as const),
       status: t.status,
       published: presentPlace(t.published, length),
+      shots: t.shots,
       difference: {
         easting: length.out(t.difference.easting),
         northing: length.out(t.difference.northing),

@@ -60,7 +60,7 @@ export interface SetupResult extends SetupVerdict {
   faceErrors: FaceErrors | null;
   marks: KeptMark[];
   /** Marks that took no part because they are quarantined. */
-  leftOut: Pick<FittedMark, 'name' | 'version' | 'published'>[];
+  leftOut: Pick<FittedMark, 'name' | 'version' | 'published' | 'shots'>[];
   /** What the computation was given beside the shots. */
   accuracy: InstrumentAccuracy;
   surroundings: Surroundings;

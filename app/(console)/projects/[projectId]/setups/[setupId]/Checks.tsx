@@ -1,0 +1,85 @@
+'use client';
+
+import { COORDINATE, fixed, moment, signed, unitSign } from '@/app/ui/numbers';
+import { State } from '@/app/ui/State';
+import { Table } from '@/app/ui/table/Table';
+import type { ShownSetup } from './SetupSheet';
+
+const OUTCOME = {
+  agreed: { tone: 'pass', word: 'agreed' },
+  over: { tone: 'fail', word: 'over' },
+  disagrees: { tone: 'hold', word: 'disagrees' },
+  notCapable: { tone: 'hold', word: 'could not tell' },
+} as const;
+
+/** Checks over time, the oldest first. */
+export function Checks({ setup }: { setup: ShownSetup }) {
+  const unit = unitSign(setup.units.length);
+  const rows = setup.checks.flatMap((check) => check.targets.map((target) => ({ check, target })));
+  return (
+    <section>
+      <h2 className="mb-3 font-head text-[19px]">Checks</h2>
+      {rows.length === 0 ? (
+        <p className="text-ink-second">No mark outside the fit was shot, and nothing since the setup.</p>
+      ) : (
+        <Table
+          caption="Checks over time"
+          rows={rows}
+          keyOf={({ check, target }) => `${check.id}${target.target}`}
+          columns={[
+            {
+              name: 'Shot',
+              value: ({ check }) => check.observedAt,
+              cell: ({ check }) => moment(check.observedAt),
+            },
+            {
+              name: 'Mark',
+              value: ({ target }) => target.target,
+              cell: ({ target }) => (
+                <>
+                  <span className="font-semibold">{target.target}</span>{' '}
+                  <span className="text-ink-third">
+                    {target.role === 'drift' ? 'of the fit: drift' : 'independent'}
+                  </span>
+                </>
+              ),
+            },
+            {
+              name: `In plan`,
+              unit,
+              figures: true,
+              value: ({ target }) => Math.hypot(target.difference.easting, target.difference.northing),
+              cell: ({ target }) =>
+                `${fixed(Math.hypot(target.difference.easting, target.difference.northing), COORDINATE)} ± ${fixed(target.uncertainty.horizontal, COORDINATE)}`,
+            },
+            {
+              name: 'In height',
+              unit,
+              figures: true,
+              value: ({ target }) => target.difference.elevation,
+              cell: ({ target: { difference, uncertainty } }) =>
+                difference.elevation === null
+                  ? 'none'
+                  : `${signed(difference.elevation, COORDINATE)} ± ${fixed(uncertainty.vertical ?? 0, COORDINATE)}`,
+            },
+            {
+              name: 'Outcome',
+              value: ({ target }) => `${target.horizontal} ${target.vertical ?? ''}`,
+              cell: ({ target }) => {
+                const worst = worse(target.horizontal, target.vertical);
+                return <State tone={OUTCOME[worst].tone}>{OUTCOME[worst].word}</State>;
+              },
+            },
+          ]}
+        />
+      )}
+    </section>
+  );
+}
+
+type Outcome = keyof typeof OUTCOME;
+const ORDER: readonly Outcome[] = ['over', 'disagrees', 'notCapable', 'agreed'];
+
+function worse(a: Outcome, b: Outcome | null): Outcome {
+  return ORDER.find((outcome) => outcome === a || outcome === b) ?? a;
+}

@@ -1,0 +1,73 @@
+import { Figure } from '@/app/ui/Figure';
+import { type Entry, Ledger } from '@/app/ui/Ledger';
+import { COORDINATE, fixed, sexagesimal, unitSign } from '@/app/ui/numbers';
+import { State } from '@/app/ui/State';
+import type { ShownSetup } from './SetupSheet';
+
+export function Standing({ setup }: { setup: ShownSetup }) {
+  const { position, standardDeviations: sd, units } = setup;
+  const unit = unitSign(units.length);
+  const length = (name: string, value: number | null, deviation: number | null): Entry => ({
+    name,
+    value: value === null ? 'none' : <Figure label={name} value={fixed(value, COORDINATE)} unit={unit} />,
+    beside: value === null || deviation === null ? null : `± ${fixed(deviation, COORDINATE)}`,
+  });
+  return (
+    <Ledger
+      title="Where it stands"
+      note="± one standard deviation"
+      entries={[
+        length('Easting', position.easting, sd.easting),
+        length('Northing', position.northing, sd.northing),
+        length('Mark elevation', position.elevation, sd.elevation),
+        length('Instrument elevation', setup.instrumentElevation, sd.elevation),
+        {
+          name: 'Circle zero',
+          value: <Figure label="Circle zero" value={sexagesimal(setup.orientation, 1)} />,
+          beside: `± ${fixed(sd.orientationArcsec, 1)}″`,
+        },
+      ]}
+    />
+  );
+}
+
+export function Fit({ setup }: { setup: ShownSetup }) {
+  const { fit, geometry, accuracyAtWork: work, errorEllipse, units, faceErrors } = setup;
+  const unit = unitSign(units.length);
+  const within = (value: number | null, limit: number) =>
+    value === null ? 'none' : `${fixed(value, COORDINATE)} of ${fixed(limit, COORDINATE)}`;
+  const entries: Entry[] = [
+    { name: 'Spread of the fit, σ₀', value: fixed(fit.sigma0, 2), beside: 'of 1' },
+    { name: 'Spare observations', value: fit.degreesOfFreedom },
+    {
+      name: 'Global test',
+      value: (
+        <State tone={fit.chiSquare.passed ? 'pass' : 'fail'}>
+          {fit.chiSquare.passed ? 'accepted' : 'outside'}
+        </State>
+      ),
+      beside: `${fixed(fit.chiSquare.value, 1)} of ${fixed(fit.chiSquare.upper, 1)}`,
+    },
+    { name: 'Targets around the horizon', value: `${fixed(geometry.spreadDegrees, 0)}°` },
+    {
+      name: '95 % ellipse',
+      value: `${fixed(errorEllipse.semiMajor, COORDINATE)} × ${fixed(errorEllipse.semiMinor, COORDINATE)}`,
+      beside: unit,
+    },
+    {
+      name: `At ${fixed(work.radius, 0)} ${unit}, in plan`,
+      value: within(work.horizontal, work.limits.horizontal),
+      beside: unit,
+    },
+    {
+      name: `At ${fixed(work.radius, 0)} ${unit}, in height`,
+      value: within(work.vertical, work.limits.vertical),
+      beside: unit,
+    },
+  ];
+  if (faceErrors) {
+    entries.push({ name: 'Collimation, 2c', value: `${fixed(faceErrors.twoCollimationArcsec, 1)}″` });
+    entries.push({ name: 'Vertical index', value: `${fixed(faceErrors.verticalIndexArcsec, 1)}″` });
+  }
+  return <Ledger title="How well it fits" entries={entries} />;
+}
