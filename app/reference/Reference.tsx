@@ -39,7 +39,8 @@ export function Reference({ nonce }: { nonce?: string }) {
   const show = () => {
     const { Scalar } = window as typeof window & { Scalar?: Library };
     if (Scalar && place.current) {
-      const dark = window.matchMedia('(prefers-color-scheme: dark)').matches;
+      const { theme } = document.documentElement.dataset;
+      const dark = theme ? theme === 'night' : window.matchMedia('(prefers-color-scheme: dark)').matches;
       Scalar.createApiReference(place.current, {
         ...CONFIGURATION,
         forceDarkModeState: dark ? 'dark' : 'light',
@@ -47,12 +48,12 @@ export function Reference({ nonce }: { nonce?: string }) {
     }
   };
   return (
-    <main>
+    <>
       <h1 className="sr-only">API reference</h1>
-      <div ref={place}>
+      <div ref={place} className="-mx-5 md:-mx-10">
         <p className="p-10 text-ink-second">The reference is being laid out…</p>
       </div>
       <Script src="/vendor/reference.js" nonce={nonce} strategy="afterInteractive" onReady={show} />
-    </main>
+    </>
   );
 }

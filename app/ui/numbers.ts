@@ -65,3 +65,8 @@ export function moment(text: string): string {
 export function timeZone(): string {
   return Intl.DateTimeFormat().resolvedOptions().timeZone;
 }
+
+export function bytes(count: number): string {
+  if (count < 1000) return `${count} B`;
+  return count < 1e6 ? `${fixed(count / 1e3, 1)} kB` : `${fixed(count / 1e6, 1)} MB`;
+}

@@ -308,7 +308,7 @@ CREATE TABLE "audit_entries" (
 	"details" jsonb NOT NULL,
 	"occurred_at" timestamp(6) with time zone NOT NULL,
 	CONSTRAINT "audit_entries_organization_id_id_pk" PRIMARY KEY("organization_id","id"),
-	CONSTRAINT "audit_entries_actor_kind" CHECK ("audit_entries"."actor_kind" in ('person', 'key', 'job', 'system'))
+	CONSTRAINT "audit_entries_actor_kind" CHECK ("audit_entries"."actor_kind" in ('person', 'key', 'job'))
 );
 --> statement-breakpoint
 ALTER TABLE "audit_entries" ENABLE ROW LEVEL SECURITY;--> statement-breakpoint

@@ -35,7 +35,7 @@ export const auditEntries = pgTable(
     action: text('action').notNull(),
     subject: text('subject').notNull(),
     projectId: uuid('project_id'),
-    actorKind: text('actor_kind').$type<'person' | 'key' | 'job' | 'system'>().notNull(),
+    actorKind: text('actor_kind').$type<'person' | 'key' | 'job'>().notNull(),
     actorId: uuid('actor_id'),
     actorName: text('actor_name').notNull(),
     requestId: text('request_id'),
@@ -44,7 +44,7 @@ export const auditEntries = pgTable(
   },
   (t) => [
     primaryKey({ columns: [t.organizationId, t.id] }),
-    check('audit_entries_actor_kind', sql`${t.actorKind} in ('person', 'key', 'job', 'system')`),
+    check('audit_entries_actor_kind', sql`${t.actorKind} in ('person', 'key', 'job')`),
     tenantPolicy(t.organizationId),
   ],
 );

@@ -30,7 +30,9 @@ export type Actor =
 export type Caller = Exclude<Actor, { kind: 'job' }>;
 
 /** The id under which an actor's rows are kept: the key's own, the person's own. */
-export function callerId(caller: Caller): string {
+export function callerId(
+  caller: { kind: 'person'; personId: string } | { kind: 'key'; keyId: string },
+): string {
   switch (caller.kind) {
     case 'person':
       return caller.personId;

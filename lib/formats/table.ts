@@ -1,4 +1,5 @@
 import { parse } from 'csv-parse/sync';
+import { CSV_DIALECT, type CsvRecord } from '@/openapi/controlTable';
 import { problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 
@@ -15,15 +16,9 @@ export interface Table {
  * @param known column names that are taken; @param needed those that must be there
  */
 export function readTable(text: string, known: readonly string[], needed: readonly string[]): Table {
-  let lines: { record: string[]; info: { lines: number } }[];
+  let lines: CsvRecord[];
   try {
-    lines = parse(text, {
-      bom: true,
-      relax_column_count: true,
-      skip_empty_lines: true,
-      trim: true,
-      info: true,
-    }) as never;
+    lines = parse(text, CSV_DIALECT) as never;
   } catch (error) {
     const detail =
       error instanceof Error ? error.message.slice(0, 200) : 'The text cannot be read as a table.';

@@ -14,7 +14,8 @@ export interface Happening {
   data?: Record<string, unknown>;
 }
 
-type Recorder = Actor | { kind: 'system'; organizationId: string; name: string };
+/** Whoever signs in or is just being made has no session to act by yet. */
+type Recorder = Actor | { kind: 'person'; organizationId: string; personId: string; name: string };
 
 const insert = bulkInsert({ events, auditEntries });
 
@@ -25,7 +26,7 @@ export function recordRows(
   happenings: readonly Happening[],
 ) {
   const occurredAt = runtime.now().toISOString();
-  const actorId = actor.kind === 'person' || actor.kind === 'key' ? callerId(actor) : null;
+  const actorId = actor.kind === 'job' ? null : callerId(actor);
   const shared = ({ subject, projectId }: Happening) => ({
     organizationId: actor.organizationId,
     id: runtime.uuid(),

@@ -52,7 +52,7 @@ function isInstant(text: string): boolean {
 export const Instant = z
   .string()
   .refine(isInstant, {
-    error: `Write the time as RFC 3339 with an offset, between the years ${FIRST_YEAR} and ${LAST_YEAR}: 2031-04-12T07:41:00-06:00.`,
+    error: `It is no time with an offset as RFC 3339 writes it, between the years ${FIRST_YEAR} and ${LAST_YEAR}.`,
     params: { code: 'time_invalid' },
   })
   .meta({

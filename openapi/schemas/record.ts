@@ -30,7 +30,7 @@ export const AuditEntry = z
     subject: z.string(),
     projectId: Id.nullable(),
     actor: z.object({
-      kind: z.enum(['person', 'key', 'job', 'system']),
+      kind: z.enum(['person', 'key', 'job']),
       id: Id.nullable(),
       name: z.string(),
     }),

@@ -1,7 +1,6 @@
 import type { Metadata } from 'next';
 import Link from 'next/link';
 import { Heading } from '@/app/ui/frame/Heading';
-import { Sheet } from '@/app/ui/frame/Sheet';
 import { ITEM_PROBLEMS, type ProblemCode, REQUEST_PROBLEMS } from '@/openapi/problemCodes';
 
 export const metadata: Metadata = { title: 'Problems' };
@@ -31,12 +30,12 @@ function List({ title, problems }: { title: string; problems: Record<string, Pro
 
 export default function ProblemsPage() {
   return (
-    <Sheet>
+    <>
       <Heading lead="Every error is a problem document (RFC 9457) with one of these codes. A code is never renamed.">
         Problems
       </Heading>
       <List title="Of a request as a whole" problems={REQUEST_PROBLEMS} />
       <List title="Of one place in a request" problems={ITEM_PROBLEMS} />
-    </Sheet>
+    </>
   );
 }

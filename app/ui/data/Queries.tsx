@@ -12,11 +12,12 @@ function toSignIn(error: Error): void {
   window.location.assign(`/sign-in?next=${encodeURIComponent(pathname + search)}`);
 }
 
-export function Queries({ children }: { children: ReactNode }) {
+/** `open` pages are read by whoever comes: nobody is sent to sign in from them. */
+export function Queries({ open = false, children }: { open?: boolean; children: ReactNode }) {
   const [client] = useState(
     () =>
       new QueryClient({
-        queryCache: new QueryCache({ onError: toSignIn }),
+        queryCache: new QueryCache(open ? {} : { onError: toSignIn }),
         defaultOptions: { queries: { retry: shouldRetry, staleTime: 10_000, networkMode: 'always' } },
       }),
   );

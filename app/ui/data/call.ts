@@ -6,7 +6,11 @@ import type { Problem } from '@/openapi/schemas/problem';
 export class Refusal extends Error {
   override readonly name = 'Refusal';
 
-  constructor(readonly problem: Problem) {
+  constructor(
+    readonly problem: Problem,
+    /** Seconds after which it is worth asking again, where the hub says so. */
+    readonly retryAfter: number | null = null,
+  ) {
     super(problem.detail);
   }
 }
@@ -64,7 +68,11 @@ export async function call<C extends Contract>(
   if (response.status === 204) return undefined as AnswerOf<C>;
   const answer: unknown = await response.json().catch(() => null);
   if (response.ok) return answer as AnswerOf<C>;
-  throw new Refusal(isProblem(answer) ? answer : unknownProblem(response));
+  const wait = response.headers.get('retry-after');
+  throw new Refusal(
+    isProblem(answer) ? answer : unknownProblem(response),
+    wait === null ? null : Number(wait),
+  );
 }
 
 function isProblem(answer: unknown): answer is Problem {

@@ -1,13 +1,16 @@
 import type * as z from 'zod';
 import { COORDINATE, fixed, signed, unitSign } from '@/app/ui/numbers';
 import type { Setup } from '@/openapi/schemas/setup';
+import { Grid, LABEL, NorthArrow, roundLength, ScaleBar } from './PlanParts';
 import { fitView, roundStep, type View } from './scale';
 
 type Shown = z.output<typeof Setup>;
 
 const WIDTH = 640;
-const HEIGHT = 440;
-const EDGE = 74;
+const HEIGHT = 560;
+const SIZE = { width: WIDTH, height: HEIGHT };
+/** Room for names beside the outermost marks. */
+const EDGE = { x: 128, y: 62 };
 /** The longest residual arrow or half axis, in pixels. */
 const LONGEST = 46;
 
@@ -26,14 +29,14 @@ export function SetupPlan({ setup }: { setup: Shown }) {
   const [sx, sy] = [view.x(position.easting), view.y(position.northing)];
   const drawn = view.scale * magnified;
   return (
-    <figure className="rounded border border-rule bg-sheet">
+    <figure className="self-start rounded border border-rule bg-sheet">
       <svg
         viewBox={`0 0 ${WIDTH} ${HEIGHT}`}
         role="img"
         aria-label={describe(setup)}
         className="block h-auto w-full"
       >
-        <Grid view={view} step={grid} />
+        <Grid view={view} step={grid} size={SIZE} />
         {all.map((mark) => (
           <path
             key={`${mark.purpose}${mark.target}`}
@@ -70,11 +73,11 @@ export function SetupPlan({ setup }: { setup: Shown }) {
           strokeWidth="2.4"
         />
         <circle cx={sx} cy={sy} r="3" fill="var(--mark)" />
-        <text x={sx + 15} y={sy + 5} className="fill-ink text-[13px] font-semibold">
+        <text x={sx + Math.max(15, errorEllipse.semiMajor * drawn + 7)} y={sy + 5} className={LABEL}>
           {setup.station}
         </text>
-        <NorthArrow />
-        <ScaleBar view={view} length={grid} unit={unit} />
+        <NorthArrow view={view} marks={all.map((mark) => mark.published)} size={SIZE} />
+        <ScaleBar view={view} length={grid} unit={unit} size={SIZE} />
       </svg>
       <figcaption className="flex justify-between gap-4 border-t border-rule px-3.5 py-2 text-[13.5px] text-ink-second">
         <span>
@@ -82,7 +85,7 @@ export function SetupPlan({ setup }: { setup: Shown }) {
           plan
         </span>
         <span className="whitespace-nowrap">
-          grid {fixed(grid, grid < 1 ? 1 : 0)} {unit}
+          grid {roundLength(grid)} {unit}
         </span>
       </figcaption>
     </figure>
@@ -130,11 +133,11 @@ function Mark({
       />
       <circle cx={x} cy={y} r="1.6" fill={ink} />
       {e !== null && n !== null ? <Arrow x={x} y={y} dx={e * drawn} dy={-n * drawn} /> : null}
-      <text {...place} y={y - 5} className="fill-ink text-[12.5px] font-semibold">
+      <text {...place} y={y - 5} className={LABEL}>
         {mark.target}
       </text>
       {e !== null && n !== null ? (
-        <text {...place} y={y + 9} className="fill-ink-second text-[11.5px]">
+        <text {...place} y={y + 9} className="fill-ink-second text-[11.5px] max-md:hidden">
           {`N ${signed(n, COORDINATE)}  E ${signed(e, COORDINATE)}`}
         </text>
       ) : null}
@@ -153,48 +156,5 @@ function Arrow({ x, y, dx, dy }: { x: number; y: number; dx: number; dy: number 
       <path d={`M${x} ${y}L${ex} ${ey}`} stroke="var(--mark)" strokeWidth="2" />
       <path d={head} fill="var(--mark)" />
     </>
-  );
-}
-
-function Grid({ view, step }: { view: View; step: number }) {
-  const pixels = step * view.scale;
-  const lines = (size: number) => Array.from({ length: Math.floor(size / pixels) + 1 }, (_, i) => i * pixels);
-  return (
-    <g stroke="var(--rule)" strokeWidth="1">
-      {lines(WIDTH).map((x) => (
-        <path key={`x${x}`} d={`M${x} 0V${HEIGHT}`} />
-      ))}
-      {lines(HEIGHT).map((y) => (
-        <path key={`y${y}`} d={`M0 ${y}H${WIDTH}`} />
-      ))}
-    </g>
-  );
-}
-
-function NorthArrow() {
-  return (
-    <g>
-      <path d={`M${WIDTH - 40} 22v38`} stroke="var(--ink)" strokeWidth="1.6" />
-      <path d={`M${WIDTH - 40} 16l6 15h-12Z`} fill="var(--ink)" />
-      <text x={WIDTH - 40} y="76" textAnchor="middle" className="fill-ink-second text-[12px]">
-        N
-      </text>
-    </g>
-  );
-}
-
-function ScaleBar({ view, length, unit }: { view: View; length: number; unit: string }) {
-  const pixels = length * view.scale;
-  return (
-    <g>
-      <path
-        d={`M20 ${HEIGHT - 26}v8h${pixels}v-8M${20 + pixels / 2} ${HEIGHT - 22}v4`}
-        fill="none"
-        stroke="var(--ink)"
-      />
-      <text x={20 + pixels} y={HEIGHT - 31} textAnchor="end" className="fill-ink-second text-[12px]">
-        {fixed(length, length < 1 ? 1 : 0)} {unit}
-      </text>
-    </g>
   );
 }

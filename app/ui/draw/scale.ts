@@ -18,14 +18,19 @@ interface Place {
 }
 
 /** Fits places into a drawing of a given size, north up, with room at the edge. */
-export function fitView(places: readonly Place[], width: number, height: number, edge: number): View {
+export function fitView(
+  places: readonly Place[],
+  width: number,
+  height: number,
+  edge: { x: number; y: number },
+): View {
   const eastings = places.map((p) => p.easting);
   const northings = places.map((p) => p.northing);
   const [west, east] = [Math.min(...eastings), Math.max(...eastings)];
   const [south, north] = [Math.min(...northings), Math.max(...northings)];
   const scale = Math.min(
-    (width - 2 * edge) / Math.max(east - west, 1e-9),
-    (height - 2 * edge) / Math.max(north - south, 1e-9),
+    (width - 2 * edge.x) / Math.max(east - west, 1e-9),
+    (height - 2 * edge.y) / Math.max(north - south, 1e-9),
   );
   const limited = Number.isFinite(scale) && scale < 1e6 ? scale : 1;
   return {

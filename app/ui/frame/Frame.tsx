@@ -3,6 +3,8 @@
 import Link from 'next/link';
 import { useParams, usePathname } from 'next/navigation';
 import type { ReactNode } from 'react';
+import { useWhoami } from '@/app/ui/data/whoami';
+import type { Scope } from '@/openapi/scopes';
 import { Brand } from './Brand';
 import { Offline } from './Offline';
 import { ProjectSwitch } from './ProjectSwitch';
@@ -16,17 +18,21 @@ const OF_A_PROJECT = [
   { path: 'uploads', name: 'Uploads' },
 ];
 
-const OF_THE_HUB = [
-  { path: '/keys', name: 'Keys' },
-  { path: '/people', name: 'People' },
-  { path: '/audit', name: 'Audit' },
+const OF_THE_HUB: { path: string; name: string; scope?: Scope }[] = [
+  { path: '/keys', name: 'Keys', scope: 'keys:read' },
+  { path: '/people', name: 'People', scope: 'people:read' },
+  { path: '/audit', name: 'Audit', scope: 'audit:read' },
   { path: '/reference', name: 'Reference' },
 ];
 
-/** The console's page: the margin line of a field book with its sections, and the sheet beside it. */
+/**
+ * The console's page: the margin line of a field book with its sections, and the sheet beside it. Whoever is not
+ * signed in sees the sections that are open to all.
+ */
 export function Frame({ children }: { children: ReactNode }) {
   const { projectId } = useParams<{ projectId?: string }>();
   const pathname = usePathname();
+  const { data: me, isError: isStranger } = useWhoami();
   const entry = (href: string, name: string) => (
     <li key={href}>
       <Link
@@ -46,30 +52,35 @@ export function Frame({ children }: { children: ReactNode }) {
       >
         Skip to the page
       </a>
-      <header className="border-mark max-md:border-b md:sticky md:top-0 md:flex md:h-screen md:flex-col md:overflow-y-auto md:border-r md:py-6 md:pl-6 print:hidden">
-        <div className="flex items-center justify-between px-5 py-4 md:p-0">
-          <Brand />
-          <div className="md:hidden">
-            <ThemeSwitch />
+      <div className="border-mark max-md:border-b md:border-r print:hidden">
+        <header className="md:sticky md:top-0 md:flex md:h-screen md:flex-col md:py-6 md:pl-6">
+          <div className="flex items-center justify-between px-5 py-4 md:p-0">
+            <Brand />
+            <div className="md:hidden">
+              <ThemeSwitch />
+            </div>
           </div>
-        </div>
-        <ProjectSwitch projectId={projectId} />
-        <nav aria-label="Sections" className="max-md:overflow-x-auto max-md:px-3">
-          <ul className="max-md:flex">
-            {projectId
-              ? OF_A_PROJECT.map(({ path, name }) => entry(`/projects/${projectId}/${path}`, name))
-              : null}
-            {projectId ? (
-              <li aria-hidden="true" className="my-2.5 mr-6 border-t border-rule max-md:hidden" />
-            ) : null}
-            {OF_THE_HUB.map(({ path, name }) => entry(path, name))}
-          </ul>
-        </nav>
-        <div className="mt-auto space-y-3 pt-8 pr-6 max-md:hidden">
-          <ThemeSwitch />
-          <SignOut />
-        </div>
-      </header>
+          {isStranger ? <div className="md:h-8" /> : <ProjectSwitch projectId={projectId} />}
+          <nav aria-label="Sections" className="max-md:overflow-x-auto max-md:px-3">
+            <ul className="max-md:flex">
+              {projectId
+                ? OF_A_PROJECT.map(({ path, name }) => entry(`/projects/${projectId}/${path}`, name))
+                : null}
+              {projectId ? (
+                <li aria-hidden="true" className="my-2.5 mr-6 border-t border-rule max-md:hidden" />
+              ) : null}
+              {OF_THE_HUB.filter(({ scope }) => !scope || me?.scopes.includes(scope)).map(({ path, name }) =>
+                entry(path, name),
+              )}
+              {isStranger ? entry('/sign-in', 'Sign in') : null}
+            </ul>
+          </nav>
+          <div className="mt-auto space-y-3 pt-8 pr-6 max-md:hidden">
+            <ThemeSwitch />
+            <SignOut />
+          </div>
+        </header>
+      </div>
       <main id="page" tabIndex={-1} className="max-w-[1300px] px-5 pt-6 pb-14 outline-none md:px-10">
         <Offline />
         {children}

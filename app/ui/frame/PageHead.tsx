@@ -2,7 +2,7 @@ import Link from 'next/link';
 import type { ReactNode } from 'react';
 
 /** The line above a page: where it is, and the units that hold for it. */
-export function Crumb({ trail, note }: { trail: { name: string; href?: string }[]; note?: string }) {
+export function Crumb({ trail, note }: { trail: { name: string; href?: string }[]; note?: ReactNode }) {
   return (
     <div className="mb-5 flex justify-between gap-6 border-b border-rule pb-2.5 text-[13.5px] text-ink-third">
       <nav aria-label="Place">

@@ -6,8 +6,8 @@ import { csvOf, save } from './csv';
 
 export interface Column<R> {
   name: string;
-  /** What is sorted by and written to CSV. */
-  value: (row: R) => string | number | null;
+  /** What is sorted by and written to CSV; a column without it is only looked at. */
+  value?: (row: R) => string | number | null;
   /** What is shown, where it is more than the value. */
   cell?: (row: R) => ReactNode;
   /** Unit of the values, for the CSV's header. */
@@ -51,14 +51,22 @@ export function Table<R>({ caption, rows, columns, keyOf, file, more }: Props<R>
                   key={column.name}
                   scope="col"
                   aria-sort={order?.column === i ? (order.down ? 'descending' : 'ascending') : undefined}
-                  className={`border-b-[1.5px] border-rule-strong pr-3 pb-2 align-bottom font-head text-[13px] text-ink-second last:pr-0 ${column.figures ? 'text-right' : 'text-left'} ${hide(column)}`}
+                  className={`border-b-[1.5px] border-rule-strong px-2.5 pb-2 align-bottom max-md:px-1.5 font-head text-[13px] text-ink-second first:pl-0 last:pr-0 ${column.figures ? 'text-right' : 'text-left'} ${hide(column)}`}
                 >
-                  <button type="button" onClick={() => press(i)} className="cursor-pointer hover:text-ink">
-                    {column.name}
-                    <span aria-hidden="true" className="inline-block w-3 text-mark">
-                      {order?.column === i ? (order.down ? '▾' : '▴') : ''}
-                    </span>
-                  </button>
+                  {column.value ? (
+                    <button
+                      type="button"
+                      onClick={() => press(i)}
+                      className="relative cursor-pointer hover:text-ink"
+                    >
+                      {column.name}
+                      <span aria-hidden="true" className="absolute top-0 -right-3 text-mark">
+                        {order?.column === i ? (order.down ? '▾' : '▴') : ''}
+                      </span>
+                    </button>
+                  ) : (
+                    column.name
+                  )}
                 </th>
               ))}
             </tr>
@@ -69,9 +77,9 @@ export function Table<R>({ caption, rows, columns, keyOf, file, more }: Props<R>
                 {columns.map((column) => (
                   <td
                     key={column.name}
-                    className={`border-b border-rule py-2.5 pr-3 align-middle last:pr-0 ${column.figures ? 'text-right font-medium' : ''} ${hide(column)}`}
+                    className={`border-b border-rule px-2.5 py-2.5 align-middle max-md:px-1.5 max-md:text-[13.5px] first:pl-0 last:pr-0 ${column.figures ? 'text-right font-medium' : ''} ${hide(column)}`}
                   >
-                    {column.cell ? column.cell(row) : column.value(row)}
+                    {column.cell ? column.cell(row) : column.value?.(row)}
                   </td>
                 ))}
               </tr>
@@ -101,6 +109,7 @@ export function Table<R>({ caption, rows, columns, keyOf, file, more }: Props<R>
 }
 
 function sort<R>(rows: readonly R[], { value }: Column<R>, down: boolean): R[] {
+  if (!value) return [...rows];
   const compare = (a: string | number | null, b: string | number | null) => {
     if (a === null || b === null) return a === b ? 0 : a === null ? 1 : -1;
     if (typeof a === 'number' && typeof b === 'number') return a - b;

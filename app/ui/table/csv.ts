@@ -10,8 +10,9 @@ function cell(value: string | number | null): string {
 
 /** Rows as comma-separated text, units in the header. */
 export function csvOf<R>(rows: readonly R[], columns: readonly Column<R>[]): string {
-  const header = columns.map(({ name, unit }) => cell(unit ? `${name} (${unit})` : name));
-  const lines = rows.map((row) => columns.map(({ value }) => cell(value(row))));
+  const written = columns.flatMap(({ name, unit, value }) => (value ? [{ name, unit, value }] : []));
+  const header = written.map(({ name, unit }) => cell(unit ? `${name} (${unit})` : name));
+  const lines = rows.map((row) => written.map(({ value }) => cell(value(row))));
   return [header, ...lines].map((line) => line.join(',')).join('\r\n');
 }
 

@@ -4,6 +4,7 @@ import type { Itemwise } from '@/lib/formats/itemwise';
 import { readTable, type Table } from '@/lib/formats/table';
 import { problemsOfIssues } from '@/lib/formats/validate';
 import { invalid, invalidItems, Problem } from '@/lib/problem';
+import { CONTROL_COLUMNS, CONTROL_NEEDED } from '@/openapi/controlTable';
 import { problemItem } from '@/openapi/problemItem';
 import { ControlPointInput, type ControlSubmission } from '@/openapi/schemas/control';
 import type { ProblemItem } from '@/openapi/schemas/problem';
@@ -40,23 +41,12 @@ function entriesOfJson(items: Itemwise<z.output<typeof ControlSubmission>>): Ent
   };
 }
 
-const COLUMNS = [
-  'name',
-  'easting',
-  'northing',
-  'elevation',
-  'sigmaHorizontal',
-  'sigmaVertical',
-  'kind',
-  'description',
-];
-const NEEDED = ['name', 'easting', 'northing'];
 const NUMBER = /^[+-]?(?:\d+\.?\d*|\.\d+)$/;
 
 /** The points of a CSV submission, a row each; empty cells count as absent. */
 function entriesOfCsv(text: string, unit: LengthUnit | undefined, confirmUnits: boolean): Entries {
   if (!unit) throw invalid('?length', 'units_required', 'A CSV body needs ?length=m, ft or ftUS.');
-  const table = readTable(text, COLUMNS, NEEDED);
+  const table = readTable(text, CONTROL_COLUMNS, CONTROL_NEEDED);
   const refused = [...table.problems];
   const entries: Entry[] = [];
   for (const row of table.rows) {

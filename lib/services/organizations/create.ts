@@ -49,7 +49,7 @@ export async function createOrganization(
     });
     record(
       { ...context, tenant },
-      { kind: 'system', organizationId, name },
+      { kind: 'person', organizationId, personId: person.id, name },
       { type: 'organization.created', subject: organizationId },
     );
     const session = await openSession({ ...context, tenant }, person);

@@ -45,7 +45,7 @@ export async function acceptInvitation(
     const { organizationId, id, name } = found;
     record(
       { ...context, tenant },
-      { kind: 'system', organizationId, name },
+      { kind: 'person', organizationId, personId: id, name },
       { type: 'person.accepted', subject: id },
     );
     return openSession({ ...context, tenant }, { ...found, ...change });

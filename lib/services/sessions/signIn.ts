@@ -29,7 +29,7 @@ export async function signIn(
     const { organizationId, id, name } = usable;
     record(
       { ...context, tenant },
-      { kind: 'system', organizationId, name },
+      { kind: 'person', organizationId, personId: id, name },
       { type: 'session.opened', subject: id },
     );
     return openSession({ ...context, tenant }, usable);

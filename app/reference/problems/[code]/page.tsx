@@ -2,7 +2,6 @@ import type { Metadata } from 'next';
 import Link from 'next/link';
 import { notFound } from 'next/navigation';
 import { Heading } from '@/app/ui/frame/Heading';
-import { Sheet } from '@/app/ui/frame/Sheet';
 import { ITEM_PROBLEMS, type ProblemCode, REQUEST_PROBLEMS } from '@/openapi/problemCodes';
 
 const PROBLEMS: Record<string, ProblemCode> = { ...REQUEST_PROBLEMS, ...ITEM_PROBLEMS };
@@ -18,7 +17,7 @@ export default async function ProblemPage({ params }: Props) {
   if (!Object.hasOwn(PROBLEMS, code)) notFound();
   const { status, title, meaning, fix } = PROBLEMS[code];
   return (
-    <Sheet>
+    <>
       <p className="mb-6 text-[13.5px] text-ink-third">
         <Link href="/reference/problems" className="underline">
           Problems
@@ -33,6 +32,6 @@ export default async function ProblemPage({ params }: Props) {
         <dt className="border-b border-rule py-2 text-ink-second">HTTP status</dt>
         <dd className="border-b border-rule py-2">{status}</dd>
       </dl>
-    </Sheet>
+    </>
   );
 }

@@ -23,11 +23,7 @@ export function Acts({ setup, projectId }: { setup: ShownSetup; projectId: strin
   return (
     <section>
       <h2 className="mb-3 font-head text-[19px]">Release to a machine</h2>
-      <Caution>
-        {setup.cautions.map((caution) => (
-          <p key={caution}>{caution.replace('Before any blade moves: ', '')}</p>
-        ))}
-      </Caution>
+      <Caution sentences={setup.cautions} />
       {release ? (
         <p className="mt-3 text-ink-second">
           Released {moment(release.releasedAt)} by {release.releasedBy}

@@ -1,16 +1,10 @@
 'use client';
 
+import { worstOutcome } from '@/app/ui/checkOutcome';
 import { COORDINATE, fixed, moment, signed, unitSign } from '@/app/ui/numbers';
 import { State } from '@/app/ui/State';
 import { Table } from '@/app/ui/table/Table';
 import type { ShownSetup } from './SetupSheet';
-
-const OUTCOME = {
-  agreed: { tone: 'pass', word: 'agreed' },
-  over: { tone: 'fail', word: 'over' },
-  disagrees: { tone: 'hold', word: 'disagrees' },
-  notCapable: { tone: 'hold', word: 'could not tell' },
-} as const;
 
 /** Checks over time, the oldest first. */
 export function Checks({ setup }: { setup: ShownSetup }) {
@@ -66,8 +60,8 @@ export function Checks({ setup }: { setup: ShownSetup }) {
               name: 'Outcome',
               value: ({ target }) => `${target.horizontal} ${target.vertical ?? ''}`,
               cell: ({ target }) => {
-                const worst = worse(target.horizontal, target.vertical);
-                return <State tone={OUTCOME[worst].tone}>{OUTCOME[worst].word}</State>;
+                const { tone, word } = worstOutcome([target.horizontal, target.vertical]);
+                return <State tone={tone}>{word}</State>;
               },
             },
           ]}
@@ -75,11 +69,4 @@ export function Checks({ setup }: { setup: ShownSetup }) {
       )}
     </section>
   );
-}
-
-type Outcome = keyof typeof OUTCOME;
-const ORDER: readonly Outcome[] = ['over', 'disagrees', 'notCapable', 'agreed'];
-
-function worse(a: Outcome, b: Outcome | null): Outcome {
-  return ORDER.find((outcome) => outcome === a || outcome === b) ?? a;
 }

@@ -97,11 +97,7 @@ export function ReleaseDialog({
           required={setup.verdict === 'hold'}
           maxLength={2000}
         />
-        <Caution>
-          {setup.cautions.map((caution) => (
-            <p key={caution}>{caution.replace('Before any blade moves: ', '')}</p>
-          ))}
-        </Caution>
+        <Caution sentences={setup.cautions} />
         {release.error ? <Failure error={release.error} /> : null}
         <div className="flex gap-3">
           <Button type="submit" disabled={release.isPending}>

@@ -7,6 +7,7 @@ import { Crumb, PageHead } from '@/app/ui/frame/PageHead';
 import { Failure, Skeleton } from '@/app/ui/Notice';
 import { moment, unitName } from '@/app/ui/numbers';
 import { Radio } from '@/app/ui/Radio';
+import { ReasonList } from '@/app/ui/ReasonList';
 import { Stamp } from '@/app/ui/Stamp';
 import type * as contracts from '@/openapi/contracts/setups';
 import type { Setup } from '@/openapi/schemas/setup';
@@ -14,7 +15,6 @@ import { Acts } from './Acts';
 import { Checks } from './Checks';
 import { Fit, Standing } from './Ledgers';
 import { Provenance } from './Provenance';
-import { Reasons } from './Reasons';
 import { Targets } from './Targets';
 
 export type ShownSetup = z.output<typeof Setup>;
@@ -61,7 +61,7 @@ export function SetupSheet({ projectId, setupId }: { projectId: string; setupId:
         <Targets setup={data} />
         <div className="grid gap-9 lg:grid-cols-[minmax(0,1.55fr)_minmax(280px,1fr)]">
           <div className="space-y-9">
-            <Reasons setup={data} />
+            <ReasonList reasons={data.reasons} notes={data.notes} />
             <Checks setup={data} />
             <Provenance setup={data} projectId={projectId} />
           </div>

@@ -1,5 +1,6 @@
 'use client';
 
+import { CONTROL_TONE } from '@/app/ui/controlState';
 import { ResidualScale } from '@/app/ui/draw/ResidualScale';
 import { COORDINATE, fixed, signed, unitSign } from '@/app/ui/numbers';
 import { State } from '@/app/ui/State';
@@ -7,8 +8,6 @@ import { type Column, Table } from '@/app/ui/table/Table';
 import type { ShownSetup } from './SetupSheet';
 
 type Target = ShownSetup['targets'][number];
-
-const TONE = { trusted: 'pass', suspect: 'hold', quarantined: 'fail' } as const;
 
 function largestW({ observations }: Target): number | null {
   const all = observations.flatMap(({ standardised }) =>
@@ -100,7 +99,7 @@ export function Targets({ setup }: { setup: ShownSetup }) {
           {
             name: 'Control',
             value: (target) => target.status,
-            cell: (target) => <State tone={TONE[target.status]}>{target.status}</State>,
+            cell: (target) => <State tone={CONTROL_TONE[target.status]}>{target.status}</State>,
           },
         ]}
       />

@@ -1,0 +1,8 @@
+import type { Metadata } from 'next';
+import { People } from './People';
+
+export const metadata: Metadata = { title: 'People' };
+
+export default function PeoplePage() {
+  return <People />;
+}

@@ -1,0 +1,10 @@
+/** Hub shapes of the states of control. */
+export const CONTROL_TONE = { trusted: 'pass', suspect: 'hold', quarantined: 'fail' } as const;
+export type ControlState = keyof typeof CONTROL_TONE;
+
+/** What a state means for a setup. */
+export const CONTROL_MEANING: Record<ControlState, string> = {
+  trusted: 'counts in every setup',
+  suspect: 'computed, counts for no verdict',
+  quarantined: 'takes no part at all',
+};
