@@ -1,7 +1,7 @@
 import { CRITICAL_W } from '@/lib/compute/statistics/distributions';
 import type { CheckDifference, Tolerance } from './checkShots';
 import type { ReadingKind } from './faces';
-import type { StationFit } from './stationFit';
+import type { FittedMark, StationFit } from './stationFit';
 import type { WorkAccuracy } from './workAccuracy';
 
 export type Verdict = 'pass' | 'hold' | 'fail';
@@ -99,7 +99,7 @@ function judgeFaults(
     lower('horizontal', 'fail', { code: 'not_converged' });
     lower('vertical', 'fail');
   }
-  for (const mark of fit.marks) {
+  for (const mark of worstFirst(fit.marks)) {
     const worstReading = new Map<ReadingKind, number>();
     for (const { kind, standardised } of mark.readings) {
       const w = Math.abs(standardised);
@@ -135,6 +135,16 @@ function judgeFaults(
       lower(axis, 'fail', { code: 'check_over', axis, target, value, limit: limits.residual[axis], inFit });
     }
   }
+}
+
+/**
+ * A wrong mark pulls the good ones off too; the one whose readings fit worst is the one to suspect (Baarda's data
+ * snooping), so its findings stand first.
+ */
+function worstFirst(marks: readonly FittedMark[]): FittedMark[] {
+  const worst = ({ readings }: FittedMark) =>
+    Math.max(0, ...readings.map(({ standardised }) => Math.abs(standardised) || 0));
+  return [...marks].sort((a, b) => worst(b) - worst(a));
 }
 
 /** What is not proven: too few marks, one mark carrying it all, spread, accuracy at work, checks unable to tell. */

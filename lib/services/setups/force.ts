@@ -26,7 +26,7 @@ export const FORCE_WORDS: Record<ForceFault, Words> = {
   },
   setup_failed_since: {
     code: 'setup_failed_since',
-    text: 'A check has found the setup wrong.',
+    text: 'The setup fails: its own fit or a later check shows that it is wrong.',
     action: 'Set up anew, then shoot again.',
   },
 };
