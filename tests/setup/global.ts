@@ -32,12 +32,20 @@ export default async function setup(project: TestProject) {
   const cluster = await startThrowawayCluster();
   try {
     await makeTemplate(cluster);
+    const ways = waysInto(cluster);
+    project.provide('cluster', ways);
+    const stopHubs = await provideHubs(project, ways);
+    return async () => {
+      await stopHubs();
+      await cluster.stop();
+    };
   } catch (error) {
     await cluster.stop();
     throw error;
   }
-  const ways = waysInto(cluster);
-  project.provide('cluster', ways);
+}
+
+async function provideHubs(project: TestProject, ways: ProvidedContext['cluster']) {
   const workers = Array.from(
     { length: project.config.maxWorkers as number },
     (_, i) => `hubtack_worker_${i + 1}`,
@@ -47,10 +55,7 @@ export default async function setup(project: TestProject) {
     'hubs',
     hubs.map(({ url, appUrl, superuserUrl }) => ({ url, appUrl, superuserUrl })),
   );
-  return async () => {
-    await Promise.all(hubs.map((hub) => hub.stop()));
-    await cluster.stop();
-  };
+  return () => Promise.all(hubs.map((hub) => hub.stop()));
 }
 
 function waysInto(cluster: ThrowawayCluster): ProvidedContext['cluster'] {

@@ -45,8 +45,8 @@ export function wordsOfBenchReason(code: string): Words {
   return BENCH_REASONS[code];
 }
 
-/** These leave nothing to correct by. */
-const NO_CORRECTION = new Set([
+/** These leave nothing to judge a blade by. */
+const UNFIT = new Set([
   'setup_not_in_force',
   'setup_superseded',
   'setup_failed_since',
@@ -55,8 +55,13 @@ const NO_CORRECTION = new Set([
   'readings_unsteady',
 ]);
 
+function isUnfit(reasons: readonly string[]): boolean {
+  return reasons.some((code) => UNFIT.has(code));
+}
+
+/** A correction is offered for an edge that is off by more than the tolerance, where the check itself is sound. */
 export function offersCorrection(reasons: readonly string[]): boolean {
-  return !reasons.some((code) => NO_CORRECTION.has(code));
+  return reasons.some((code) => code === 'edge_low' || code === 'edge_high') && !isUnfit(reasons);
 }
 
 const EDGE = { left: 'Left edge', right: 'Right edge', centre: 'Centre of the edge' } as const;
@@ -67,14 +72,13 @@ export function benchInstruction(
     edge: 'left' | 'right' | 'centre';
     benchmark: string;
     difference: number;
-    verdict: 'pass' | 'hold' | 'fail';
     reasons: readonly string[];
   },
   length: Lengths,
 ): string {
   const edge = EDGE[check.edge];
   const size = length.text(Math.abs(check.difference));
-  if (!offersCorrection(check.reasons)) {
+  if (isUnfit(check.reasons)) {
     const words = check.reasons.map(wordsOfBenchReason);
     return `Do not correct. ${words.map(({ text, action }) => `${text} ${action ?? ''}`.trim()).join(' ')}`;
   }
@@ -82,9 +86,8 @@ export function benchInstruction(
   const warning = others
     .map((code) => ` ${wordsOfBenchReason(code).text} ${wordsOfBenchReason(code).action}`)
     .join('');
-  const within =
-    check.verdict === 'pass' || (others.length > 0 && !check.reasons.some((c) => c.startsWith('edge_')));
-  if (within) return `${edge} agrees with ${check.benchmark} within the tolerance (${size}).${warning}`;
+  if (!offersCorrection(check.reasons))
+    return `${edge} agrees with ${check.benchmark} within the tolerance (${size}).${warning}`;
   const low = check.difference < 0;
   const reads = low ? 'low' : 'high';
   const ground = low ? 'high' : 'low';

@@ -1,6 +1,9 @@
 import type { SetupRow } from './load';
 import type { Words } from './words';
 
+/** Device clocks show whole seconds and stray by about as much: a shot so little before a release was taken under it. */
+export const CLOCK_SLACK_MS = 2000;
+
 /** Releases and withdrawals of a setup in their order. */
 export interface Turn {
   action: 'release' | 'withdraw';
@@ -43,7 +46,10 @@ export function forceFault(
   if (setup.state === 'superseded') return 'setup_superseded';
   if (setup.verdict === 'fail') return 'setup_failed_since';
   const instant = new Date(at);
-  const before = turns.filter((turn) => new Date(turn.effectiveAt) <= instant);
+  const before = turns.filter(({ action, effectiveAt }) => {
+    const slack = action === 'release' ? CLOCK_SLACK_MS : 0;
+    return new Date(effectiveAt).getTime() <= instant.getTime() + slack;
+  });
   const last = before.at(-1);
   const inForce =
     last?.action === 'release' && last.validUntil !== null && instant < new Date(last.validUntil);

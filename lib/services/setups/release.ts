@@ -13,6 +13,7 @@ import { record } from '@/lib/services/record';
 import type { JsonOf, ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/setups';
 import { Instant } from '@/openapi/schemas/primitives';
+import { CLOCK_SLACK_MS } from './force';
 import { loadSetup, type ReleaseRow, type SetupRow } from './load';
 import { presentSetup } from './present';
 
@@ -117,7 +118,9 @@ function effectiveFrom(releasedAt: string | undefined, setup: SetupRow, now: Dat
   const parsed = Instant.safeParse(releasedAt);
   if (!parsed.success) throw invalid('/releasedAt', 'time_invalid');
   const at = utcInstant(releasedAt);
-  if (new Date(at) > now || new Date(at) < new Date(setup.observedAt)) {
+  const ahead = new Date(at).getTime() - now.getTime();
+  if (ahead > 0 && ahead <= CLOCK_SLACK_MS) return now.toISOString();
+  if (ahead > 0 || new Date(at) < new Date(setup.observedAt)) {
     throw invalid(
       '/releasedAt',
       'time_out_of_order',
