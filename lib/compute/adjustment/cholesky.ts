@@ -1,8 +1,8 @@
 import { SingularError } from './model';
 
 /**
- * A pivot this small beside its own diagonal element means that the other unknowns reproduce this one. Relative,
- * so that the units of an unknown do not matter.
+ * A pivot this small beside the diagonal element that it began as means that the other unknowns reproduce this
+ * one. Relative, so that the units of an unknown do not matter.
  */
 const SINGULAR_PIVOT = 1e-12;
 
@@ -11,14 +11,15 @@ const SINGULAR_PIVOT = 1e-12;
  * on the diagonal, A = LLᵀ. Golub and Van Loan, Matrix Computations, algorithm 4.2.1.
  *
  * @param offset added to the index of the failing pivot, for the message
+ * @param beginnings diagonal elements to compare the pivots with, where `a` was reduced before
  * @throws SingularError where a pivot vanishes
  */
-export function factor(a: Float64Array, n: number, offset = 0): void {
+export function factor(a: Float64Array, n: number, offset = 0, beginnings?: Float64Array): void {
   for (let j = 0; j < n; j++) {
-    const diagonal = a[j * n + j];
-    let pivot = diagonal;
+    let pivot = a[j * n + j];
+    const beginning = beginnings ? beginnings[j] : pivot;
     for (let k = 0; k < j; k++) pivot -= a[j * n + k] * a[j * n + k];
-    if (!(pivot > SINGULAR_PIVOT * diagonal)) throw new SingularError(offset + j);
+    if (!(pivot > SINGULAR_PIVOT * beginning)) throw new SingularError(offset + j);
     const root = Math.sqrt(pivot);
     a[j * n + j] = root;
     for (let i = j + 1; i < n; i++) {

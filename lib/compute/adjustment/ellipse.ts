@@ -18,7 +18,7 @@ export function standardEllipse(varianceEast: number, varianceNorth: number, cov
   return {
     semiMajor: Math.sqrt(mean + spread),
     semiMinor: Math.sqrt(Math.max(0, mean - spread)),
-    azimuth: azimuth < 0 ? azimuth + Math.PI : azimuth,
+    azimuth: azimuth < 0 ? (azimuth + Math.PI) % Math.PI : azimuth,
   };
 }
 

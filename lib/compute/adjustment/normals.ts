@@ -28,6 +28,8 @@ export class NormalEquations {
   /** Cholesky factor of S (after `build`). */
   readonly s: Float64Array;
   private readonly t: Float64Array;
+  /** Diagonal of G before the blocks were eliminated, against which the pivots of S are measured. */
+  private readonly gDiagonal: Float64Array;
 
   constructor(private readonly model: AdjustmentModel) {
     const { shared: g, blocks, rowStart, columns, unknowns } = model;
@@ -60,6 +62,7 @@ export class NormalEquations {
     this.tShared = new Float64Array(g);
     this.s = new Float64Array(g * g);
     this.t = new Float64Array(g);
+    this.gDiagonal = new Float64Array(g);
   }
 
   /** Adds up all rows and factors; `without` leaves one block and all its rows out. */
@@ -67,7 +70,7 @@ export class NormalEquations {
     this.accumulate(coefficients, misclosures);
     for (let b = 0; b < this.blockCount; b++) if (b !== without) this.factorBlock(b);
     this.reduce(this.s, this.t, without);
-    factor(this.s, this.g);
+    factor(this.s, this.g, 0, this.gDiagonal);
   }
 
   /**
@@ -115,10 +118,10 @@ export class NormalEquations {
     this.reduce(s, dx, block);
     if (fixed >= 0) {
       for (let i = 0; i < g; i++) s[i * g + fixed] = s[fixed * g + i] = 0;
-      s[fixed * g + fixed] = 1;
+      s[fixed * g + fixed] = this.gDiagonal[fixed] = 1;
       dx[fixed] = 0;
     }
-    factor(s, g);
+    factor(s, g, 0, this.gDiagonal);
     solveLower(s, g, dx);
     solveUpper(s, g, dx);
     return dx;
@@ -181,17 +184,19 @@ export class NormalEquations {
     solveLower(l, size, this.u.subarray(start - g, start - g + size));
   }
 
-  /** S and t from the shared rows and all factored blocks but `without`. */
+  /** S, t and the diagonal of G from the shared rows and all factored blocks but `without`. */
   private reduce(s: Float64Array, t: Float64Array, without: number): void {
-    const { g, gBlocks, tBlocks, w, u } = this;
+    const { g, gBlocks, tBlocks, gDiagonal, w, u } = this;
     s.set(this.gShared);
     t.set(this.tShared);
+    for (let j = 0; j < g; j++) gDiagonal[j] = s[j * g + j];
     for (let b = 0; b < this.blockCount; b++) {
       if (b === without) continue;
       const start = this.model.blocks[b] - g;
       const size = this.model.blocks[b + 1] - this.model.blocks[b];
       const base = this.bStart[b];
       for (let j = 0; j < g; j++) {
+        gDiagonal[j] += gBlocks[b * g * g + j * g + j];
         t[j] += tBlocks[b * g + j];
         for (let r = 0; r < size; r++) t[j] -= w[base + r * g + j] * u[start + r];
         for (let k = 0; k <= j; k++) {

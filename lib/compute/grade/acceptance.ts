@@ -33,8 +33,12 @@ export function deviationStatistics(
   return { count, mean, standardDeviation, rmse, withinTolerance, percentWithinLimits };
 }
 
+/** What units and subtraction leave over, m: a reading of 400.05 ft is 0.05 ft above 400 ft, not a hair more. */
+export const ROUNDING = 1e-10;
+
+/** Whether a reading lies within its limits, the limits included. */
 export function isWithin(deviation: number, { below, above }: GradeTolerance): boolean {
-  return deviation >= -below && deviation <= above;
+  return deviation >= -below - ROUNDING && deviation <= above + ROUNDING;
 }
 
 function percentWithin(mean: number, s: number, n: number, { below, above }: GradeTolerance): number {

@@ -1,3 +1,5 @@
+import { ROUNDING } from './acceptance';
+
 export interface BenchReading {
   /** Mean of the repeats, m. */
   read: number;
@@ -20,12 +22,12 @@ export function benchReading(known: number, elevations: readonly number[], toler
   const read = elevations.reduce((sum, e) => sum + e, 0) / elevations.length;
   const spread = elevations.length > 1 ? Math.max(...elevations) - Math.min(...elevations) : null;
   const difference = read - known;
-  const unsteady = spread !== null && spread > tolerance;
+  const unsteady = spread !== null && spread > tolerance + ROUNDING;
   return {
     read,
     spread,
     difference,
     unsteady,
-    verdict: unsteady ? 'hold' : Math.abs(difference) > tolerance ? 'fail' : 'pass',
+    verdict: unsteady ? 'hold' : Math.abs(difference) > tolerance + ROUNDING ? 'fail' : 'pass',
   };
 }

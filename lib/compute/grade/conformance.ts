@@ -1,4 +1,5 @@
 import { normalCdf } from '@/lib/compute/statistics/distributions';
+import { isWithin } from './acceptance';
 import type { SurfaceHeight } from './surface';
 
 /** How far ground may lie under and over its layer, m, both positive. */
@@ -47,7 +48,7 @@ export function conformance(
 ): Conformance {
   const { below, above } = tolerance;
   if (!uncertainty) {
-    const inside = deviation >= -below && deviation <= above;
+    const inside = isWithin(deviation, tolerance);
     return { probability: inside ? 1 : 0, verdict: inside ? 'pass' : 'fail', notCapable: false };
   }
   const within = (d: number) => normalCdf((above - d) / uncertainty) - normalCdf((-below - d) / uncertainty);

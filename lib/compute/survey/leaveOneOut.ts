@@ -31,12 +31,13 @@ export function shiftsWithout(model: StationModel, solution: Solution): (MarkShi
 
 function shift(model: StationModel, solution: Solution, block: number, step: Float64Array): MarkShift | null {
   const { unknowns } = solution;
-  const length = Math.hypot(step[EASTING], step[NORTHING], step[AXIS]);
-  if (length * length < NONLINEAR * nearestOther(model, unknowns, block)) {
-    return { horizontal: Math.hypot(step[EASTING], step[NORTHING]), vertical: step[AXIS] };
-  }
+  const linear = { horizontal: Math.hypot(step[EASTING], step[NORTHING]), vertical: step[AXIS] };
+  const length = Math.hypot(linear.horizontal, linear.vertical);
+  if (length * length < NONLINEAR * nearestOther(model, unknowns, block)) return linear;
   const repeated = orSingular(() => solve(model, unknowns, block));
-  if (repeated instanceof SingularError || !repeated.converged) return null;
+  if (repeated instanceof SingularError) return null;
+  // The rest contradicts itself grossly: then the first step says well enough that the shift is large.
+  if (!repeated.converged) return linear;
   const moved = (unknown: number) => repeated.unknowns[unknown] - unknowns[unknown];
   return { horizontal: Math.hypot(moved(EASTING), moved(NORTHING)), vertical: moved(AXIS) };
 }

@@ -16,16 +16,23 @@ export const ORIENTATION = 3;
 export const REFRACTION = 4;
 
 /**
- * Holds an unknown that nothing in the setup determines (the height of a mark without elevation) so loosely that
- * it takes no part: 1 km.
+ * Holds an unknown that nothing in the setup determines, m. It then takes no part, and no redundancy comes of it,
+ * whatever the figure.
  */
-const UNKNOWN_SIGMA = 1000;
+const UNDETERMINED_SIGMA = 0.1;
+/** An error that is stated to be zero, m or rad: small beside everything, and still a weight. */
+const NEGLIGIBLE_SIGMA = 1e-9;
 
 export interface StationModel extends AdjustmentModel {
   /** Row of each reading; its rows come first, pseudo-observations after them. */
   readonly readings: readonly Reading[];
   /** Start values of all unknowns. */
   readonly start: Float64Array;
+  /**
+   * Added to unknown eastings and northings, m. They are counted from the start position: in grid coordinates of
+   * millions of metres the last digit alone would be too coarse for the iteration to settle.
+   */
+  readonly origin: { easting: number; northing: number };
   /** Names of the marks, one a block. */
   readonly marks: readonly string[];
   /** Unknowns of a mark's coordinates, as its block begins: easting, northing, elevation. */
@@ -96,10 +103,10 @@ export function stationModel(input: {
   }
 
   const x = new Float64Array(blocks[marks.length]);
-  x.set([start.easting, start.northing, start.elevation, start.orientation, surroundings.refraction]);
+  x.set([0, 0, start.elevation, start.orientation, surroundings.refraction]);
   const held: { unknown: number; value: number }[] = [];
   const hold = (unknown: number, value: number, sigma: number) => {
-    rows.add([unknown], sigma);
+    rows.add([unknown], Math.max(sigma, NEGLIGIBLE_SIGMA));
     held.push({ unknown, value });
     x[unknown] = value;
   };
@@ -107,6 +114,9 @@ export function stationModel(input: {
   if (collimation >= 0) hold(collimation, 0, accuracy.collimation);
   if (index >= 0) hold(index, 0, accuracy.collimation);
   if (scale >= 0) hold(scale, 0, surroundings.unknownAtmospherePpm * 1e-6);
+  const zenithsTo = new Set(
+    readings.flatMap(({ kind, erection }) => (kind === 'zenith' ? erections[erection].target : [])),
+  );
   for (const [b, name] of marks.entries()) {
     const mark = control.get(name)!;
     const first = blocks[b];
@@ -114,9 +124,11 @@ export function stationModel(input: {
     const merged = standing.length === 1 ? standing[0] : null;
     const horizontal = Math.hypot(mark.horizontalSigma, merged?.centringSigma ?? 0);
     const vertical = Math.hypot(mark.verticalSigma, merged?.heightSigma ?? 0);
-    hold(first, mark.easting, horizontal);
-    hold(first + 1, mark.northing, horizontal);
-    hold(first + 2, mark.elevation ?? start.elevation, mark.elevation === null ? UNKNOWN_SIGMA : vertical);
+    hold(first, mark.easting - start.easting, horizontal);
+    hold(first + 1, mark.northing - start.northing, horizontal);
+    if (mark.elevation !== null) hold(first + 2, mark.elevation, vertical);
+    else if (zenithsTo.has(name)) x[first + 2] = start.elevation;
+    else hold(first + 2, start.elevation, UNDETERMINED_SIGMA);
   }
   erections.forEach((erection, e) => {
     if (ownStart[e] < 0) return;
@@ -124,14 +136,8 @@ export function stationModel(input: {
     hold(ownStart[e] + 1, 0, erection.centringSigma);
     hold(ownStart[e] + 2, 0, erection.heightSigma);
   });
-  const heightDetermined = readings.some(
-    (reading) =>
-      reading.kind === 'zenith' && control.get(erections[reading.erection].target)!.elevation !== null,
-  );
-  if (!heightDetermined) {
-    rows.add([AXIS], UNKNOWN_SIGMA);
-    held.push({ unknown: AXIS, value: start.elevation });
-  }
+  const heightDetermined = [...zenithsTo].some((name) => control.get(name)!.elevation !== null);
+  if (!heightDetermined) hold(AXIS, start.elevation, UNDETERMINED_SIGMA);
 
   const structure = rows.build();
   const firstOf = Int32Array.from(readings, ({ erection }) => markStart.get(erections[erection].target)!);
@@ -144,6 +150,7 @@ export function stationModel(input: {
     blocks,
     readings,
     start: x,
+    origin: { easting: start.easting, northing: start.northing },
     marks,
     markUnknown: (name) => markStart.get(name)!,
     heightDetermined,

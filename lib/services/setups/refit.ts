@@ -1,6 +1,7 @@
-import { and, asc, eq, isNull } from 'drizzle-orm';
+import { and, asc, eq, isNull, sql } from 'drizzle-orm';
 import { bulkInsert } from '@/db/bulk';
 import { observations, setupChecks, setupResults, setups, toleranceClasses } from '@/db/schema';
+import type { Tenant } from '@/db/tenant';
 import type { Shot } from '@/lib/compute/survey/shots';
 import { StationError } from '@/lib/compute/survey/stationFit';
 import { invalid, invalidItems, Problem } from '@/lib/problem';
@@ -156,7 +157,7 @@ async function write(
   const setup: SetupRow = {
     ...before,
     id,
-    clientId: `${before.clientId.replace(/\.r\d+$/, '')}.r${refitNumber(before.clientId) + 1}`,
+    clientId: await refitName(tenant, before),
     resultVersion: 1,
     verdict: result.verdict,
     state: 'computed',
@@ -202,7 +203,23 @@ async function write(
   return { setup, result: resultRow, checks: checkRows, release: null };
 }
 
-/** Refits are named after the setup that they come from: st-7, st-7.r1, st-7.r2. */
-function refitNumber(clientId: string): number {
-  return Number(/\.r(\d+)$/.exec(clientId)?.[1] ?? 0);
+const REFIT = /\.r(\d{1,6})$/;
+
+/** Refits are named after the setup that they come from: st-7, st-7.r1, st-7.r2; names that clients took are left. */
+async function refitName(tenant: Tenant, { organizationId, projectId, clientId }: SetupRow): Promise<string> {
+  const stem = clientId.replace(REFIT, '');
+  const rows = await tenant.db
+    .select({ name: setups.clientId })
+    .from(setups)
+    .where(
+      and(
+        eq(setups.organizationId, organizationId),
+        eq(setups.projectId, projectId),
+        sql`starts_with(${setups.clientId}, ${`${stem}.r`})`,
+      ),
+    );
+  const numbers = rows.flatMap(({ name }) =>
+    name.replace(REFIT, '') === stem ? Number(REFIT.exec(name)?.[1]) : [],
+  );
+  return `${stem}.r${Math.max(0, ...numbers) + 1}`;
 }

@@ -49,8 +49,12 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
   problems.push(...incompleteChecks(shots, at));
   if (problems.length > 0) return problems;
 
-  const earlier = checks.flatMap((check) => check.result.targets);
-  const judged = judgeWithCheck(result, shots.map(asEngineShot), site.control, earlier);
+  const observedAt =
+    item.observedAt === undefined ? runtime.now().toISOString() : utcInstant(item.observedAt);
+  const before = checks.filter((check) => new Date(check.observedAt) <= new Date(observedAt));
+  const after = checks.filter((check) => !before.includes(check));
+  const [earlier, later] = [before, after].map((some) => some.flatMap((check) => check.result.targets));
+  const judged = judgeWithCheck(result, shots.map(asEngineShot), site.control, earlier, later);
   const resultVersion = setup.resultVersion + 1;
   const check: CheckRow = {
     organizationId: caller.organizationId,
@@ -62,12 +66,13 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
     purpose: item.purpose,
     agreed: isAgreed(judged.check.targets),
     result: judged.check,
-    observedAt: item.observedAt === undefined ? runtime.now().toISOString() : utcInstant(item.observedAt),
+    observedAt,
     resultVersion,
   };
   rows.setupChecks.push(check);
   draft.checks.push(check);
-  checks.push(check);
+  // In the order that they were observed in, as they are read later.
+  checks.splice(before.length, 0, check);
   const resultRow = {
     organizationId: caller.organizationId,
     setupId: setup.id,
