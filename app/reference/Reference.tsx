@@ -29,6 +29,12 @@ const CONFIGURATION = {
       --scalar-color-2: var(--ink-second);
       --scalar-color-3: var(--ink-third);
       --scalar-color-accent: var(--mark);
+      --scalar-color-green: var(--pass);
+      --scalar-color-blue: var(--fill);
+      --scalar-color-orange: var(--cut);
+      --scalar-color-yellow: var(--hold);
+      --scalar-color-red: var(--fail);
+      --scalar-color-purple: var(--mark);
       --scalar-radius: 3px;
       --scalar-radius-lg: 3px;
     }`,
@@ -48,12 +54,14 @@ export function Reference({ nonce }: { nonce?: string }) {
     }
   };
   return (
-    <>
-      <h1 className="sr-only">API reference</h1>
+    <section aria-labelledby="reference-title">
+      <h1 id="reference-title" className="sr-only">
+        API reference
+      </h1>
       <div ref={place} className="-mx-5 md:-mx-10">
         <p className="p-10 text-ink-second">The reference is being laid out…</p>
       </div>
       <Script src="/vendor/reference.js" nonce={nonce} strategy="afterInteractive" onReady={show} />
-    </>
+    </section>
   );
 }

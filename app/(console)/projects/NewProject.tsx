@@ -1,9 +1,10 @@
 'use client';
 
-import { useMutation } from '@tanstack/react-query';
+import { useMutation, useQueryClient } from '@tanstack/react-query';
 import { useRouter } from 'next/navigation';
 import type { FormEvent } from 'react';
 import { call } from '@/app/ui/data/call';
+import { refresh } from '@/app/ui/data/queries';
 import { Button } from '@/app/ui/form/Button';
 import { Field } from '@/app/ui/form/Field';
 import { Select } from '@/app/ui/form/Select';
@@ -14,10 +15,14 @@ import type * as contracts from '@/openapi/contracts/projects';
 /** Opens a project; unit and frame stand for good, the rest has defaults of common practice. */
 export function NewProject() {
   const router = useRouter();
+  const client = useQueryClient();
   const make = useMutation({
     mutationFn: (body: { name: string; lengthUnit: LengthUnit; frame: { kind: 'local' } }) =>
       call<typeof contracts.createProject>('POST', '/projects', { body }),
-    onSuccess: (project) => router.push(`/projects/${project.id}/setups`),
+    onSuccess: async (project) => {
+      await refresh(client, '/projects');
+      router.push(`/projects/${project.id}/setups`);
+    },
   });
   function submit(event: FormEvent<HTMLFormElement>) {
     event.preventDefault();

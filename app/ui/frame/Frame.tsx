@@ -33,6 +33,8 @@ export function Frame({ children }: { children: ReactNode }) {
   const { projectId } = useParams<{ projectId?: string }>();
   const pathname = usePathname();
   const { data: me, isError: isStranger } = useWhoami();
+  // The library that lays out the API document brings a main part of its own.
+  const Main = pathname === '/reference' ? 'div' : 'main';
   const entry = (href: string, name: string) => (
     <li key={href}>
       <Link
@@ -81,13 +83,13 @@ export function Frame({ children }: { children: ReactNode }) {
           </div>
         </header>
       </div>
-      <main id="page" tabIndex={-1} className="max-w-[1300px] px-5 pt-6 pb-14 outline-none md:px-10">
+      <Main id="page" tabIndex={-1} className="max-w-[1300px] px-5 pt-6 pb-14 outline-none md:px-10">
         <Offline />
         {children}
-        <div className="mt-12 md:hidden">
-          <SignOut />
-        </div>
-      </main>
+      </Main>
+      <footer className="px-5 pb-10 md:hidden print:hidden">
+        <SignOut />
+      </footer>
     </div>
   );
 }
