@@ -460,6 +460,12 @@ export const ITEM_PROBLEMS = {
     'Neither a clientId nor an id of a setup in this project.',
     'Correct it; a setup of the same upload must itself be accepted.',
   ),
+  setup_without_height: problem(
+    422,
+    'The setup has no height',
+    'No mark with an elevation was seen with a zenith angle, so that ground shot from it has none either.',
+    'Shoot a mark with an elevation, and refit or set up anew.',
+  ),
   benchmark_unknown: problem(
     422,
     'No such benchmark',

@@ -5,6 +5,6 @@ export type ControlState = keyof typeof CONTROL_TONE;
 /** What a state means for a setup. */
 export const CONTROL_MEANING: Record<ControlState, string> = {
   trusted: 'counts in every setup',
-  suspect: 'computed, counts for no verdict',
+  suspect: 'takes part, proves nothing',
   quarantined: 'takes no part at all',
 };

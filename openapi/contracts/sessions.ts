@@ -32,7 +32,7 @@ export const acceptInvitation = contract({
   path: '/invitations/acceptances',
   tag: 'Access',
   summary: 'Accept an invitation',
-  description: 'Sets the password of an invited person and signs in.',
+  description: 'Sets the password of an invited person, ends their earlier sessions and signs in.',
   access: 'public',
   body: { json: InvitationAcceptance, limit: 4096 },
   answers: { 201: { description: 'Signed in; the cookie is HttpOnly.', json: Whoami } },

@@ -6,7 +6,7 @@ import { AnswerUnits, ConfirmUnits, LengthUnits } from './units';
 export const ControlKind = z.enum(['control', 'benchmark', 'target']).meta({ id: 'ControlKind' });
 export const ControlStatus = z.enum(['trusted', 'suspect', 'quarantined']).meta({
   id: 'ControlStatus',
-  description: 'A suspect point counts for no verdict; a quarantined one takes no part at all.',
+  description: 'A suspect point takes part but proves nothing; a quarantined one takes no part at all.',
 });
 
 export const ControlPointInput = z

@@ -60,9 +60,11 @@ export function judgeSetup(
 ): SetupVerdict {
   const reasons: SetupReason[] = [];
   const verdicts: Record<Axis, Verdict> = { horizontal: 'pass', vertical: 'pass' };
-  const lower = (axis: Axis, to: 'hold' | 'fail', reason?: SetupReason) => {
-    if (verdicts[axis] !== 'fail') verdicts[axis] = to;
-    if (reason) reasons.push(reason);
+  const lower: Lower = (axes, to, reason) => {
+    const open = axes.filter((axis) => verdicts[axis] !== 'fail');
+    for (const axis of open) verdicts[axis] = to;
+    // What is wrong says enough: that the same axis is not proven either only hides it.
+    if (to === 'fail' || open.length > 0) reasons.push(reason);
   };
   judgeFaults(fit, limits, checks, lower);
   judgeProof(fit, limits, checks, work, lower);
@@ -70,9 +72,8 @@ export function judgeSetup(
   const wanted = AXES.filter((axis) => !independent(checks, axis));
   if (limits.checkRequired && wanted.length > 0) {
     const onlyCheck = reasons.length === 0;
-    for (const axis of wanted) lower(axis, 'hold');
-    if (onlyCheck) return { verdict: 'hold', verdicts, reasons: [{ code: 'check_wanted', axes: wanted }] };
-    reasons.push({ code: 'check_wanted', axes: wanted });
+    lower(wanted, 'hold', { code: 'check_wanted', axes: wanted });
+    if (onlyCheck) return { verdict: 'hold', verdicts, reasons };
   }
   const verdict = worst(verdicts);
   if (verdict === 'pass') {
@@ -86,7 +87,7 @@ export function judgeSetup(
   return { verdict, verdicts, reasons };
 }
 
-type Lower = (axis: Axis, to: 'hold' | 'fail', reason?: SetupReason) => void;
+type Lower = (axes: readonly Axis[], to: 'hold' | 'fail', reason: SetupReason) => void;
 
 /** What is wrong: no convergence, outliers, residuals or checks beyond the class' limits. */
 function judgeFaults(
@@ -96,8 +97,7 @@ function judgeFaults(
   lower: Lower,
 ): void {
   if (!fit.converged) {
-    lower('horizontal', 'fail', { code: 'not_converged' });
-    lower('vertical', 'fail');
+    lower(AXES, 'fail', { code: 'not_converged' });
   }
   for (const mark of worstFirst(fit.marks)) {
     const worstReading = new Map<ReadingKind, number>();
@@ -113,7 +113,7 @@ function judgeFaults(
         value,
         limit: CRITICAL_W,
       } as const;
-      lower(AXIS_OF_KIND[kind], 'fail', reason);
+      lower([AXIS_OF_KIND[kind]], 'fail', reason);
     }
     const { easting, northing, elevation } = mark.residual;
     const sizes = {
@@ -123,7 +123,7 @@ function judgeFaults(
     for (const axis of AXES) {
       const [value, limit] = [sizes[axis], limits.residual[axis]];
       if (value > limit) {
-        lower(axis, 'fail', { code: 'target_residual_over', axis, target: mark.name, value, limit });
+        lower([axis], 'fail', { code: 'target_residual_over', axis, target: mark.name, value, limit });
       }
     }
   }
@@ -132,7 +132,7 @@ function judgeFaults(
       if (check[axis] !== 'over') continue;
       const value = sizeOf(check, axis);
       const { target, inFit } = check;
-      lower(axis, 'fail', { code: 'check_over', axis, target, value, limit: limits.residual[axis], inFit });
+      lower([axis], 'fail', { code: 'check_over', axis, target, value, limit: limits.residual[axis], inFit });
     }
   }
 }
@@ -158,18 +158,17 @@ function judgeProof(
   for (const axis of AXES) {
     const count = fit.marks.filter((mark) => mark[axis] && mark.status === 'trusted').length;
     if (count < MARKS_WANTED[axis]) {
-      lower(axis, 'hold', { code: 'too_few_marks', axis, count, limit: MARKS_WANTED[axis] });
+      lower([axis], 'hold', { code: 'too_few_marks', axis, count, limit: MARKS_WANTED[axis] });
     } else judgeLeaveOneOut(fit, axis, limits.residual[axis], lower);
   }
   if (!fit.test.passed) {
-    lower('horizontal', 'hold', { code: 'spread_too_large', value: fit.test.sigma0, limit: 1 });
-    lower('vertical', 'hold');
+    lower(AXES, 'hold', { code: 'spread_too_large', value: fit.test.sigma0, limit: 1 });
   }
   for (const axis of AXES) {
     const [value, limit] = [work[axis], limits.work[axis]];
     const determined = axis === 'horizontal' || fit.heightDetermined;
     if (determined && value > limit) {
-      lower(axis, 'hold', { code: 'accuracy_short', axis, value, limit, radius: limits.work.radius });
+      lower([axis], 'hold', { code: 'accuracy_short', axis, value, limit, radius: limits.work.radius });
     }
   }
   if (!limits.checkRequired) return;
@@ -180,10 +179,16 @@ function judgeProof(
       const { target } = check;
       if (check[axis] === 'disagrees') {
         const limit = 2 * (check.uncertainty[axis] ?? 0);
-        lower(axis, 'hold', { code: 'check_disagrees', axis, target, value: sizeOf(check, axis), limit });
+        lower([axis], 'hold', { code: 'check_disagrees', axis, target, value: sizeOf(check, axis), limit });
       } else if (check[axis] === 'notCapable') {
         const value = 2 * (check.uncertainty[axis] ?? 0);
-        lower(axis, 'hold', { code: 'check_not_capable', axis, target, value, limit: limits.residual[axis] });
+        lower([axis], 'hold', {
+          code: 'check_not_capable',
+          axis,
+          target,
+          value,
+          limit: limits.residual[axis],
+        });
       }
     }
   }
@@ -192,13 +197,13 @@ function judgeProof(
 function judgeLeaveOneOut(fit: StationFit, axis: Axis, limit: number, lower: Lower): void {
   const inAxis = fit.marks.filter((mark) => mark[axis]);
   const needed = inAxis.find((mark) => mark.without === null || mark.without[axis] === null);
-  if (needed) lower(axis, 'hold', { code: 'single_mark_needed', axis, target: needed.name });
+  if (needed) lower([axis], 'hold', { code: 'single_mark_needed', axis, target: needed.name });
   let weakest: { target: string; value: number } | null = null;
   for (const { name, without } of inAxis) {
     const value = Math.abs(without?.[axis] ?? 0);
     if (value > limit && value > (weakest?.value ?? 0)) weakest = { target: name, value };
   }
-  if (weakest) lower(axis, 'hold', { code: 'single_mark_dominates', axis, ...weakest, limit });
+  if (weakest) lower([axis], 'hold', { code: 'single_mark_dominates', axis, ...weakest, limit });
 }
 
 /** An agreed check on a trusted mark that took no part in the fit. */

@@ -37,6 +37,11 @@ export function toDegrees(radians: number): number {
   return clean(radians / ANGLE.deg);
 }
 
+/** A direction in [0, 2π) to decimal degrees in [0, 360): what rounding lifts to a full turn is zero. */
+export function toAzimuth(radians: number): number {
+  return toDegrees(radians) % 360;
+}
+
 /** Radians to seconds of arc. */
 export function toArcseconds(radians: number): number {
   return clean(radians / ARCSECOND);

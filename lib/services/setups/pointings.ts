@@ -2,7 +2,7 @@ import { asc, ne } from 'drizzle-orm';
 import { controlPoints } from '@/db/schema';
 import { rayTo } from '@/lib/compute/survey/ray';
 import { wrapTurn } from '@/lib/compute/units/angles';
-import { toDegrees } from '@/lib/compute/units/convert';
+import { toAzimuth, toDegrees } from '@/lib/compute/units/convert';
 import type { VerbContext } from '@/lib/services/context';
 import { currentControl } from '@/lib/services/control/load';
 import { Lengths } from '@/lib/services/lengths';
@@ -42,7 +42,7 @@ export async function readPointings(
         target: point.name,
         kind: version.kind,
         status: point.status,
-        horizontal: toDegrees(wrapTurn(ray.azimuth - station.orientation)),
+        horizontal: toAzimuth(wrapTurn(ray.azimuth - station.orientation)),
         zenith: hasHeight ? toDegrees(ray.zenith) : null,
         slopeDistance: hasHeight ? length.out(ray.slope) : null,
         horizontalDistance: length.out(ray.grid / surroundings.combinedFactor),

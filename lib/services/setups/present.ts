@@ -1,5 +1,5 @@
 import type * as z from 'zod';
-import { toArcseconds, toDegrees } from '@/lib/compute/units/convert';
+import { toArcseconds, toAzimuth, toDegrees } from '@/lib/compute/units/convert';
 import type { Lengths } from '@/lib/services/lengths';
 import { asMoment } from '@/lib/services/moments';
 import type { Setup, SetupCheck, SetupStatus, SetupTarget } from '@/openapi/schemas/setup';
@@ -53,7 +53,7 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
     },
     instrumentElevation: hasHeight ? length.out(station.axis) : null,
     instrumentHeight: length.outOrNull(setup.instrumentHeight),
-    orientation: toDegrees(station.orientation),
+    orientation: toAzimuth(station.orientation),
     standardDeviations: {
       easting: length.out(deviation(0)),
       northing: length.out(deviation(1)),
@@ -63,7 +63,7 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
     errorEllipse: {
       semiMajor: length.out(result.ellipse95.semiMajor),
       semiMinor: length.out(result.ellipse95.semiMinor),
-      azimuth: toDegrees(result.ellipse95.azimuth),
+      azimuth: toAzimuth(result.ellipse95.azimuth),
       confidence: 0.95,
     },
     tolerance: {

@@ -135,7 +135,7 @@ export function wordsOfNote(note: SetupNote, length: Lengths): Words {
         text: `${note.targets.join(', ')}: no accuracy stated; the project’s ${fine(length, note.horizontal)} in plan and ${fine(length, note.vertical)} in height were taken.`,
       };
     case 'mark_suspect':
-      return { code, text: `${note.target} is suspect: it takes part, but counts for no verdict.` };
+      return { code, text: `${note.target} is suspect: it takes part, but proves nothing.` };
     case 'mark_quarantined':
       return { code, text: `${note.target} is quarantined: its shots are kept and took no part.` };
     case 'spread_small':

@@ -1,5 +1,5 @@
 import { wrapTurn } from '@/lib/compute/units/angles';
-import { toDegrees, toMetres } from '@/lib/compute/units/convert';
+import { toAzimuth, toMetres } from '@/lib/compute/units/convert';
 import { invalidItems } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { Lengths, otherFoot } from '@/lib/services/lengths';
@@ -32,7 +32,7 @@ export async function querySurfaceElevations(
     return {
       elevation: length.out(found.elevation),
       slopePercent: slope * 100,
-      aspect: slope === 0 ? null : toDegrees(wrapTurn(Math.atan2(-gradientEast, -gradientNorth))),
+      aspect: slope === 0 ? null : toAzimuth(wrapTurn(Math.atan2(-gradientEast, -gradientNorth))),
       triangle: found.triangle,
     };
   });

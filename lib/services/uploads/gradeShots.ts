@@ -156,7 +156,7 @@ function placeOf(draft: Draft, item: GradeItem, pointer: string): Place | Proble
       problemItem(`${pointer}/setup`, 'setup_unknown', `There is no setup ${item.setup} in this project.`),
     ];
   }
-  if (item.shot && setup) return placeOfShot(draft, item.shot, setup, pointer);
+  if (item.shot && setup) return placeOfShot(draft, item, setup, pointer);
   const { easting, northing, elevation } = item.position!;
   return {
     point: {
@@ -181,12 +181,12 @@ function positionCovariance(draft: Draft, { sigma }: GradeItem): Float64Array | 
 
 function placeOfShot(
   draft: Draft,
-  shot: NonNullable<GradeItem['shot']>,
+  item: GradeItem,
   setup: SiteSetup,
   pointer: string,
 ): Place | ProblemItem[] {
   const at = `${pointer}/shot`;
-  const readings = normaliseShot(shot, draft.document.units, at);
+  const readings = normaliseShot(item.shot!, draft.document.units, at);
   if (Array.isArray(readings)) return readings;
   const { direction, zenith, distance } = readings;
   if (direction === null || zenith === null || distance === null) {
@@ -194,6 +194,8 @@ function placeOfShot(
     return [problemItem(at, 'reading_incomplete', detail)];
   }
   const { result } = setup;
+  if (!result.heightDetermined)
+    return [problemItem(`${pointer}/setup`, 'setup_without_height', `${item.setup} has no height.`)];
   const polar = {
     direction: readings.face === 'left' ? direction : direction - Math.PI,
     zenith: readings.face === 'left' ? zenith : 2 * Math.PI - zenith,
