@@ -1,3 +1,4 @@
+import { createServer } from 'node:http';
 import next from 'next';
 import { assertDurable } from '@/db/durability';
 import { closeDatabase } from '@/db/tenant';
@@ -10,7 +11,10 @@ const DRAIN_MS = 20_000;
 
 const { mode, host, port } = getConfig();
 await assertDurable();
-const app = next({ dev: mode === 'development', hostname: host, port });
+const dev = mode === 'development';
+// Clients offer upgrades that nobody asked for (h2c). The framework would take those requests from its server and close
+// them unanswered; it is given a server that gets none. Only in development it has a use for them.
+const app = next({ dev, hostname: host, port, ...(dev ? {} : { httpServer: createServer() }) });
 await app.prepare();
 const server = createHubServer(app.getRequestHandler());
 server.listen(port, host, () => {

@@ -3,7 +3,9 @@ import { pointerTo, problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 
 const MAX_DEPTH = 64;
-const MAX_FLAWS = 200;
+/** Every item with a flaw must be known by one, since it is refused for it; its twentieth says no more. */
+const MAX_FLAWS_OF_ITEM = 20;
+const MAX_FLAWS = 20_000;
 const FORBIDDEN_KEYS = new Set(['__proto__', 'constructor', 'prototype']);
 
 /** Text that is no JSON, or nested beyond reason. */
@@ -64,9 +66,16 @@ function findFlaws(text: string): ProblemItem[] {
   const levels: Level[] = [];
   const flaws: ProblemItem[] = [];
   let expectKey = false;
+  const ofItem = new Map<string, number>();
   const report = (code: ItemProblemCode, detail: string) => {
-    if (flaws.length < MAX_FLAWS)
-      flaws.push(problemItem(pointerTo(levels.map((level) => level.at)), code, detail));
+    const path = levels.map((level) => level.at);
+    const item = pointerTo(path.slice(0, 2));
+    const earlier = ofItem.get(item) ?? 0;
+    ofItem.set(item, earlier + 1);
+    if (earlier >= MAX_FLAWS_OF_ITEM) return;
+    if (flaws.length >= MAX_FLAWS)
+      throw new JsonError('body_unreadable', `More than ${MAX_FLAWS} places in it cannot be taken.`);
+    flaws.push(problemItem(pointerTo(path), code, detail));
   };
 
   for (let i = 0; i < text.length; i++) {

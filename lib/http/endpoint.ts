@@ -1,3 +1,4 @@
+import { databaseFault } from '@/db/faults';
 import type { Tenant } from '@/db/tenant';
 import { type Caller, mayUseProject } from '@/lib/access/actor';
 import { callerTransaction } from '@/lib/access/identify';
@@ -137,6 +138,9 @@ interface CallerSteps<C extends Contract, P, A> {
 /** Bodies up to this size are read before their sender is known; larger ones only from somebody who may send them. */
 const SMALL_BODY = 65_536;
 
+/** Each time one of those that write the same succeeds, and the pool lets no more than eight try at once. */
+const MAX_REPEATS = 7;
+
 /**
  * One request of a caller. What arrived is read first, but whatever is wrong with it waits until the caller is known
  * and allowed; then identification, the verb's reading and its writing share one transaction.
@@ -153,8 +157,8 @@ function callerHandler<C extends Contract, P, A>(operation: C, steps: CallerStep
       return { arrived, prepared: await steps.prepare(arrived) };
     });
     let known: CallerContext | undefined;
-    try {
-      return await callerTransaction(shown, now, async (tenant, identified) => {
+    const once = () =>
+      callerTransaction(shown, now, async (tenant, identified) => {
         const ahead =
           'value' in read ? (steps.ahead?.(tenant, read.value.arrived, read.value.prepared) ?? null) : null;
         ahead?.catch(() => undefined);
@@ -165,11 +169,18 @@ function callerHandler<C extends Contract, P, A>(operation: C, steps: CallerStep
         known = { ...base, caller, idempotency: arrived.idempotency };
         return steps.run({ ...known, tenant }, arrived, prepared, ahead);
       });
-    } catch (error) {
-      if (error instanceof Problem && known && 'value' in read) {
-        await steps.refused?.(known, read.value.arrived, read.value.prepared, error);
+    for (let repeats = 0; ; repeats++) {
+      try {
+        return await once();
+      } catch (error) {
+        // Others wrote the same at the same moment; what they wrote is seen now.
+        if (databaseFault(error)?.kind === 'unique' && repeats < MAX_REPEATS) continue;
+        const problem = problemOf(error);
+        if (problem.status < 500 && known && 'value' in read) {
+          await steps.refused?.(known, read.value.arrived, read.value.prepared, problem);
+        }
+        throw error;
       }
-      throw error;
     }
   });
 }

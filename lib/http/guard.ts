@@ -24,18 +24,29 @@ export function allowedMethods(pathname: string): string[] {
  *
  * @throws Problem
  */
-export function guardRequest({ url = '/', method = 'GET' }: Pick<IncomingMessage, 'url' | 'method'>): void {
+export function guardRequest({
+  url = '/',
+  method = 'GET',
+  headers,
+  httpVersion,
+}: Pick<IncomingMessage, 'url' | 'method' | 'headers' | 'httpVersion'>): void {
+  if (headers.host === undefined && httpVersion === '1.1')
+    throw new Problem('request_malformed', 'The Host header is missing.');
   if (url.length > MAX_URL) throw new Problem('uri_too_long');
-  if (!url.startsWith('/') || url.startsWith('//')) throw new Problem('url_malformed');
-  const [pathname, search = ''] = url.split('?', 2);
-  if (!isReadable(pathname) || !isReadable(search.replaceAll('+', ' ')) || pathname.includes('\\')) {
+  const [pathname, ...search] = url.split('?');
+  if (DEVIOUS.test(pathname) || !isReadable(pathname) || !isReadable(search.join('?')))
     throw new Problem('url_malformed');
-  }
-  const isApi = pathname === '/api' || pathname.startsWith('/api/');
-  if (isApi ? KNOWN.has(method) : method === 'GET' || method === 'HEAD') return;
-  const allow = (isApi ? allowedMethods(pathname) : ['GET', 'HEAD']).join(', ');
+  if (isApi(url) ? KNOWN.has(method) : method === 'GET' || method === 'HEAD') return;
+  const allow = (isApi(url) ? allowedMethods(pathname) : ['GET', 'HEAD']).join(', ');
   throw new Problem('method_not_allowed', `This path takes ${allow}.`, { allow });
 }
+
+export function isApi(url = '/'): boolean {
+  return /^\/api(?:[/?]|$)/.test(url);
+}
+
+/** A second host, an empty segment, a fragment or a step up: the framework would answer for another path. */
+const DEVIOUS = /^[^/]|\/\/|[\\#]|\/(?:\.|%2e){1,2}(?:\/|$)/i;
 
 /** Percent-encoded UTF-8 without control characters. */
 function isReadable(part: string): boolean {

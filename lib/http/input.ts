@@ -22,6 +22,8 @@ export function readQuery(schema: z.ZodObject | undefined, search: URLSearchPara
   const query: Record<string, string> = {};
   for (const [name, value] of search) {
     if (Object.hasOwn(query, name)) throw invalid(`?${name}`, 'duplicate_key', `?${name}= stands twice.`);
+    // Read as a number it would be 0.
+    if (value === '') throw invalid(`?${name}`, 'invalid_value', `?${name}= is empty.`, 'Leave it out.');
     query[name] = value;
   }
   if (!schema) {
@@ -61,7 +63,7 @@ export async function readInput(body: Body, raw: RawBody): Promise<BodyInput> {
   return { kind: 'json', value: parsed.data };
 }
 
-const IDEMPOTENCY_KEY = /^(?:"([\x21\x23-\x5b\x5d-\x7e ]{1,255})"|([\x21-\x7e]{1,255}))$/;
+const IDEMPOTENCY_KEY = /^(?:"([\x21\x23-\x5b\x5d-\x7e ]{1,255})"|([\x21\x23-\x7e][\x21-\x7e]{0,254}))$/;
 
 /** The Idempotency-Key of a POST, bare or as a structured string, with a fingerprint of the whole request. */
 export function readIdempotency(request: Request, operation: Contract, bytes: Uint8Array | null) {
@@ -73,7 +75,7 @@ export function readIdempotency(request: Request, operation: Contract, bytes: Ui
     throw invalid(
       'Idempotency-Key',
       'invalid_value',
-      'An Idempotency-Key has 1 to 255 printable characters.',
+      'An Idempotency-Key has 1 to 255 printable ASCII characters, and spaces only between double quotes.',
     );
   const { pathname, search } = new URL(request.url);
   const fingerprint = createHash('sha256').update(`${pathname}${search}\n`);

@@ -11,7 +11,7 @@ import { Problem } from '@/lib/problem';
 import { systemRuntime as runtime } from '@/lib/runtime';
 import { problemDocument, problemHeaders } from './answer';
 import { ADDRESS_HEADER } from './endpoint';
-import { guardRequest } from './guard';
+import { guardRequest, isApi } from './guard';
 
 const HEADERS_MS = 10_000;
 const REQUEST_MS = 60_000;
@@ -22,7 +22,9 @@ const MAX_HEADER_BYTES = 16_384;
 export function createHubServer(
   handle: (request: IncomingMessage, response: ServerResponse) => Promise<void>,
 ): Server {
-  const server = createServer({ maxHeaderSize: MAX_HEADER_BYTES }, (request, response) => {
+  // A missing Host is a problem of ours to answer: the server itself would answer an empty 400.
+  const options = { maxHeaderSize: MAX_HEADER_BYTES, requireHostHeader: false };
+  const server = createServer(options, (request, response) => {
     try {
       guardRequest(request);
     } catch (error) {
@@ -30,6 +32,8 @@ export function createHubServer(
       refuse(response, error, request.url ?? '/');
       return;
     }
+    // With it the framework's pages ask for parts of themselves; on the API it would answer a redirect.
+    if (isApi(request.url)) delete request.headers.rsc;
     request.headers[ADDRESS_HEADER] = addressOf(request);
     handle(request, response).catch(() => response.destroy());
   });
@@ -37,6 +41,10 @@ export function createHubServer(
   server.requestTimeout = REQUEST_MS;
   server.keepAliveTimeout = KEEP_ALIVE_MS;
   server.on('clientError', (error: NodeJS.ErrnoException, socket: Socket) => answerBroken(error, socket));
+  server.on('connect', (request: IncomingMessage, socket: Socket) => {
+    const problem = new Problem('method_not_allowed', 'This is no proxy.', { allow: 'GET, HEAD' });
+    answerOn(socket, problem, request.url);
+  });
   server.on('checkExpectation', (request: IncomingMessage, response: ServerResponse) => {
     refuse(
       response,
@@ -75,8 +83,12 @@ function answerBroken(error: NodeJS.ErrnoException, socket: Socket): void {
       : error.code === 'ERR_HTTP_REQUEST_TIMEOUT'
         ? new Problem('request_timeout')
         : new Problem('request_malformed');
+  answerOn(socket, problem);
+}
+
+function answerOn(socket: Socket, problem: Problem, instance = '/'): void {
   const requestId = runtime.uuid();
-  const body = JSON.stringify(problemDocument(problem, requestId, '/'));
+  const body = JSON.stringify(problemDocument(problem, requestId, instance.slice(0, 200)));
   const headers = {
     ...problemHeaders(problem, requestId),
     'Content-Length': String(Buffer.byteLength(body)),

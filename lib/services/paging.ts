@@ -1,4 +1,6 @@
+import type * as z from 'zod';
 import { Problem } from '@/lib/problem';
+import { Id } from '@/openapi/schemas/primitives';
 
 export interface Page<T> {
   data: T[];
@@ -14,13 +16,23 @@ export function writeCursor(list: readonly unknown[], at: string): string {
   return Buffer.from(JSON.stringify([at, ...list.map((part) => part ?? null)])).toString('base64url');
 }
 
-/** @throws Problem where the cursor belongs to another list or is none */
-export function readCursor(list: readonly unknown[], cursor: string | undefined): string | null {
+/**
+ * Where a cursor stands.
+ *
+ * @param place what the list is ordered by: a made-up cursor must not reach the database
+ * @throws Problem where the cursor belongs to another list or is none
+ */
+export function readCursor(
+  list: readonly unknown[],
+  cursor: string | undefined,
+  place: z.ZodType<string> = Id,
+): string | null {
   if (cursor === undefined) return null;
   try {
     const [at, ...rest] = JSON.parse(Buffer.from(cursor, 'base64url').toString()) as unknown[];
-    if (typeof at === 'string' && JSON.stringify(rest) === JSON.stringify(list.map((part) => part ?? null)))
-      return at;
+    const parsed = place.safeParse(at);
+    if (parsed.success && JSON.stringify(rest) === JSON.stringify(list.map((part) => part ?? null)))
+      return parsed.data;
   } catch {
     // Falls through to the problem below.
   }

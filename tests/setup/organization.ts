@@ -13,7 +13,5 @@ export function ownHub() {
  */
 export async function newOrganization() {
   const hub = ownHub();
-  process.env.DATABASE_URL = hub.appUrl;
-  process.env.HUBTACK_SECRET ??= 'test-secret-of-forty-three-characters-at-least';
-  return { hub, ...(await callerRoles()) };
+  return { hub, ...(await callerRoles(hub)) };
 }

@@ -5,6 +5,7 @@ import { systemRuntime as runtime } from '@/lib/runtime';
 import { issueKey } from '@/lib/services/apiKeys/issue';
 import { addPerson } from '@/lib/services/people/add';
 import { ROLE_SCOPES, ROLES, type Role, SCOPE_NAMES, type Scope } from '@/openapi/scopes';
+import { type HubDatabase, TEST_SECRET } from './hub';
 
 export const PASSWORD = 'three quiet herons';
 
@@ -18,8 +19,13 @@ export interface TestPerson {
 
 let passwordHash: Promise<string> | undefined;
 
-/** An organization with a person for each role and a key for each person. */
-export async function callerRoles() {
+/**
+ * An organization with a person for each role and a key for each person, written through the hub's own services. A
+ * process speaks to one database only: the first.
+ */
+export async function callerRoles(database: Pick<HubDatabase, 'appUrl'>) {
+  process.env.DATABASE_URL = database.appUrl;
+  process.env.HUBTACK_SECRET ??= TEST_SECRET;
   passwordHash ??= hashPassword(PASSWORD);
   const hash = await passwordHash;
   const organizationId = runtime.uuid();

@@ -5,6 +5,7 @@ import { pageOf, readCursor } from '@/lib/services/paging';
 import { loadProject } from '@/lib/services/projects/load';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/control';
+import { Name } from '@/openapi/schemas/primitives';
 import { currentControl } from './load';
 import { presentControlPoint } from './present';
 
@@ -17,7 +18,7 @@ export async function listControlPoints(
 ) {
   const project = await loadProject(tenant, caller.organizationId, params.projectId);
   const list = ['control', project.id, query.status];
-  const after = readCursor(list, query.cursor);
+  const after = readCursor(list, query.cursor, Name);
   const further = and(
     after === null ? undefined : gt(controlPoints.name, after),
     query.status ? eq(controlPoints.status, query.status) : undefined,

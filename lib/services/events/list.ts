@@ -1,4 +1,5 @@
 import { and, asc, eq, inArray, sql } from 'drizzle-orm';
+import * as z from 'zod';
 import { events, organizations } from '@/db/schema';
 import { mayUseProject } from '@/lib/access/actor';
 import { Problem } from '@/lib/problem';
@@ -9,6 +10,9 @@ import type { QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/record';
 
 type List = typeof contract.listEvents;
+
+/** Transaction and number of an event, within what their types hold. */
+const Place = z.string().regex(/^\d{1,19}\/\d{1,18}$/);
 
 /**
  * Events after a cursor in commit order. Only transactions below the oldest that still runs are read, so that a late
@@ -23,7 +27,7 @@ export async function listEvents({ tenant, caller }: VerbContext, { query }: { q
     .from(organizations)
     .where(eq(organizations.id, organizationId));
   const list = ['events', organization.epoch, query.type, query.projectId];
-  const after = readCursor(list, query.after);
+  const after = readCursor(list, query.after, Place);
   const [xid, seq] = after === null ? ['0', '0'] : after.split('/');
   const rows = await tenant.db
     .select()

@@ -5,6 +5,7 @@ import { pageOf, readCursor } from '@/lib/services/paging';
 import { loadProject } from '@/lib/services/projects/load';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/instruments';
+import { Name } from '@/openapi/schemas/primitives';
 import { currentInstruments } from './load';
 import { presentInstrument } from './present';
 
@@ -16,7 +17,7 @@ export async function listInstruments(
 ) {
   const project = await loadProject(tenant, caller.organizationId, params.projectId);
   const list = ['instruments', project.id];
-  const after = readCursor(list, query.cursor);
+  const after = readCursor(list, query.cursor, Name);
   const further = after === null ? undefined : gt(instruments.name, after);
   const rows = await currentInstruments(tenant, caller.organizationId, project.id, further)
     .orderBy(asc(instruments.name))

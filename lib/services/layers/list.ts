@@ -4,6 +4,7 @@ import { pageOf, readCursor } from '@/lib/services/paging';
 import { loadProject } from '@/lib/services/projects/load';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/design';
+import { Name } from '@/openapi/schemas/primitives';
 import { layersAfter } from './load';
 import { presentLayer } from './present';
 
@@ -15,7 +16,7 @@ export async function listLayers(
 ) {
   const project = await loadProject(tenant, caller.organizationId, params.projectId);
   const list = ['layers', project.id];
-  const rows = await layersAfter(tenant, project, readCursor(list, query.cursor), query.limit + 1);
+  const rows = await layersAfter(tenant, project, readCursor(list, query.cursor, Name), query.limit + 1);
   const length = new Lengths(query.length ?? project.lengthUnit);
   return pageOf(
     rows,

@@ -1,8 +1,9 @@
-import { and, eq, isNull, ne, sql } from 'drizzle-orm';
-import { people, sessions } from '@/db/schema';
+import { and, eq, ne, sql } from 'drizzle-orm';
+import { people } from '@/db/schema';
 import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { record } from '@/lib/services/record';
+import { endSessions } from '@/lib/services/sessions/end';
 import type { JsonOf, ParamsOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/people';
 import { loadPerson } from './load';
@@ -15,7 +16,7 @@ export async function updatePerson(
   context: VerbContext,
   { params, body }: { params: ParamsOf<Update>; body: JsonOf<Update> },
 ) {
-  const { tenant, caller, runtime } = context;
+  const { tenant, caller } = context;
   const { organizationId } = caller;
   const before = await loadPerson(tenant, organizationId, params.personId, true);
   const active = before.passwordHash === null ? ('invited' as const) : ('active' as const);
@@ -30,24 +31,15 @@ export async function updatePerson(
     await requireOtherAdmin(context, row.id);
   const mine = and(eq(people.organizationId, organizationId), eq(people.id, row.id));
   await tenant.db.update(people).set(change).where(mine);
-  if (row.status === 'closed') {
-    await tenant.db
-      .update(sessions)
-      .set({ revokedAt: runtime.now().toISOString() })
-      .where(
-        and(
-          eq(sessions.organizationId, organizationId),
-          eq(sessions.personId, row.id),
-          isNull(sessions.revokedAt),
-        ),
-      );
-  }
+  if (row.status === 'closed') await endSessions(context, row);
   record(context, caller, { type: 'person.changed', subject: row.id, data: { changed: body } });
   return presentPerson(row);
 }
 
-/** The last administrator cannot leave: nobody could let anybody in again. */
+/** The last administrator cannot leave: nobody could let anybody in again. Leaving is done one after the other. */
 async function requireOtherAdmin({ tenant, caller }: VerbContext, personId: string): Promise<void> {
+  const leaving = `${caller.organizationId}/leaving`;
+  await tenant.db.execute(sql`select pg_advisory_xact_lock(hashtextextended(${leaving}, 0))`);
   const [other] = await tenant.db
     .select({ one: sql`1` })
     .from(people)

@@ -7,6 +7,7 @@ import { countFailure, requireAttempt } from '@/lib/access/throttle';
 import { invalid, Problem } from '@/lib/problem';
 import type { PublicContext } from '@/lib/services/context';
 import { record } from '@/lib/services/record';
+import { endSessions } from './end';
 import { type OpenedSession, openSession } from './open';
 
 /** Sets the password of an invited person, ends the invitation and signs in. */
@@ -42,6 +43,8 @@ export async function acceptInvitation(
       .set(change)
       .where(and(eq(people.organizationId, found.organizationId), eq(people.id, found.id)));
     await tenant.db.delete(directory).where(eq(directory.handleSha256, handle));
+    // Whoever knew the old password is out.
+    await endSessions({ ...context, tenant }, found);
     const { organizationId, id, name } = found;
     record(
       { ...context, tenant },
