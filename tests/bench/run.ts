@@ -3,6 +3,7 @@ import { CopyBaseline } from './copy';
 import { manyGradeShots, manySetups, oneSetup } from './documents';
 import { fitsPerSecond, setupsPerSecond } from './engine';
 import { type Figure, isMet, table } from './figures';
+import { type FirstLoad, firstLoads } from './firstLoad';
 import { CONNECTIONS, live, uploads } from './load';
 import { powerCut } from './powerCut';
 import { newSite } from './site';
@@ -16,12 +17,17 @@ const LIVE_A_ROUND = 5_000;
 const WARM_BULKS = 64;
 const BULKS_A_ROUND = 32;
 const ITEMS = 1_000;
+const MOST_FIRST_LOAD = 180_000;
 
 const reportOnly = process.argv.includes('--report');
 const say = (text = '') => process.stdout.write(`${text}\n`);
 const times = <T>(count: number, work: () => T) => Array.from({ length: count }, work);
 
 say(`Node.js ${process.version}, ${availableParallelism()} × ${cpus()[0].model}`);
+const kilobytes = (bytes: number) => (bytes / 1000).toFixed(1);
+const lineOf = ({ page, now, later }: FirstLoad) =>
+  `${kilobytes(now).padStart(6)}  ${page}${later > 0 ? ` (and ${kilobytes(later)} once it stands)` : ''}`;
+
 setupsPerSecond(2);
 const engine: Figure[] = [
   { name: 'setups solved and judged', measured: times(ROUNDS, () => setupsPerSecond(1)) },
@@ -32,6 +38,7 @@ const stage = await setStage();
 const copies = new CopyBaseline(stage);
 try {
   await copies.prepare();
+  const loads = await firstLoads(stage.hub.url);
   const site = await newSite(stage.hub.url, stage.key, 'Bench');
   let count = 0;
   const numbered = (prefix: string, body: (id: string) => Buffer) => () => body(`${prefix}-${count++}`);
@@ -84,8 +91,12 @@ indexes and foreign keys, as full as the tables themselves).
 Power cut: ${cut.acknowledged} uploads answered 201, ${cut.lost.length} of them lost, ${cut.broken.length} not whole or not once, ${cut.strays} stray rows;
 ${cut.unacknowledged} more stand whole whose answer was cut off. ${cut.unavailable} requests answered 503 meanwhile; ready again ${Math.round(cut.readyAfterMs)} ms after
 the database was.`);
+  say(`
+First-load JavaScript of each page, kB of gzip, under ${kilobytes(MOST_FIRST_LOAD)} each
+${loads.map(lineOf).join('\n')}`);
+  const light = loads.every(({ now }) => now < MOST_FIRST_LOAD);
   const durable = cut.acknowledged > 0 && cut.lost.length + cut.broken.length + cut.strays === 0;
-  if (!(figures.every(isMet) && durable) && !reportOnly) process.exitCode = 1;
+  if (!(figures.every(isMet) && light && durable) && !reportOnly) process.exitCode = 1;
 } finally {
   copies.end();
   await stage.end();
