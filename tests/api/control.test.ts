@@ -118,7 +118,7 @@ describe('control points', () => {
 
     const { body } = await site.admin.get(site.at('/control-points/HT-1/history')).expect(200);
     expect(body.versions.map((v: { version: number }) => v.version)).toEqual([2, 1]);
-    expect(body.versions[1]).toMatchObject({ ...MARKS['HT-1'], createdBy: 'test key' });
+    expect(body.versions[1]).toMatchObject({ ...MARKS['HT-1'], createdBy: 'site script' });
     const shown = body.residuals.map((r: { setupId: string; version: number }) => [r.setupId, r.version]);
     expect(shown).toContainEqual([before.body.setups[0].id, 1]);
     expect(shown).toContainEqual([after.body.setups[0].id, 2]);

@@ -164,7 +164,7 @@ describe('events', () => {
       subject: 'HT-5',
       projectId: site.projectId,
       requestId: answer.headers['request-id'],
-      actor: { kind: 'key', name: 'test key' },
+      actor: { kind: 'key', name: 'site script' },
       details: { from: 'suspect', to: 'trusted', note: 'Checked from BM-1.' },
     });
     const bound = site.as(await site.newKey(['audit:read'], [site.projectId]));

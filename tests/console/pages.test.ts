@@ -7,6 +7,9 @@ import { type Desk, openBrowser, openDesk, settled } from './browser';
 import { walkedOrganization } from './site';
 
 const SCREENS = 'tests/output/screens';
+/** `npm run pictures` makes those of the README anew. */
+const TOUR = process.env.HUBTACK_PICTURES ? 'tests/console/tour' : SCREENS;
+const ON_TOUR = ['setup', 'layer', 'control'];
 
 let browser: Browser;
 let ground: Awaited<ReturnType<typeof walkedOrganization>>;
@@ -93,6 +96,8 @@ describe.each(['light', 'dark'] as const)('by %s', (colorScheme) => {
       await settled(page);
       if (name === 'reference') await page.getByText('Download OpenAPI Document').first().waitFor();
       await page.screenshot({ path: `${SCREENS}/${name}-${width}-${colorScheme}.png`, fullPage: true });
+      if (ON_TOUR.includes(name) && width === 1440 && colorScheme === 'light')
+        await page.screenshot({ path: `${TOUR}/${name}.png` });
       const wider = await page.evaluate(
         () => document.documentElement.scrollWidth - document.documentElement.clientWidth,
       );

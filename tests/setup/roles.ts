@@ -34,11 +34,11 @@ export async function callerRoles(database: Pick<HubDatabase, 'appUrl'>) {
   await tenantTransaction(organizationId, async (tenant) => {
     const context = { tenant, runtime };
     const createdAt = runtime.now().toISOString();
-    await tenant.db.insert(organizations).values({ id: organizationId, name: `Test ${suffix}`, createdAt });
+    await tenant.db.insert(organizations).values({ id: organizationId, name: 'Thistledown Earthworks', createdAt });
     for (const role of ROLES) {
       const email = `${role}-${suffix}@test.example`;
       const person = await addPerson(context, organizationId, {
-        name: `Test ${role}`,
+        name: `The ${role}`,
         email,
         role,
         passwordHash: hash,
@@ -61,5 +61,5 @@ export async function callerRoles(database: Pick<HubDatabase, 'appUrl'>) {
 }
 
 function keyOf(responsiblePersonId: string, scopes: readonly Scope[]) {
-  return { name: 'test key', scopes, projectIds: null, responsiblePersonId, expiresAt: null };
+  return { name: 'site script', scopes, projectIds: null, responsiblePersonId, expiresAt: null };
 }

@@ -128,7 +128,14 @@ function Subject({
   );
   const section = SECTIONS.find(({ of }) => action.startsWith(of));
   if (!section || projectId === null) return text;
-  return <Link href={`/projects/${projectId}/${section.path}/${encodeURIComponent(subject)}`}>{text}</Link>;
+  return (
+    <Link
+      href={`/projects/${projectId}/${section.path}/${encodeURIComponent(subject)}`}
+      className="underline"
+    >
+      {text}
+    </Link>
+  );
 }
 
 function Details({ details }: { details: Record<string, unknown> }) {

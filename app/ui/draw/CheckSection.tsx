@@ -39,7 +39,11 @@ export function CheckSection({
       {surface === layer ? null : (
         <Level y={y(designElevation)} label={`${surface} ${fixed(designElevation, COORDINATE)}`} dashed />
       )}
-      <Level y={y(layerElevation)} label={`${layer} ${fixed(layerElevation, COORDINATE)}`} />
+      <Level
+        y={y(layerElevation)}
+        clearOf={y(layerElevation + tolerance.above)}
+        label={`${layer} ${fixed(layerElevation, COORDINATE)}`}
+      />
       <DeviationMark
         x={WIDTH * 0.68}
         y={y(point.elevation)}
@@ -54,7 +58,18 @@ export function CheckSection({
   );
 }
 
-function Level({ y, label, dashed = false }: { y: number; label: string; dashed?: boolean }) {
+/** A height with its name above it, and above the edge of a band around it. */
+function Level({
+  y,
+  label,
+  clearOf = y,
+  dashed = false,
+}: {
+  y: number;
+  label: string;
+  clearOf?: number;
+  dashed?: boolean;
+}) {
   return (
     <g>
       <path
@@ -63,7 +78,7 @@ function Level({ y, label, dashed = false }: { y: number; label: string; dashed?
         strokeWidth={dashed ? 1.4 : 2.2}
         strokeDasharray={dashed ? '5 4' : undefined}
       />
-      <text x="16" y={y - 5} className="fill-ink-second text-[12.5px]">
+      <text x="16" y={clearOf - 5} className="fill-ink-second text-[12.5px]">
         {label}
       </text>
     </g>

@@ -5,7 +5,7 @@ import type { ReactNode } from 'react';
 export function Crumb({ trail, note }: { trail: { name: string; href?: string }[]; note?: ReactNode }) {
   return (
     <div className="mb-5 flex justify-between gap-6 border-b border-rule pb-2.5 text-[13.5px] text-ink-third">
-      <nav aria-label="Place">
+      <nav aria-label="Place" className="shrink-0">
         {trail.map(({ name, href }, i) => (
           <span key={name}>
             {i > 0 ? ' / ' : null}

@@ -49,7 +49,10 @@ export function Setups({ projectId }: { projectId: string }) {
           {verdict ? null : (
             <>
               Post one to <code className="font-code text-[13px]">/uploads</code> with an API key; the
-              examples show how. <Link href="/keys">Make a key</Link>
+              examples show how.{' '}
+              <Link href="/keys" className="underline">
+                Make a key
+              </Link>
             </>
           )}
         </Empty>

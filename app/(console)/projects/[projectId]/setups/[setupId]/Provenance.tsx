@@ -10,11 +10,14 @@ export function Provenance({ setup, projectId }: { setup: ShownSetup; projectId:
     <section>
       <h2 className="mb-2 font-head text-[19px]">Where it comes from</h2>
       <p className="max-w-[70ch] text-ink-second">
-        {provenance.method}, version {provenance.version}, result {provenance.resultVersion}, computed{' '}
+        Result {provenance.resultVersion} by {provenance.method}, version {provenance.version}, computed{' '}
         {moment(provenance.computedAt)} with {provenance.instrument.name} as stated in version{' '}
         {provenance.instrument.calibration} and control{' '}
         {provenance.control.map(({ name, version }) => `${name} v${version}`).join(', ')}.{' '}
-        <Link href={`/projects/${projectId}/uploads/${provenance.uploadId}`}>See the bytes as they came</Link>
+        <Link href={`/projects/${projectId}/uploads/${provenance.uploadId}`} className="underline">
+          See the bytes as they came
+        </Link>
+        .
       </p>
       {excluded.length > 0 ? (
         <p className="mt-2 max-w-[70ch] text-ink-second">
@@ -23,12 +26,16 @@ export function Provenance({ setup, projectId }: { setup: ShownSetup; projectId:
       ) : null}
       {supersedes ? (
         <p className="mt-2">
-          <Link href={`${setups}/${supersedes}`}>The setup that this one supersedes</Link>
+          <Link href={`${setups}/${supersedes}`} className="underline">
+            The setup that this one supersedes
+          </Link>
         </p>
       ) : null}
       {supersededBy ? (
         <p className="mt-2">
-          <Link href={`${setups}/${supersededBy}`}>The refit that supersedes this setup</Link>
+          <Link href={`${setups}/${supersededBy}`} className="underline">
+            The refit that supersedes this setup
+          </Link>
         </p>
       ) : null}
     </section>
