@@ -63,24 +63,26 @@ function insertOne(table: PgTable, first: number): Insert {
   return { text, parameters: ([row]) => columns.map((column) => encode(column, row[column.key])) };
 }
 
-/** Any number of rows as SELECT FROM unnest, an array a column. */
+/** Any number of rows as SELECT FROM unnest, an array a column; those of JSON as one JSON array each. */
 function insertMany(table: PgTable, first: number): Insert {
   const columns = writtenColumns(table);
-  const sources: string[] = [];
-  const aliases: string[] = [];
+  const place = (column: Column) => `$${first + columns.indexOf(column)}`;
+  const plain = columns.filter((column) => !isJson(column));
+  // As elements of a text array each would be escaped, character by character.
+  const documents = columns.filter(isJson);
+  const arrays = plain.map((c) => `${place(c)}::${isArray(c) ? 'text' : c.type}[]`);
+  const sources = [
+    `unnest(${arrays.join(', ')})`,
+    ...documents.map((c) => `${c.type}_array_elements(${place(c)}::${c.type})`),
+  ];
+  const aliases = [...plain, ...documents].map((column) => `c${columns.indexOf(column)}`);
   const selected = columns.map((column, i) => {
-    // One JSON array of all rows: as elements of a text array each would be escaped, character by character.
-    if (isJson(column)) {
-      const item = `$${first + i}::${column.type} -> (n::int - 1)`;
-      // JSON null is SQL null in a column that may be null; text JSON never is.
-      return column.type === 'jsonb' ? `nullif(${item}, 'null')` : item;
-    }
-    sources.push(`$${first + i}::${isArray(column) ? 'text' : column.type}[]`);
-    aliases.push(`c${i}`);
-    return isArray(column) ? `c${i}::${column.type}` : `c${i}`;
+    if (isArray(column)) return `c${i}::${column.type}`;
+    // JSON null is SQL null in a column that may be null; text JSON never is.
+    return column.type === 'jsonb' ? `nullif(c${i}, 'null')` : `c${i}`;
   });
   const text = `insert into "${getTableConfig(table).name}" (${columns.map((c) => c.name).join(', ')})
-    select ${selected.join(', ')} from unnest(${sources.join(', ')}) with ordinality as row(${aliases.join(', ')}, n)`;
+    select ${selected.join(', ')} from rows from (${sources.join(', ')}) as row(${aliases.join(', ')})`;
   const encode = (column: Column, rows: readonly Row[]) => {
     const values = rows.map((row) => row[column.key] ?? null);
     return isJson(column) ? JSON.stringify(values) : literal(values);

@@ -34,6 +34,8 @@ export function openPool(databaseUrl: string): Pool {
     });
     // An idle connection that the server ends is replaced at the next use.
     holder.hubtackPool.on('error', () => undefined);
+    // One that ends in use fails its statements; unheard it would end the process, too.
+    holder.hubtackPool.on('connect', (client) => client.on('error', () => undefined));
   }
   return holder.hubtackPool;
 }

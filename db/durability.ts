@@ -10,7 +10,9 @@ export async function assertDurable(): Promise<void> {
     for (const name of PROMISED) {
       const { rows } = await db.execute<{ value: string }>(sql`select current_setting(${name}) as value`);
       if (rows[0].value !== 'on')
-        throw new Error(`PostgreSQL runs with ${name} = ${rows[0].value}; a 2xx would not mean durable.`);
+        throw new Error(
+          `PostgreSQL runs with ${name} = ${rows[0].value}; a 2xx would not mean durable. Set it to on.`,
+        );
     }
   });
 }

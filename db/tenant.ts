@@ -3,6 +3,7 @@ import { drizzle, type NodePgDatabase } from 'drizzle-orm/node-postgres';
 import type { PoolClient, QueryConfig, QueryResult, QueryResultRow } from 'pg';
 import { getConfig } from '@/lib/config';
 import { closePool, openPool } from './client';
+import { databaseFault } from './faults';
 
 /** A statement of a hot path, prepared under its name once a connection. */
 export interface NamedStatement extends QueryConfig {
@@ -23,6 +24,9 @@ export interface Tenant {
 export class RolledBackError extends Error {
   override readonly name = 'RolledBackError';
 }
+
+/** The SQLSTATE of statements behind one that has failed. */
+const BEHIND_A_FAILURE = '25P02';
 
 const UUID = /^[0-9a-f]{8}(?:-[0-9a-f]{4}){3}-[0-9a-f]{12}$/i;
 
@@ -97,9 +101,15 @@ async function transaction<O, T>(opening: Opening<O>, work: Work<O, T>): Promise
 async function inTransaction<O, T>(client: PoolClient, opening: Opening<O>, work: Work<O, T>): Promise<T> {
   // Each is awaited below; until then a failure must not count as unhandled.
   const pending: Promise<unknown>[] = [];
+  let firstFailure: unknown;
+  const watched = <S extends Promise<unknown>>(statement: S): S => {
+    statement.catch((error) => {
+      firstFailure ??= error;
+    });
+    return statement;
+  };
   const later = (statement: Promise<unknown>) => {
-    statement.catch(() => undefined);
-    pending.push(statement);
+    pending.push(watched(statement));
   };
   gatherWrites(client);
   const opened = opening(client);
@@ -113,16 +123,21 @@ async function inTransaction<O, T>(client: PoolClient, opening: Opening<O>, work
     },
     run: (statement, parameters) => {
       gatherWrites(client);
-      return client.query(statement, parameters);
+      return watched(client.query(statement, parameters));
     },
     defer: later,
   };
-  const result = await work(tenant, opened);
-  const commit = client.query('commit');
-  commit.catch(() => undefined);
-  await Promise.all(pending);
-  if ((await commit).command !== 'COMMIT') throw new RolledBackError('The transaction was rolled back.');
-  return result;
+  try {
+    const result = await work(tenant, opened);
+    const commit = client.query('commit');
+    commit.catch(() => undefined);
+    await Promise.all(pending);
+    if ((await commit).command !== 'COMMIT') throw new RolledBackError('The transaction was rolled back.');
+    return result;
+  } catch (error) {
+    // What came behind a failure on the wire is refused for that alone: the failure itself tells why.
+    throw databaseFault(error)?.sqlstate === BEHIND_A_FAILURE ? (firstFailure ?? error) : error;
+  }
 }
 
 /** Statements sent in one turn of the event loop leave in one packet: system calls are what a small write costs. */

@@ -18,6 +18,11 @@ export interface Body {
   optional?: true;
 }
 
+/** Media types that an operation takes. */
+export function mediaTypesOf({ json, text = [] }: Body): string {
+  return [...(json ? ['application/json'] : []), ...text].join(', ');
+}
+
 export interface Answer {
   description: string;
   /** Schema of a JSON answer. */
@@ -40,6 +45,8 @@ export interface Contract {
   description: string;
   /** The scope it asks for; `signedIn` = any known actor; `public` = nobody need be known. */
   access: Scope | 'signedIn' | 'public';
+  /** About the organization as a whole: a key that is bound to projects has no part in it. */
+  organizationWide?: true;
   params?: z.ZodObject;
   query?: z.ZodObject;
   body?: Body;

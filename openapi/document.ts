@@ -102,13 +102,14 @@ export function buildDocument() {
   });
   for (const operation of CONTRACTS) {
     const scope = operation.access in SCOPES ? `\n\nScope: \`${operation.access}\`.` : '';
+    const reach = operation.organizationWide ? ' Not for keys that are bound to projects.' : '';
     registry.registerPath({
       method: operation.method,
       path: operation.path,
       operationId: operation.id,
       tags: [operation.tag],
       summary: operation.summary,
-      description: operation.description + scope,
+      description: operation.description + scope + reach,
       security: operation.access === 'public' ? [] : [{ bearer: [] }, { session: [] }],
       request: { params: operation.params, query: operation.query, body: requestBody(operation) },
       responses: { ...successAnswers(operation), ...problemAnswers(operation) },

@@ -3,7 +3,7 @@
  * /reference/problems and the document are made of this list; a code is never renamed.
  */
 export interface ProblemCode {
-  status: 400 | 401 | 403 | 404 | 405 | 408 | 409 | 410 | 411 | 413 | 414 | 415 | 422 | 429 | 431 | 500 | 503;
+  status: 400 | 401 | 403 | 404 | 405 | 408 | 409 | 410 | 413 | 414 | 415 | 422 | 429 | 431 | 500 | 503;
   title: string;
   meaning: string;
   fix: string;
@@ -132,12 +132,6 @@ export const REQUEST_PROBLEMS = {
     'A layer of that name exists with other values.',
     'Repeat with ?revise=true to make a new version.',
   ),
-  surface_in_use: problem(
-    409,
-    'The surface is not of this project',
-    'A layer takes a surface of its own project.',
-    'Post the surface to this project first.',
-  ),
   upload_conflict: problem(
     409,
     'This upload id was used with other content',
@@ -197,12 +191,6 @@ export const REQUEST_PROBLEMS = {
     'The hub has an organization already',
     'The first administrator is made once, on an empty hub.',
     'Sign in, or ask an administrator for an invitation.',
-  ),
-  length_required: problem(
-    411,
-    'The length of the body is missing',
-    'The request announces a body without saying how long it is.',
-    'Send Content-Length or chunked transfer encoding.',
   ),
   body_too_large: problem(
     413,
@@ -412,6 +400,12 @@ export const ITEM_PROBLEMS = {
     'Without a prism both constants are 0.',
     'Correct distanceMode or the constants.',
   ),
+  sigma_conflict: problem(
+    422,
+    'One erection with two accuracies',
+    'A reflector as it stood has one centring and one height, so that its shots have one σ of each.',
+    'State the same σ in every shot to the mark at that target height, or in none.',
+  ),
   pressure_contradicts_elevation: problem(
     422,
     'The pressure does not fit the elevation',
@@ -423,6 +417,12 @@ export const ITEM_PROBLEMS = {
     'The target is no control point',
     'No control point of this project has that name.',
     'Correct the name, or bring the point in first.',
+  ),
+  target_quarantined: problem(
+    422,
+    'The check stands on quarantined marks alone',
+    'A quarantined mark confirms no setup and contradicts none.',
+    'Check on another mark, or trust the point again once it is proven.',
   ),
   target_repeated: problem(
     422,
@@ -540,9 +540,15 @@ export const ITEM_PROBLEMS = {
   ),
   control_point_exists: problem(
     422,
-    'The point exists with other coordinates',
-    'A changed coordinate is a decision.',
+    'The point exists with other values',
+    'Changed control is a decision; the detail names what differs.',
     'Repeat with ?revise=true to make a new version.',
+  ),
+  control_point_moves: problem(
+    422,
+    'The point would move further than any mark does',
+    'More than a metre is seldom a new survey: nearly always a wrong unit, frame or name.',
+    'Check the unit and the frame. Where the move is meant, repeat with ?revise=true and confirmUnits true.',
   ),
   name_repeated: problem(
     422,

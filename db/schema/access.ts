@@ -122,7 +122,7 @@ export const idempotencyKeys = pgTable(
     actorId: uuid('actor_id').notNull(),
     operation: text('operation').notNull(),
     key: text('key').notNull(),
-    /** SHA-256 of path, query and body. */
+    /** SHA-256 of path, query and body, decompressed. */
     fingerprint: bytea('fingerprint').notNull(),
     status: integer('status').notNull(),
     /** The answer as it was sent; null where it held a secret. */

@@ -12,6 +12,7 @@ import {
   primaryKey,
   text,
   unique,
+  uniqueIndex,
   uuid,
 } from 'drizzle-orm/pg-core';
 import { bytea, instant, organizationId, tenantPolicy } from './columns';
@@ -118,10 +119,14 @@ export const setupChecks = pgTable(
     observedAt: instant('observed_at').notNull(),
     /** Result version of the setup with this check. */
     resultVersion: integer('result_version').notNull(),
+    /** The check whose shots these are, where a refit judged it again; null for a check as it came in. */
+    carriedFromId: uuid('carried_from_id'),
   },
   (t) => [
     primaryKey({ columns: [t.organizationId, t.id] }),
-    unique('setup_checks_client_id').on(t.organizationId, t.projectId, t.clientId),
+    uniqueIndex('setup_checks_client_id')
+      .on(t.organizationId, t.projectId, t.clientId)
+      .where(sql`${t.carriedFromId} is null`),
     index('setup_checks_setup').on(t.organizationId, t.setupId),
     index('setup_checks_upload').on(t.organizationId, t.uploadId),
     foreignKey({
@@ -132,6 +137,7 @@ export const setupChecks = pgTable(
       columns: [t.organizationId, t.uploadId],
       foreignColumns: [uploads.organizationId, uploads.id],
     }),
+    foreignKey({ columns: [t.organizationId, t.carriedFromId], foreignColumns: [t.organizationId, t.id] }),
     check('setup_checks_purpose', sql`${t.purpose} in ('check', 'closing')`),
     tenantPolicy(t.organizationId),
   ],

@@ -17,6 +17,8 @@ export class BodyError extends Error {
 /** A body as it came. */
 export interface RawBody {
   bytes: Uint8Array;
+  /** The bytes, decompressed where they came compressed; fails with a BodyError. */
+  content: Promise<Uint8Array>;
   /** Media type without parameters, in lower case; empty where none was declared. */
   mediaType: string;
   charset: string | null;
@@ -24,18 +26,18 @@ export interface RawBody {
 }
 
 /**
- * The text of a body: decompressed within `limit` bytes, decoded as UTF-8, without a byte-order mark.
+ * The text of a body: decoded as UTF-8, without a byte-order mark.
  *
  * @throws BodyError
  */
-export async function bodyText(body: RawBody, limit: number): Promise<string> {
+export async function bodyText(body: RawBody): Promise<string> {
   if (body.charset !== null && body.charset !== 'utf-8') {
     throw new BodyError(
       'media_type_unsupported',
       `Text is taken as UTF-8, not as ${body.charset.slice(0, 40)}.`,
     );
   }
-  const bytes = await decompress(body, limit);
+  const bytes = await body.content;
   try {
     return new TextDecoder('utf-8', { fatal: true }).decode(bytes);
   } catch {
@@ -43,7 +45,16 @@ export async function bodyText(body: RawBody, limit: number): Promise<string> {
   }
 }
 
-async function decompress({ bytes, contentEncoding }: RawBody, limit: number): Promise<Uint8Array> {
+/**
+ * Bytes as they were before they were compressed, within `limit` of them.
+ *
+ * @throws BodyError
+ */
+export async function decompress(
+  bytes: Uint8Array,
+  contentEncoding: string | null,
+  limit: number,
+): Promise<Uint8Array> {
   if (contentEncoding === null) return bytes;
   if (contentEncoding !== 'gzip') {
     throw new BodyError(

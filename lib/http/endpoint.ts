@@ -13,6 +13,7 @@ import {
   type AnswerOf,
   type Contract,
   type JsonOf,
+  mediaTypesOf,
   type ParamsOf,
   type QueryOf,
   successStatus,
@@ -135,8 +136,14 @@ interface CallerSteps<C extends Contract, P, A> {
   refused?(context: CallerContext, arrived: Arrived<C>, prepared: P, problem: Problem): Promise<void>;
 }
 
-/** Bodies up to this size are read before their sender is known; larger ones only from somebody who may send them. */
-const SMALL_BODY = 65_536;
+/** Bodies up to this size are read from anybody; larger and compressed ones only from somebody who may send them. */
+const SMALL_BODY = 16_384;
+
+function isSmall({ headers }: Request): boolean {
+  return (
+    !headers.has('content-encoding') && Number(headers.get('content-length') ?? Number.NaN) <= SMALL_BODY
+  );
+}
 
 /** Each time one of those that write the same succeeds, and the pool lets no more than eight try at once. */
 const MAX_REPEATS = 7;
@@ -149,7 +156,7 @@ function callerHandler<C extends Contract, P, A>(operation: C, steps: CallerStep
   return handler(operation, async (request, base, pathParams) => {
     const now = runtime.now();
     const shown = await readCredential(request, now);
-    if (operation.body && !(Number(request.headers.get('content-length') ?? Number.NaN) <= SMALL_BODY)) {
+    if (operation.body && !isSmall(request)) {
       await callerTransaction(shown, now, async (_, identified) => admit(await identified, operation, base));
     }
     const read = await attempt(async () => {
@@ -201,7 +208,7 @@ async function readArrived<C extends Contract>(
   const params = readParams(operation.params, pathParams) as ParamsOf<C>;
   const query = readQueryOf(request, operation) as QueryOf<C>;
   const raw = operation.body ? await readBody(request, operation.body.limit ?? DEFAULT_LIMIT) : null;
-  return { params, query, raw, idempotency: readIdempotency(request, operation, raw?.bytes ?? null) };
+  return { params, query, raw, idempotency: await readIdempotency(request, operation, raw) };
 }
 
 /** An operation that anybody may ask for. */
@@ -212,8 +219,7 @@ export function publicEndpoint<C extends Contract>(
   return handler(operation, async (request, base, params) => {
     if (request.method !== 'GET' && request.method !== 'HEAD') requireSameOrigin(request, false);
     const input = { params: readParams(operation.params, params), query: readQueryOf(request, operation) };
-    const raw = operation.body ? await readBody(request, operation.body.limit ?? DEFAULT_LIMIT) : null;
-    const body = raw && operation.body ? await readInput(operation.body, raw) : null;
+    const body = operation.body ? await readInput(operation.body, await readBody(request, SMALL_BODY)) : null;
     const answer = await verb(base, {
       ...input,
       body: body?.kind === 'json' ? body.value : undefined,
@@ -242,6 +248,8 @@ function handler(
       const problem = problemOf(error);
       if (problem.status >= 500) log().error({ id: base.requestId, ...loggable(error) }, 'request failed');
       response = problemResponse(problem, base.requestId, new URL(request.url).pathname);
+      if (problem.code === 'media_type_unsupported' && operation.body)
+        response.headers.set('Accept', mediaTypesOf(operation.body));
     }
     const { method, path } = operation;
     log().info(
@@ -265,6 +273,8 @@ function admit(caller: Caller, operation: Contract, base: Noted): Caller {
     const who = caller.kind === 'key' ? 'This key' : `The role ${caller.role}`;
     throw new Problem('forbidden', `${who} lacks the scope ${scope}.`);
   }
+  if (operation.organizationWide && caller.projectIds !== null)
+    throw new Problem('forbidden', 'This key is bound to projects; this is about the whole organization.');
   return caller;
 }
 

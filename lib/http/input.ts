@@ -5,7 +5,7 @@ import { type Itemwise, parseItemwise } from '@/lib/formats/itemwise';
 import { parseStrictJson } from '@/lib/formats/strictJson';
 import { problemsOfIssues } from '@/lib/formats/validate';
 import { invalid, invalidItems, Problem } from '@/lib/problem';
-import type { Body, Contract } from '@/openapi/contract';
+import { type Body, type Contract, mediaTypesOf } from '@/openapi/contract';
 import { problemItem } from '@/openapi/problemItem';
 
 export const DEFAULT_LIMIT = 1024 * 1024;
@@ -49,11 +49,10 @@ export async function readInput(body: Body, raw: RawBody): Promise<BodyInput> {
     if (body.optional && body.json) return { kind: 'json', value: body.json.parse({}) };
     throw new Problem('body_required');
   }
-  const text = await bodyText(raw, body.limit ?? DEFAULT_LIMIT);
+  const text = await bodyText(raw);
   if (body.text?.includes(raw.mediaType)) return { kind: 'text', mediaType: raw.mediaType, text };
   if (raw.mediaType !== 'application/json' || !body.json) {
-    const taken = [...(body.json ? ['application/json'] : []), ...(body.text ?? [])].join(', ');
-    throw new Problem('media_type_unsupported', `This operation takes ${taken}.`);
+    throw new Problem('media_type_unsupported', `This operation takes ${mediaTypesOf(body)}.`);
   }
   const { value, flaws } = parseStrictJson(text);
   if (body.itemwise) return { kind: 'items', items: parseItemwise(body.json, body.itemwise, value, flaws) };
@@ -66,7 +65,7 @@ export async function readInput(body: Body, raw: RawBody): Promise<BodyInput> {
 const IDEMPOTENCY_KEY = /^(?:"([\x21\x23-\x5b\x5d-\x7e ]{1,255})"|([\x21\x23-\x7e][\x21-\x7e]{0,254}))$/;
 
 /** The Idempotency-Key of a POST, bare or as a structured string, with a fingerprint of the whole request. */
-export function readIdempotency(request: Request, operation: Contract, bytes: Uint8Array | null) {
+export async function readIdempotency(request: Request, operation: Contract, raw: RawBody | null) {
   const header = request.headers.get('idempotency-key');
   if (header === null || operation.method !== 'post') return null;
   const match = IDEMPOTENCY_KEY.exec(header.trim());
@@ -79,6 +78,7 @@ export function readIdempotency(request: Request, operation: Contract, bytes: Ui
     );
   const { pathname, search } = new URL(request.url);
   const fingerprint = createHash('sha256').update(`${pathname}${search}\n`);
-  if (bytes) fingerprint.update(bytes);
+  // Compressed once more, the same body is seldom the same bytes.
+  if (raw) fingerprint.update(await raw.content.catch(() => raw.bytes));
   return { key, fingerprint: fingerprint.digest() };
 }

@@ -1,9 +1,10 @@
-import type { RawBody } from '@/lib/formats/body';
+import { decompress, type RawBody } from '@/lib/formats/body';
 import { Problem } from '@/lib/problem';
 
 /**
  * Reads a body while counting, so that a long one ends the reading and not the memory.
  *
+ * @param limit in bytes, of the body as it comes and of what it holds once decompressed
  * @throws Problem where it exceeds `limit` bytes or breaks off
  */
 export async function readBody(request: Request, limit: number): Promise<RawBody> {
@@ -11,11 +12,16 @@ export async function readBody(request: Request, limit: number): Promise<RawBody
   const [mediaType, ...parameters] = (request.headers.get('content-type') ?? '').toLowerCase().split(';');
   const charset = parameters.map((p) => /^\s*charset\s*=\s*"?([^"\s]+)"?\s*$/.exec(p)?.[1]).find(Boolean);
   const encoding = request.headers.get('content-encoding')?.trim().toLowerCase();
+  const contentEncoding = encoding && encoding !== 'identity' ? encoding : null;
+  const content = decompress(bytes, contentEncoding, limit);
+  // Whoever asks for the content meets the failure.
+  content.catch(() => undefined);
   return {
     bytes,
+    content,
     mediaType: mediaType.trim(),
     charset: charset ?? null,
-    contentEncoding: encoding && encoding !== 'identity' ? encoding : null,
+    contentEncoding,
   };
 }
 

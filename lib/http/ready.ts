@@ -1,16 +1,6 @@
-import { sql } from 'drizzle-orm';
-import { directoryTransaction } from '@/db/tenant';
+import { databaseReady } from '@/db/ready';
 
-/** Whether the database answers, is migrated, and keeps what it acknowledges. */
-export async function isReady(): Promise<boolean> {
-  try {
-    return await directoryTransaction(async ({ db }) => {
-      const { rows } = await db.execute<{ durable: boolean }>(
-        sql`select current_setting('synchronous_commit') = 'on' and to_regclass('directory') is not null as durable`,
-      );
-      return rows[0].durable;
-    });
-  } catch {
-    return false;
-  }
+/** Whether the hub can take requests: its database answers, is migrated, and keeps what it acknowledges. */
+export function isReady(): Promise<boolean> {
+  return databaseReady().catch(() => false);
 }

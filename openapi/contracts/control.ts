@@ -20,13 +20,16 @@ export const createControlPoints = contract({
   tag: 'Control',
   summary: 'Bring in control',
   description:
-    'Up to 5,000 points as JSON, or as CSV with a header row of the same names (then ?length= is required). Each point is accepted or refused on its own. The same name with other coordinates is a new version, with ?revise=true only.',
+    'Up to 5,000 points as JSON, or as CSV with a header row of the same names (then ?length= is required). Each point is accepted or refused on its own. The same name with other values is a new version, with ?revise=true only, and with confirmUnits too where the point would move by more than a metre. A new version keeps the status of its point: trust is given back by PATCH alone.',
   access: 'control:write',
   params: ProjectParams,
   query: z.strictObject({
-    revise: Flag.meta({ description: 'Make new versions of points whose coordinates changed.' }),
+    revise: Flag.meta({ description: 'Make new versions of points that exist with other values.' }),
     length: LengthUnit.optional().meta({ description: 'Unit of a CSV body.' }),
-    confirmUnits: Flag.meta({ description: 'For a CSV body in the other foot than the project’s frame.' }),
+    confirmUnits: Flag.meta({
+      description:
+        'For a CSV body in the other foot than the project’s frame, or whose points would move by more than a metre.',
+    }),
   }),
   body: { json: ControlSubmission, text: ['text/csv'], itemwise: ['points'], limit: 8 * 1024 * 1024 },
   answers: { 201: { description: 'What became of each point.', json: ControlReceipt } },

@@ -25,6 +25,7 @@ export const createProject = contract({
   description:
     'Fixes the length unit and the frame for good. Tolerance classes of common practice come with it, every figure of them editable.',
   access: 'projects:write',
+  organizationWide: true,
   body: { json: ProjectCreate },
   answers: { 201: { description: 'The project.', json: Project } },
   problems: ['name_taken'],

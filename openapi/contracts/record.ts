@@ -41,7 +41,11 @@ export const listAuditEntries = contract({
   query: z.strictObject({
     ...PageQuery.shape,
     projectId: Id.optional(),
-    action: z.string().max(80).optional(),
+    action: z
+      .string()
+      .max(80)
+      .optional()
+      .meta({ description: 'Only this act, by its full name.', example: 'setup.released' }),
   }),
   answers: { 200: { description: 'A page of audit entries.', json: AuditEntryPage } },
   problems: ['cursor_invalid'],

@@ -130,7 +130,9 @@ export const listAcknowledgements = contract({
   params: ProjectParams,
   query: z.strictObject({
     ...PageQuery.shape,
-    open: Flag.meta({ description: 'Only those that still wait.' }),
+    open: Flag.meta({
+      description: 'true: only those that still wait; false: only those that were answered.',
+    }),
   }),
   answers: { 200: { description: 'A page of acknowledgements.', json: AcknowledgementPage } },
   problems: ['cursor_invalid'],

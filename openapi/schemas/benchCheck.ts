@@ -75,9 +75,16 @@ export const BenchCheck = z
     readings: z.int(),
     spread: maybe.meta({ description: 'Largest minus smallest repeat; null for a single reading.' }),
     difference: figure.meta({ description: 'Read minus known: negative where the edge reads low.' }),
-    correction: maybe.meta({ description: 'To add to the edge’s height; null where none is offered.' }),
+    correction: maybe.meta({
+      description:
+        'To add to the edge’s height, once the setup has proved the benchmark. Null where none is offered: within the tolerance, for a gross error, where the difference is an offset, or where the check cannot speak for the blade.',
+    }),
     tolerance: figure,
-    layer: z.string().nullable(),
+    layer: z
+      .string()
+      .nullable()
+      .meta({ description: 'As named, or as the setup was released to the machine for.' }),
+    layerOffset: maybe.meta({ description: 'The layer’s own, which the machine’s must be.' }),
     activeOffset: maybe,
     correctionAppliedFor: z.string().nullable(),
     verdict: Verdict,

@@ -21,11 +21,17 @@ export const ControlPointInput = z
   })
   .meta({ id: 'ControlPointInput' });
 
+/** Points of one submission, and rows of one table. */
+export const MAX_CONTROL_POINTS = 5_000;
+
 export const ControlSubmission = z
   .strictObject({
     units: LengthUnits,
-    confirmUnits: ConfirmUnits,
-    points: z.array(ControlPointInput).min(1).max(5000),
+    confirmUnits: ConfirmUnits.meta({
+      description:
+        'Needed where a submission is in the other foot than the project’s frame, or where points would move by more than a metre.',
+    }),
+    points: z.array(ControlPointInput).min(1).max(MAX_CONTROL_POINTS),
   })
   .meta({
     id: 'ControlSubmission',

@@ -38,7 +38,7 @@ export const GradeShotInput = z
         geoidModel: z.string().max(80).optional(),
       })
       .optional(),
-    sigma: Sigma.optional(),
+    sigma: Sigma.optional().meta({ description: 'Of a position; a polar shot has its own.' }),
     observedAt: Instant,
   })
   .superRefine((item, context) => {
@@ -50,6 +50,9 @@ export const GradeShotInput = z
     } else if (item.shot && item.setup === undefined) {
       const message = 'A polar shot needs the setup it was taken from.';
       context.addIssue({ code: 'custom', path: ['setup'], message, params: { code: 'required' } });
+    } else if (item.shot && item.sigma) {
+      const message = 'shot and sigma: a polar shot has its σ from its setup and instrument.';
+      context.addIssue({ code: 'custom', path: ['sigma'], message, params: { code: 'mutually_exclusive' } });
     }
   })
   .meta({ id: 'GradeShotInput' });
@@ -105,7 +108,10 @@ export const LayerSummary = z
     cutVolume: maybe.meta({ description: 'Null without a boundary.' }),
     fillVolume: maybe,
     verdicts: z.object({ pass: z.int(), hold: z.int(), fail: z.int() }),
-    notCounted: z.object({ outside: z.int(), notInForce: z.int() }),
+    notCounted: z.object({ outside: z.int(), notInForce: z.int() }).meta({
+      description:
+        'notInForce: the setup was not in force then, or was withdrawn, refitted or found wrong since.',
+    }),
     label: z.string().nullable(),
     verdict: Verdict,
     reasons: z.array(Note),

@@ -7,9 +7,11 @@ export const Id = z
 
 /** Names that appear in paths: points, layers, instruments, machines. */
 const NAME = /^[\p{L}\p{N}][\p{L}\p{N} ._-]{0,63}$/u;
+/** Longer text is no name in any form, and bringing it to one takes a time that grows with its square. */
+const LONGEST_UNFORMED = 1024;
 export const Name = z
   .string()
-  .transform((text) => text.normalize('NFC'))
+  .transform((text) => (text.length > LONGEST_UNFORMED ? text : text.normalize('NFC')))
   .refine((text) => NAME.test(text), {
     error: 'Begin with a letter or digit; then letters, digits, space, . _ or -; 64 characters at most.',
     params: { code: 'name_invalid' },

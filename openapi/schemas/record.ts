@@ -26,7 +26,7 @@ export const EventPage = z
 export const AuditEntry = z
   .object({
     id: Id,
-    action: z.string().meta({ example: 'setup.release' }),
+    action: z.string().meta({ example: 'setup.released' }),
     subject: z.string(),
     projectId: Id.nullable(),
     actor: z.object({

@@ -45,6 +45,9 @@ export const SetupCheck = z
     agreed: z.boolean(),
     targets: z.array(SetupCheckTarget),
     setupVerdict: Verdict.meta({ description: 'The setup’s verdict with this check.' }),
+    carriedFrom: Id.nullable().meta({
+      description: 'The check that this is, where a refit judged its shots again; null as it came in.',
+    }),
     units: AnswerUnits,
   })
   .meta({ id: 'SetupCheck' });
@@ -84,14 +87,32 @@ export const SetupTarget = z
 
 export const Explanation = z
   .object({
-    fault: z.string(),
-    subject: z.string().nullable(),
-    size: maybe,
+    fault: z.enum([
+      'none',
+      'distanceConstant',
+      'distanceScale',
+      'targetsSwapped',
+      'targetMoved',
+      'heightOfTargetOrMark',
+      'singleFace',
+      'wrongFoot',
+      'unexplained',
+    ]),
+    subject: z.string().nullable().meta({ description: 'The mark, or the two marks, that it concerns.' }),
+    size: maybe.meta({
+      description:
+        'Distances: too long is plus. Heights: the shots above the published elevation is plus. A shift has no sign.',
+    }),
     unit: z.string().nullable(),
     weight: figure,
-    confirm: z.string(),
+    text: z.string(),
+    confirm: z.string().meta({ description: 'The one shot that would settle it.' }),
   })
-  .meta({ id: 'Explanation', description: 'What would explain the residuals; weights sum to 1.' });
+  .meta({
+    id: 'Explanation',
+    description:
+      'What would explain the residuals, heaviest first: single faults, each tried in the same adjustment. Weights sum to 1.',
+  });
 
 export const Release = z
   .object({
@@ -181,7 +202,8 @@ export const Setup = z
     checks: z.array(SetupCheck),
     explanations: z.array(Explanation),
     identification: z.object({ ambiguous: z.boolean(), margin: maybe }).nullable(),
-    release: Release.nullable(),
+    release: Release.nullable().meta({ description: 'The last one given.' }),
+    validUntil: Moment.nullable().meta({ description: 'When the longest of its releases runs out.' }),
     supersedes: Id.nullable(),
     supersededBy: Id.nullable(),
     excluded: z.array(z.object({ shot: z.string(), reason: z.string() })).meta({

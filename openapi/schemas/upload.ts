@@ -16,7 +16,7 @@ export const SetupInput = z
     instrumentHeight: z.number().min(0).max(100).nullable().meta({
       description: 'Axis above the mark; null where no mark is occupied.',
     }),
-    stationPoint: Name.optional(),
+    stationPoint: Name.optional().meta({ description: 'The occupied mark of a setup by backsight.' }),
     toleranceClass: z.string().max(120).optional().meta({ description: 'The project’s first by default.' }),
     observedAt: Instant,
     atmosphere: z

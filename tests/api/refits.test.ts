@@ -1,9 +1,12 @@
 import { beforeAll, describe, expect, it } from 'vitest';
+import { minutesAgo } from './fixtures/moments';
 import { expectProblem } from './fixtures/problems';
 import {
   document,
+  type Mark,
   newSiteOrganization,
   resection,
+  type ShotOptions,
   type SiteOrganization,
   STAND,
   shotsTo,
@@ -110,6 +113,89 @@ describe('refits', () => {
     const target = body.targets.find((t: { target: string }) => t.target === 'HT-4');
     expect(target).toMatchObject({ used: false, status: 'quarantined', observations: [] });
     await site.admin.patch(site.at('/control-points/HT-4'), { status: 'trusted', note: 'Reset.' });
+  });
+
+  const closing = (clientId: string, setup: string, mark: Mark, options: ShotOptions = {}, minutes = 60) => ({
+    clientId,
+    setup,
+    purpose: 'closing',
+    observedAt: minutesAgo(minutes),
+    shots: shotsTo(mark, { clientId, ...options }),
+  });
+  const check = (clientId: string, ...setupChecks: object[]) =>
+    site.upload(document(clientId, { setupChecks })).expect(201);
+  const LEFT = { exclude: ['orient-HT-1/left'], reason: 'Sun in the glass.' };
+
+  it('do not talk away a later check that failed the setup', async () => {
+    const { body: made } = await site.upload(document('st-20', { setups: [resection('st-20')] })).expect(201);
+    const [{ id }] = made.setups;
+    const sent = closing('c-20', 'st-20', 'HT-5', { moved: { northing: 0.5 } });
+    const { body: receipt } = await check('st-20-c', sent);
+    const { body: first } = await refit(id, LEFT).expect(201);
+    expect(first).toMatchObject({ verdict: 'fail', verdicts: { horizontal: 'fail', vertical: 'pass' } });
+    expect(first.checks).toHaveLength(1);
+    expect(first.checks[0]).toMatchObject({
+      clientId: 'c-20',
+      setupId: first.id,
+      carriedFrom: receipt.setupChecks[0].id,
+      observedAt: receipt.setupChecks[0].observedAt,
+      purpose: 'closing',
+      agreed: false,
+      setupVerdict: 'fail',
+    });
+    expect(first.checks[0].targets[0]).toMatchObject({ target: 'HT-5', horizontal: 'over' });
+    expect((await site.admin.get(site.at(`/setups/${first.id}`))).body).toEqual(first);
+    expectProblem(await site.admin.post(site.at(`/setups/${first.id}/release`), {}), 'setup_not_releasable');
+    // What the check's own upload was answered stays as it was.
+    const again = await site.upload(document('st-20-c', { setupChecks: [sent] })).expect(200);
+    expect(again.body).toEqual(receipt);
+
+    // A newer check of the mark answers it, and the next refit carries both from where they came in.
+    const { body: newer } = await check('st-20-d', closing('d-20', first.clientId, 'HT-5', {}, 50));
+    expect(newer.setupChecks[0].setupVerdict).toBe('pass');
+    const { body: second } = await refit(first.id, { ...LEFT, exclude: ['orient-HT-2/left'] }).expect(201);
+    expect(second.verdict).toBe('pass');
+    expect(
+      second.checks.map((c: { clientId: string; carriedFrom: string }) => [c.clientId, c.carriedFrom]),
+    ).toEqual([
+      ['c-20', receipt.setupChecks[0].id],
+      ['d-20', newer.setupChecks[0].id],
+    ]);
+    const taken = await site.upload(document('st-20-e', { setupChecks: [closing('c-20', 'st-20', 'BM-1')] }));
+    expectProblem(taken, 'nothing_accepted', ['/setupChecks/0/clientId client_id_taken']);
+  });
+
+  it('judge later checks against the new fit', async () => {
+    const before = await bumped('st-21');
+    const { body } = await check('st-21-c', closing('c-21', 'st-21', 'BM-1'));
+    expect(body.setupChecks[0].agreed).toBe(false);
+    const { body: after } = await refit(before.id, { exclude: HT3, reason }).expect(201);
+    expect(after.verdict).toBe('pass');
+    expect(after.checks[0]).toMatchObject({ clientId: 'c-21', agreed: true, setupVerdict: 'pass' });
+  });
+
+  it('leave out no shot of a later check, and name the check', async () => {
+    const before = await bumped('st-22');
+    await check('st-22-c', closing('c-22', 'st-22', 'BM-1'));
+    const answer = await refit(before.id, { exclude: ['c-22/left'], reason });
+    const { errors } = expectProblem(answer, 'invalid', ['/exclude/0 shot_unknown']);
+    expect(errors?.[0].detail).toContain('the check c-22');
+  });
+
+  it('carry no check whose marks are quarantined by now, and say so', async () => {
+    const before = await bumped('st-23');
+    await check('st-23-c', closing('c-23', 'st-23', 'BM-1', { moved: { elevation: 1 } }));
+    await site.admin
+      .patch(site.at('/control-points/BM-1'), { status: 'quarantined', note: 'Hit.' })
+      .expect(200);
+    const { body } = await refit(before.id, { exclude: HT3, reason }).expect(201);
+    await site.admin
+      .patch(site.at('/control-points/BM-1'), { status: 'trusted', note: 'Set anew.' })
+      .expect(200);
+    expect(body).toMatchObject({ verdict: 'pass', checks: [] });
+    expect(body.notes).toContainEqual(
+      expect.objectContaining({ code: 'mark_quarantined', text: expect.stringContaining('BM-1') }),
+    );
   });
 
   it('make one setup of two refits at the same moment', async () => {

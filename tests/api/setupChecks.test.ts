@@ -72,7 +72,9 @@ describe('check shots', () => {
     expect(now.verdict).toBe('pass');
     expect(now.provenance.resultVersion).toBe(2);
     expect(now.checks).toEqual([answered]);
-    expect(now.radio).toMatch(/^Go\. /);
+    expect(now.radio).toMatch(/^Wait\. .*Have it released/);
+    const released = await site.admin.post(site.at(`/setups/${setup.id}/release`), {}).expect(200);
+    expect(released.body.radio).toMatch(/^Go\. /);
   });
 
   it('fail a setup where they are over the tolerance', async () => {
@@ -134,6 +136,68 @@ describe('check shots', () => {
     // A check on another mark changes nothing about it.
     await post('order-2c', check('order-2-bm', 'order-2', 'BM-1')).expect(201);
     expect((await read(late.id)).verdict).toBe('pass');
+  });
+
+  it('count with every erection of a mark: one over is not made good by another in the same check', async () => {
+    const setup = await newSetup('twice');
+    const high = shotsTo('HT-5', { clientId: 'twice-a', moved: { elevation: 0.4 } });
+    // On a rod of one foot, and right.
+    const onRod = shotsTo('HT-5', { clientId: 'twice-b', moved: { elevation: 1 } });
+    const right = onRod.map((shot) => ({ ...shot, targetHeight: 1 }));
+    const both = check('twice-c', 'twice', 'HT-5', {}, { shots: [...high, ...right] });
+    const { body } = await post('twice-u', both).expect(201);
+    const [{ targets, agreed, setupVerdict }] = body.setupChecks;
+    expect({ agreed, setupVerdict }).toEqual({ agreed: false, setupVerdict: 'fail' });
+    expect(targets.map((t: { shots: string[]; vertical: string }) => [t.shots, t.vertical])).toEqual([
+      [high.map(({ clientId }) => clientId), 'over'],
+      [right.map(({ clientId }) => clientId), 'agreed'],
+    ]);
+    const later = { observedAt: minutesAgo(50) };
+    await post('twice-v', check('twice-d', 'twice', 'HT-5', {}, later)).expect(201);
+    expect((await read(setup.id)).verdict).toBe('pass');
+  });
+
+  it('are refused where a direction and a distance stand under different target heights', async () => {
+    await newSetup('heights');
+    const [shot] = shotsTo('HT-5', { faces: ['left'] });
+    const { zenith: _z, slopeDistance: _s, ...direction } = shot;
+    const { horizontal: _h, ...distance } = shot;
+    const shots = [direction, { ...distance, clientId: 'other', targetHeight: 1 }];
+    const answer = await post('heights-u', check('heights-c', 'heights', 'HT-5', {}, { shots }));
+    expectProblem(answer, 'nothing_accepted', [
+      '/setupChecks/0/shots/0 reading_incomplete',
+      '/setupChecks/0/shots/1 reading_incomplete',
+    ]);
+  });
+
+  it('are refused on quarantined marks alone; beside others such a mark is noted', async () => {
+    const setup = await newSetup('barred');
+    const status = (value: string) =>
+      site.admin.patch(site.at('/control-points/HT-5'), { status: value, note: 'Leans.' }).expect(200);
+    await status('quarantined');
+    const alone = await post('barred-u', check('barred-c', 'barred', 'HT-5'));
+    const { errors } = expectProblem(alone, 'nothing_accepted', ['/setupChecks/0/shots target_quarantined']);
+    expect(errors?.[0].detail).toContain('HT-5');
+    const shots = [...shotsTo('HT-5'), ...shotsTo('BM-1')];
+    const { body } = await post('barred-v', check('barred-d', 'barred', 'HT-5', {}, { shots })).expect(201);
+    await status('trusted');
+    expect(body.setupChecks[0].targets.map((t: { target: string }) => t.target)).toEqual(['BM-1']);
+    const { verdict, notes } = await read(setup.id);
+    expect(verdict).toBe('pass');
+    expect(notes).toContainEqual({
+      code: 'mark_quarantined',
+      text: 'HT-5 is quarantined: its shots are kept and took no part.',
+    });
+  });
+
+  it('that disagree say so themselves: no check is said to be wanted beside them', async () => {
+    const setup = await newSetup('apart');
+    // Within the tolerance of 0.015 ft, beyond what the uncertainty explains.
+    const moved = { moved: { easting: 0.0145 } };
+    await post('apart-u', check('apart-c', 'apart', 'HT-5', moved)).expect(201);
+    const { verdict, reasons } = await read(setup.id);
+    expect(verdict).toBe('hold');
+    expect(codes(reasons)).toEqual(['check_disagrees', 'not_checked']);
   });
 
   it('find their setup by client id or id, also one of the same upload', async () => {

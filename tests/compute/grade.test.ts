@@ -1,7 +1,13 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { deviationStatistics, isWithin, windowRule } from '@/lib/compute/grade/acceptance';
-import { benchReading } from '@/lib/compute/grade/benchCheck';
+import {
+  benchMixUp,
+  benchReading,
+  GROSS_ERROR,
+  isGross,
+  isOffByOffset,
+} from '@/lib/compute/grade/benchCheck';
 import { conformance, deviationFrom } from '@/lib/compute/grade/conformance';
 import { gradeLabel } from '@/lib/compute/grade/label';
 import { planeSurface } from '@/lib/compute/grade/surface';
@@ -51,6 +57,23 @@ describe('a design surface', () => {
       }),
       { numRuns: 100, seed: 3 },
     );
+  });
+
+  it('of sixty thousand slivers that meet at one point gives the height of their cone', () => {
+    const [count, radius, peak] = [60_000, 300, 40];
+    const points = new Float64Array(3 * (count + 1));
+    points.set([1000, 2000, peak]);
+    for (let i = 0; i < count; i++) {
+      const angle = (2 * Math.PI * i) / count;
+      points.set([1000 + radius * Math.cos(angle), 2000 + radius * Math.sin(angle), 0], 3 * (i + 1));
+    }
+    const triangles = Uint32Array.from({ length: 3 * count }, (_, i) =>
+      i % 3 === 0 ? 0 : 1 + ((Math.floor(i / 3) + (i % 3) - 1) % count),
+    );
+    const cone = tinSurface({ points, triangles });
+    for (const share of [0.1, 0.5, 0.9])
+      expect(cone.at(1000 + share * radius, 2000)!.elevation).toBeCloseTo(peak * (1 - share), 6);
+    expect(cone.at(1000 + radius, 2000 + radius)).toBeNull();
   });
 
   it('rises towards its azimuth by its slope', () => {
@@ -261,5 +284,23 @@ describe('a cutting edge on a mark', () => {
     expect(benchReading(0, [0.02, -0.02], 0.04)).toMatchObject({ verdict: 'pass', unsteady: false });
     expect(benchReading(0, [0.0201, -0.02], 0.04)).toMatchObject({ verdict: 'hold', unsteady: true });
     expect(benchReading(100, [100.01], 0.05).spread).toBeNull();
+  });
+
+  it('is off by an offset either way, within the tolerance, and never by an offset of zero', () => {
+    for (const offset of [-0.5, 0.5]) {
+      expect([0.45, 0.5, 0.55, -0.5].map((d) => isOffByOffset(d, offset, 0.05))).toEqual(Array(4).fill(true));
+      expect([0.449, 0.551, 0].map((d) => isOffByOffset(d, offset, 0.05))).toEqual(Array(3).fill(false));
+    }
+    expect(isOffByOffset(0.01, 0, 0.05)).toBe(false);
+    expect(isOffByOffset(0.5, null, 0.05)).toBe(false);
+  });
+
+  it('shows a gross error where no repeat comes near, and metres among feet', () => {
+    expect(isGross(100, [100 + GROSS_ERROR])).toBe(false);
+    expect(isGross(100, [100.7, 99.2])).toBe(true);
+    expect(isGross(100, [10, 100])).toBe(false);
+    expect(benchMixUp(377.5, 1238.44)).toBe('metresAsFeet');
+    expect(benchMixUp(1238.44, 377.5)).toBe('feetAsMetres');
+    expect(benchMixUp(1230, 1238.44)).toBeNull();
   });
 });

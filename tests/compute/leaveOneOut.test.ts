@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { fitStation, StationError } from '@/lib/compute/survey/stationFit';
+import { StationError } from '@/lib/compute/survey/stationAdjustment';
+import { fitStation } from '@/lib/compute/survey/stationFit';
 import { seededChance } from '@/tests/simulator/chance';
 import { observe } from '@/tests/simulator/observe';
 import { randomInstrument, randomSite } from '@/tests/simulator/randomSite';

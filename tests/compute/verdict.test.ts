@@ -62,6 +62,7 @@ function goodFit(change: Partial<StationFit> = {}): StationFit {
     marks: [mark('A'), mark('B'), mark('C')],
     geometry: { spread: 4, inside: true },
     faceErrors: null,
+    explanations: [],
     ...change,
   };
 }
@@ -363,8 +364,20 @@ describe('a class that requires a check', () => {
       const { verdict, verdicts, codes: found } = required([check({ [axis]: outcome })]);
       expect(verdict).toBe('hold');
       expect(verdicts).toMatchObject({ [axis]: 'hold', [other(axis)]: 'pass' });
-      expect(found).toEqual(expect.arrayContaining([code, 'check_wanted']));
+      expect(found).toEqual([code, 'not_checked']);
     }
+  });
+
+  it('wants a check in the axis that none was shot for, beside one that disagrees in the other', () => {
+    const flat = check({ horizontal: 'disagrees', vertical: null });
+    const { reasons, codes: found } = required([flat]);
+    expect(found).toEqual(['check_disagrees', 'check_wanted', 'not_checked']);
+    expect(reasons[1]).toEqual({ code: 'check_wanted', axes: ['vertical'] });
+  });
+
+  it('wants none in the axis where something is wrong', () => {
+    const { of } = required([], withMark({ residual: { easting: 1, northing: 0, elevation: 0 } }));
+    expect(of('check_wanted')).toEqual({ code: 'check_wanted', axes: ['vertical'] });
   });
 
   it('says the rest as well where more than the check lacks', () => {

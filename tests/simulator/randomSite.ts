@@ -13,6 +13,10 @@ export interface Kind {
   /** Nobody measured the air: its correction is known to so many ppm. */
   unknownAirPpm?: number;
   combinedFactor?: number;
+  /** So many marks, fewest and most, instead of three to six. */
+  marks?: [number, number];
+  /** Always all around. */
+  allRound?: boolean;
 }
 
 /**
@@ -26,8 +30,9 @@ export function randomSite(chance: Chance, kind: Kind = {}): Site {
     northing: between(chance, 1000, 5_000_000),
     height: between(chance, 0, 1500),
   };
-  const count = wholeBetween(chance, 3, 6);
-  const around = chance.uniform() < 0.5;
+  const [fewest, most] = kind.marks ?? [3, 6];
+  const count = wholeBetween(chance, fewest, most);
+  const around = chance.uniform() < 0.5 || kind.allRound === true;
   const sector = around ? 2 * Math.PI : between(chance, Math.PI / 3, Math.PI);
   const first = between(chance, 0, 2 * Math.PI);
   const marks = Array.from({ length: count }, (_, i): TrueMark => {

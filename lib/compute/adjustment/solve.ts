@@ -1,4 +1,4 @@
-import type { AdjustmentModel } from './model';
+import { type AdjustmentModel, SingularError } from './model';
 import { NormalEquations } from './normals';
 
 /** The squared step, in its own standard deviations, that no longer matters. */
@@ -30,10 +30,18 @@ export interface Solution {
  * standard deviations, stepᵀ N step, is below 10⁻¹².
  *
  * @param start start values of all unknowns; not changed
+ * Where a step leads to a place at which something is not determined that the start does determine, the observations
+ * contradict each other grossly: the answer is the start, not converged.
+ *
  * @param without a block to leave out with its unknowns and all its rows
+ * @param maxIterations fewer where only a solution near by is of interest
  * @throws SingularError where the observations do not determine an unknown
  */
-export function solve(model: AdjustmentModel, start: Float64Array, without = -1): Solution {
+export function solve(
+  model: AdjustmentModel,
+  start: Float64Array,
+  { without = -1, maxIterations = MAX_ITERATIONS } = {},
+): Solution {
   const normals = new NormalEquations(model);
   const coefficients = new Float64Array(model.columns.length);
   const residuals = new Float64Array(model.weights.length);
@@ -48,9 +56,17 @@ export function solve(model: AdjustmentModel, start: Float64Array, without = -1)
   let squares = squaresAt(x);
   let converged = false;
   let iterations = 0;
-  while (!converged && iterations < MAX_ITERATIONS && Number.isFinite(squares)) {
+  while (!converged && iterations < maxIterations && Number.isFinite(squares)) {
     iterations++;
-    normals.build(coefficients, residuals, without);
+    try {
+      normals.build(coefficients, residuals, without);
+    } catch (error) {
+      if (!(error instanceof SingularError) || iterations === 1) throw error;
+      x.set(start);
+      squares = squaresAt(x);
+      normals.build(coefficients, residuals, without);
+      break;
+    }
     const decrement = normals.solve(step, without);
     converged = decrement <= CONVERGED;
     const before = squares;

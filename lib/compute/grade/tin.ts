@@ -1,3 +1,4 @@
+import Flatbush from 'flatbush';
 import type { Surface, SurfaceHeight } from './surface';
 
 /** A triangulated surface: 3 coordinates a point (easting, northing, elevation; m), 3 point indices a triangle. */
@@ -19,54 +20,38 @@ export function planArea2({ points, triangles }: Tin, t: number): number {
 }
 
 /**
- * Heights on a TIN. Triangles are found through a uniform grid over the plan extent, about one triangle a cell,
- * kept as compressed lists; vertical triangles carry no height and are passed over.
+ * Heights on a TIN. Triangles are found by their plan rectangles through a packed Hilbert R-tree, whose size follows
+ * the number of triangles whatever their shape; vertical triangles carry no height and are passed over. Where several
+ * meet, the first of the triangulation counts.
  */
 export function tinSurface(tin: Tin): Surface {
   const { points, triangles } = tin;
   const count = triangles.length / 3;
-  const extent = planExtent(points);
-  const width = Math.max(extent.maxEast - extent.minEast, 1e-6);
-  const height = Math.max(extent.maxNorth - extent.minNorth, 1e-6);
-  const cell = Math.sqrt((width * height) / Math.max(1, count));
-  const columns = Math.min(4096, Math.max(1, Math.ceil(width / cell)));
-  const rows = Math.min(4096, Math.max(1, Math.ceil(height / cell)));
-  const columnOf = (e: number) => clamp(Math.floor(((e - extent.minEast) / width) * columns), columns - 1);
-  const rowOf = (n: number) => clamp(Math.floor(((n - extent.minNorth) / height) * rows), rows - 1);
-
-  const eachCell = (t: number, visit: (cellIndex: number) => void) => {
-    const [a, b, c] = [triangles[3 * t] * 3, triangles[3 * t + 1] * 3, triangles[3 * t + 2] * 3];
-    const west = columnOf(Math.min(points[a], points[b], points[c]));
-    const east = columnOf(Math.max(points[a], points[b], points[c]));
-    const south = rowOf(Math.min(points[a + 1], points[b + 1], points[c + 1]));
-    const north = rowOf(Math.max(points[a + 1], points[b + 1], points[c + 1]));
-    for (let r = south; r <= north; r++) for (let k = west; k <= east; k++) visit(r * columns + k);
-  };
-  const starts = new Uint32Array(rows * columns + 1);
-  for (let t = 0; t < count; t++) eachCell(t, (index) => starts[index + 1]++);
-  for (let i = 0; i < rows * columns; i++) starts[i + 1] += starts[i];
-  const lists = new Uint32Array(starts[rows * columns]);
-  const next = starts.slice();
+  const tree = new Flatbush(count);
   for (let t = 0; t < count; t++) {
-    eachCell(t, (index) => {
-      lists[next[index]++] = t;
-    });
+    const [a, b, c] = [triangles[3 * t] * 3, triangles[3 * t + 1] * 3, triangles[3 * t + 2] * 3];
+    tree.add(
+      Math.min(points[a], points[b], points[c]),
+      Math.min(points[a + 1], points[b + 1], points[c + 1]),
+      Math.max(points[a], points[b], points[c]),
+      Math.max(points[a + 1], points[b + 1], points[c + 1]),
+    );
   }
+  tree.finish();
 
   return {
     at(easting, northing) {
-      const outside =
-        easting < extent.minEast ||
-        easting > extent.maxEast ||
-        northing < extent.minNorth ||
-        northing > extent.maxNorth;
-      if (outside) return null;
-      const index = rowOf(northing) * columns + columnOf(easting);
-      for (let i = starts[index]; i < starts[index + 1]; i++) {
-        const height = onTriangle(tin, lists[i], easting, northing);
-        if (height) return height;
-      }
-      return null;
+      let found: SurfaceHeight | null = null;
+      let first = count;
+      tree.search(easting, northing, easting, northing, (t) => {
+        const height = t < first ? onTriangle(tin, t, easting, northing) : null;
+        if (height) {
+          found = height;
+          first = t;
+        }
+        return false;
+      });
+      return found;
     },
   };
 }
@@ -107,8 +92,4 @@ export function planExtent(points: Float64Array): PlanExtent {
     extent.maxNorth = Math.max(extent.maxNorth, points[i + 1]);
   }
   return extent;
-}
-
-function clamp(value: number, highest: number): number {
-  return Math.max(0, Math.min(highest, value));
 }

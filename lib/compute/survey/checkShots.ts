@@ -96,7 +96,9 @@ export function checkDifferences(input: {
         inFit: cross !== undefined,
         status: mark.status,
         published: { easting: mark.easting, northing: mark.northing, elevation: mark.elevation },
-        shots: input.shots.flatMap((shot) => (shot.target === mark.name ? shot.id : [])),
+        shots: input.shots.flatMap(({ id, target, targetHeight }) =>
+          target === mark.name && targetHeight === erection.targetHeight ? id : [],
+        ),
         difference: { easting: east, northing: north, elevation: up },
         uncertainty: { horizontal: uHorizontal, vertical: uVertical },
         horizontal: outcome(Math.hypot(east, north), uHorizontal, tolerance.horizontal),

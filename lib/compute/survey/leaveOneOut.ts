@@ -34,7 +34,7 @@ function shift(model: StationModel, solution: Solution, block: number, step: Flo
   const linear = { horizontal: Math.hypot(step[EASTING], step[NORTHING]), vertical: step[AXIS] };
   const length = Math.hypot(linear.horizontal, linear.vertical);
   if (length * length < NONLINEAR * nearestOther(model, unknowns, block)) return linear;
-  const repeated = orSingular(() => solve(model, unknowns, block));
+  const repeated = orSingular(() => solve(model, unknowns, { without: block }));
   if (repeated instanceof SingularError) return null;
   // The rest contradicts itself grossly: then the first step says well enough that the shift is large.
   if (!repeated.converged) return linear;

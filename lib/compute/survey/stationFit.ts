@@ -2,24 +2,16 @@ import { Cofactors } from '@/lib/compute/adjustment/cofactors';
 import { type Ellipse, ellipseFactor95, standardEllipse } from '@/lib/compute/adjustment/ellipse';
 import { type GlobalTest, globalTest } from '@/lib/compute/adjustment/globalTest';
 import { type Reliability, reliability } from '@/lib/compute/adjustment/reliability';
-import { type Solution, solve } from '@/lib/compute/adjustment/solve';
+import type { Solution } from '@/lib/compute/adjustment/solve';
 import { wrapTurn } from '@/lib/compute/units/angles';
-import { type FaceErrors, meanFaces, type ReadingKind } from './faces';
+import { type Explanation, explain } from './explain';
+import type { FaceErrors, ReadingKind } from './faces';
 import { type SightGeometry, sightGeometry } from './geometry';
-import type { InstrumentAccuracy } from './instrument';
 import { type MarkShift, shiftsWithout } from './leaveOneOut';
 import { type Point, polarPoint, polarPointAtElevation, STATION_UNKNOWNS, type Station } from './polarPoint';
-import type { ControlMark, Shot } from './shots';
-import { startValues } from './startValues';
-import {
-  AXIS,
-  EASTING,
-  NORTHING,
-  ORIENTATION,
-  REFRACTION,
-  type StationModel,
-  stationModel,
-} from './stationModel';
+import type { ControlMark } from './shots';
+import { adjustStation, type StationInput } from './stationAdjustment';
+import { AXIS, EASTING, NORTHING, ORIENTATION, REFRACTION, type StationModel } from './stationModel';
 import type { Surroundings } from './surroundings';
 
 export interface FittedReading {
@@ -68,14 +60,8 @@ export interface StationFit {
   marks: FittedMark[];
   geometry: SightGeometry;
   faceErrors: FaceErrors | null;
-}
-
-/** Why a setup cannot be computed at all. */
-export class StationError extends Error {
-  constructor(readonly code: 'too_few_sights' | 'not_determined') {
-    super(code);
-    this.name = 'StationError';
-  }
+  /** Heaviest first; weights sum to 1. */
+  explanations: Explanation[];
 }
 
 /**
@@ -86,26 +72,10 @@ export class StationError extends Error {
  * @param ppm atmospheric correction wanted, null where the atmosphere is unknown
  * @throws StationError where the shots do not determine a station
  */
-export function fitStation(input: {
-  shots: readonly Shot[];
-  control: ReadonlyMap<string, ControlMark>;
-  accuracy: InstrumentAccuracy;
-  surroundings: Surroundings;
-  ppm: number | null;
-}): StationFit {
-  const { control, surroundings, ppm } = input;
-  const means = meanFaces(input.shots, input.accuracy, ppm);
-  const { erections } = means;
-  const readings = means.readings.filter(({ kind, erection }) => {
-    // Neither a zenith angle nor an elevation: a slope distance cannot be brought to the horizontal.
-    const hasZenith = means.readings.some((r) => r.erection === erection && r.kind === 'zenith');
-    return kind !== 'distance' || hasZenith || control.get(erections[erection].target)!.elevation !== null;
-  });
-  const start = startValues(erections, readings, control, surroundings);
-  if (!start) throw new StationError('too_few_sights');
-  const model = stationModel({ ...input, erections, readings, start, atmosphereKnown: ppm !== null });
-
-  const solution = solveOrRefuse(model);
+export function fitStation(input: StationInput): StationFit {
+  const { control, surroundings } = input;
+  const adjusted = adjustStation(input);
+  const { model, solution, erections, readings } = adjusted;
   const cofactors = new Cofactors(solution);
   const statistics = reliability(solution, cofactors);
   const test = globalTest(solution.weightedSquares, solution.degreesOfFreedom);
@@ -152,17 +122,9 @@ export function fitStation(input: {
         return horizontal ? Math.atan2(mark.easting - station.easting, mark.northing - station.northing) : [];
       }),
     ),
-    faceErrors: means.faceErrors,
+    faceErrors: adjusted.faceErrors,
+    explanations: explain(adjusted, statistics.standardised),
   };
-}
-
-function solveOrRefuse(model: StationModel): Solution {
-  try {
-    return solve(model, model.start);
-  } catch (error) {
-    if (error instanceof Error && error.name === 'SingularError') throw new StationError('not_determined');
-    throw error;
-  }
 }
 
 function fittedStation(

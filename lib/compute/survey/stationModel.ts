@@ -37,6 +37,8 @@ export interface StationModel extends AdjustmentModel {
   readonly marks: readonly string[];
   /** Unknowns of a mark's coordinates, as its block begins: easting, northing, elevation. */
   markUnknown(mark: string): number;
+  /** Row of the pseudo-observation that holds an unknown, −1 where none does. */
+  heldRow(unknown: number): number;
   /** Whether any mark with an elevation was seen with a zenith angle. */
   readonly heightDetermined: boolean;
 }
@@ -153,6 +155,10 @@ export function stationModel(input: {
     origin: { easting: start.easting, northing: start.northing },
     marks,
     markUnknown: (name) => markStart.get(name)!,
+    heldRow(unknown) {
+      const index = heldUnknown.indexOf(unknown);
+      return index < 0 ? -1 : readings.length + index;
+    },
     heightDetermined,
     linearise(point, coefficients, misclosures) {
       for (let i = 0; i < readings.length; i++) {

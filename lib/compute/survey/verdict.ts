@@ -70,9 +70,11 @@ export function judgeSetup(
   judgeProof(fit, limits, checks, work, lower);
 
   const wanted = AXES.filter((axis) => !independent(checks, axis));
-  if (limits.checkRequired && wanted.length > 0) {
+  // A check that was shot and did not confirm says itself what lacks; so does what is wrong.
+  const unshot = wanted.filter((axis) => verdicts[axis] !== 'fail' && !unconfirmed(reasons, axis));
+  if (limits.checkRequired && unshot.length > 0) {
     const onlyCheck = reasons.length === 0;
-    lower(wanted, 'hold', { code: 'check_wanted', axes: wanted });
+    lower(unshot, 'hold', { code: 'check_wanted', axes: unshot });
     if (onlyCheck) return { verdict: 'hold', verdicts, reasons };
   }
   const verdict = worst(verdicts);
@@ -209,6 +211,13 @@ function judgeLeaveOneOut(fit: StationFit, axis: Axis, limit: number, lower: Low
 /** An agreed check on a trusted mark that took no part in the fit. */
 function independent(checks: readonly CheckDifference[], axis: Axis): boolean {
   return checks.some((check) => !check.inFit && check.status === 'trusted' && check[axis] === 'agreed');
+}
+
+function unconfirmed(reasons: readonly SetupReason[], axis: Axis): boolean {
+  return reasons.some(
+    (reason) =>
+      (reason.code === 'check_disagrees' || reason.code === 'check_not_capable') && reason.axis === axis,
+  );
 }
 
 function sizeOf({ difference }: CheckDifference, axis: Axis): number {

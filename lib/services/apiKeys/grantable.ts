@@ -1,5 +1,5 @@
-import type { Caller } from '@/lib/access/actor';
-import { invalidItems } from '@/lib/problem';
+import { type Caller, mayUseProject } from '@/lib/access/actor';
+import { invalidItems, Problem } from '@/lib/problem';
 import { problemItem } from '@/openapi/problemItem';
 import type { Scope } from '@/openapi/scopes';
 
@@ -13,8 +13,9 @@ export function requireOwnScopes(caller: Caller, scopes: readonly Scope[]): void
   if (foreign.length > 0) throw invalidItems(foreign);
 }
 
-/** Whether a caller's own projects cover those of a key. */
-export function coversProjects(caller: Caller, projectIds: readonly string[] | null): boolean {
-  if (caller.projectIds === null) return true;
-  return projectIds?.every((id) => caller.projectIds?.includes(id)) ?? false;
+/** @throws Problem where a key reaches projects that the caller's own do not cover */
+export function requireCoveredProjects(caller: Caller, projectIds: readonly string[] | null): void {
+  if (caller.projectIds === null) return;
+  if (!projectIds?.every((id) => mayUseProject(caller, id)))
+    throw new Problem('forbidden', 'That key reaches projects that you do not.');
 }

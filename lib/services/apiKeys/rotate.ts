@@ -2,7 +2,7 @@ import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { record } from '@/lib/services/record';
 import type { Scope } from '@/openapi/scopes';
-import { coversProjects, requireOwnScopes } from './grantable';
+import { requireCoveredProjects, requireOwnScopes } from './grantable';
 import { issueKey } from './issue';
 import { changeApiKey, loadApiKey } from './load';
 import { presentApiKey } from './present';
@@ -16,8 +16,7 @@ export async function rotateApiKey(
   const old = await loadApiKey(context, params.apiKeyId);
   const now = runtime.now();
   requireOwnScopes(caller, old.scopes as Scope[]);
-  if (!coversProjects(caller, old.projectIds))
-    throw new Problem('forbidden', 'That key reaches projects that you do not.');
+  requireCoveredProjects(caller, old.projectIds);
   if (presentApiKey(old, now).status !== 'active' || old.successorId !== null) {
     throw new Problem('conflict', 'Only a key that is active and has no successor is rotated.');
   }

@@ -6,6 +6,7 @@ import { pageOf, readCursor } from '@/lib/services/paging';
 import { loadProject } from '@/lib/services/projects/load';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/grade';
+import { selectBenchChecks } from './load';
 import { presentBenchCheck } from './present';
 
 type List = typeof contract.listBenchChecks;
@@ -17,17 +18,13 @@ export async function listBenchChecks(
   const project = await loadProject(tenant, caller.organizationId, params.projectId);
   const list = ['bench-checks', project.id, query.machine];
   const after = readCursor(list, query.cursor);
-  const rows = await tenant.db
-    .select()
-    .from(benchChecks)
-    .where(
-      and(
-        eq(benchChecks.organizationId, caller.organizationId),
-        eq(benchChecks.projectId, project.id),
-        query.machine ? eq(benchChecks.machine, query.machine) : undefined,
-        after === null ? undefined : lt(benchChecks.id, after),
-      ),
-    )
+  const wanted = and(
+    eq(benchChecks.organizationId, caller.organizationId),
+    eq(benchChecks.projectId, project.id),
+    query.machine ? eq(benchChecks.machine, query.machine) : undefined,
+    after === null ? undefined : lt(benchChecks.id, after),
+  );
+  const rows = await selectBenchChecks(tenant, wanted)
     .orderBy(desc(benchChecks.id))
     .limit(query.limit + 1);
   const length = new Lengths(query.length ?? project.lengthUnit);

@@ -1,16 +1,13 @@
-import type { InferSelectModel } from 'drizzle-orm';
 import type * as z from 'zod';
-import type { benchChecks } from '@/db/schema';
 import type { Lengths } from '@/lib/services/lengths';
 import { asMoment } from '@/lib/services/moments';
 import { RELEASE_CAUTIONS } from '@/lib/services/setups/words';
 import type { BenchCheck } from '@/openapi/schemas/benchCheck';
-import { benchInstruction, offersCorrection, wordsOfBenchReason } from './words';
+import { benchInstruction, offersCorrection } from './instruction';
+import type { BenchCheckRow } from './load';
+import { wordsOfBenchReason } from './words';
 
-export function presentBenchCheck(
-  row: InferSelectModel<typeof benchChecks>,
-  length: Lengths,
-): z.output<typeof BenchCheck> {
+export function presentBenchCheck(row: BenchCheckRow, length: Lengths): z.output<typeof BenchCheck> {
   return {
     id: row.id,
     clientId: row.clientId,
@@ -28,10 +25,11 @@ export function presentBenchCheck(
     correction: offersCorrection(row.reasons) ? length.out(-row.difference) : null,
     tolerance: length.out(row.tolerance),
     layer: row.layerName,
+    layerOffset: length.outOrNull(row.layerOffset),
     activeOffset: length.outOrNull(row.activeOffset),
     correctionAppliedFor: row.correctionAppliedFor,
     verdict: row.verdict,
-    reasons: row.reasons.map(wordsOfBenchReason),
+    reasons: row.reasons.map((code) => wordsOfBenchReason(code, row, length)),
     instruction: benchInstruction(row, length),
     cautions: [...RELEASE_CAUTIONS],
     uploadId: row.uploadId,

@@ -6,6 +6,7 @@ import { Lengths } from '@/lib/services/lengths';
 import { loadProject } from '@/lib/services/projects/load';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/grade';
+import { selectBenchChecks } from './load';
 import { presentBenchCheck } from './present';
 
 type Read = typeof contract.getBenchCheck;
@@ -15,16 +16,12 @@ export async function readBenchCheck(
   { params, query }: { params: ParamsOf<Read>; query: QueryOf<Read> },
 ) {
   const project = await loadProject(tenant, caller.organizationId, params.projectId);
-  const [row] = await tenant.db
-    .select()
-    .from(benchChecks)
-    .where(
-      and(
-        eq(benchChecks.organizationId, caller.organizationId),
-        eq(benchChecks.projectId, project.id),
-        eq(benchChecks.id, params.benchCheckId),
-      ),
-    );
+  const wanted = and(
+    eq(benchChecks.organizationId, caller.organizationId),
+    eq(benchChecks.projectId, project.id),
+    eq(benchChecks.id, params.benchCheckId),
+  );
+  const [row] = await selectBenchChecks(tenant, wanted);
   if (!row) throw new Problem('not_found', 'There is no such bench check in this project.');
   return presentBenchCheck(row, new Lengths(query.length ?? project.lengthUnit));
 }

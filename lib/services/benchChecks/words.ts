@@ -1,96 +1,100 @@
+import { GROSS_ERROR } from '@/lib/compute/grade/benchCheck';
+import { offsetFigure } from '@/lib/services/layers/offset';
 import type { Lengths } from '@/lib/services/lengths';
-import { FORCE_WORDS } from '@/lib/services/setups/force';
+import { FORCE_WORDS, type ForceFault } from '@/lib/services/setups/force';
 import type { Words } from '@/lib/services/setups/words';
 
-const BENCH_REASONS: Record<string, Words> = {
-  ...FORCE_WORDS,
-  benchmark_not_trusted: {
-    code: 'benchmark_not_trusted',
-    text: 'The benchmark is suspect or quarantined.',
-    action: 'Bench on a trusted mark.',
-  },
-  benchmark_in_fit: {
-    code: 'benchmark_in_fit',
-    text: 'The benchmark was used in the setup’s own fit: it cannot check it.',
-    action: 'Bench on a mark outside the fit.',
-  },
-  offset_differs: {
-    code: 'offset_differs',
-    text: 'The machine’s active offset is not the layer’s.',
-    action: 'Set the layer’s offset in the machine before it cuts.',
-  },
-  surface_differs: {
-    code: 'surface_differs',
-    text: 'The machine’s surface is not the layer’s.',
-    action: 'Load the layer’s surface into the machine before it cuts.',
-  },
-  readings_unsteady: {
-    code: 'readings_unsteady',
-    text: 'The repeats do not agree among themselves.',
-    action: 'Rest the edge on the mark and read again.',
-  },
-  edge_low: {
-    code: 'edge_low',
-    text: 'The edge reads low.',
-    action: 'Check the benchmark by the setup first.',
-  },
-  edge_high: {
-    code: 'edge_high',
-    text: 'The edge reads high.',
-    action: 'Check the benchmark by the setup first.',
-  },
+/** What the words of a bench check are made of. */
+export interface BenchFacts {
+  benchmark: string;
+  difference: number;
+  tolerance: number;
+  layerName: string | null;
+  layerOffset: number | null;
+  activeOffset: number | null;
+}
+
+export type BenchReason =
+  | ForceFault
+  | 'benchmark_not_trusted'
+  | 'benchmark_in_fit'
+  | 'readings_unsteady'
+  | 'gross_error'
+  | 'metres_as_feet'
+  | 'feet_as_metres'
+  | 'layer_offset_suspected'
+  | 'active_offset_suspected'
+  | 'offset_differs'
+  | 'surface_differs'
+  | 'edge_low'
+  | 'edge_high';
+
+type Says = (check: BenchFacts, length: Lengths) => Omit<Words, 'code'>;
+
+const always = (text: string, action: string): Says => {
+  return () => ({ text, action });
 };
 
-export function wordsOfBenchReason(code: string): Words {
-  return BENCH_REASONS[code];
-}
+const CHECK_MARK = 'Check the benchmark by the setup first.';
 
-/** These leave nothing to judge a blade by. */
-const UNFIT = new Set([
-  'setup_not_in_force',
-  'setup_superseded',
-  'setup_failed_since',
-  'benchmark_not_trusted',
-  'benchmark_in_fit',
-  'readings_unsteady',
-]);
-
-function isUnfit(reasons: readonly string[]): boolean {
-  return reasons.some((code) => UNFIT.has(code));
-}
-
-/** A correction is offered for an edge that is off by more than the tolerance, where the check itself is sound. */
-export function offersCorrection(reasons: readonly string[]): boolean {
-  return reasons.some((code) => code === 'edge_low' || code === 'edge_high') && !isUnfit(reasons);
-}
-
-const EDGE = { left: 'Left edge', right: 'Right edge', centre: 'Centre of the edge' } as const;
-
-/** What to do with a blade, in words that leave no sign open. */
-export function benchInstruction(
-  check: {
-    edge: 'left' | 'right' | 'centre';
-    benchmark: string;
-    difference: number;
-    reasons: readonly string[];
+const SAYS: Record<Exclude<BenchReason, ForceFault>, Says> = {
+  benchmark_not_trusted: always('The benchmark is suspect or quarantined.', 'Bench on a trusted mark.'),
+  benchmark_in_fit: always(
+    'The benchmark was used in the setup’s own fit: it cannot check it.',
+    'Bench on a mark outside the fit.',
+  ),
+  readings_unsteady: always(
+    'The repeats do not agree among themselves.',
+    'Rest the edge on the mark and read again.',
+  ),
+  gross_error: ({ benchmark, difference }, length) => ({
+    text: `The edge reads ${readsOff(difference, length)}: a gross error, no blade is off by more than ${length.text(GROSS_ERROR, 1)}.`,
+    action: `Check the unit of the readings first, then that the edge stood on ${benchmark}, then the frame that the machine works in.`,
+  }),
+  metres_as_feet: always(
+    'It looks like metres in a foot job.',
+    'Send the elevations in the unit that is declared with them.',
+  ),
+  feet_as_metres: always(
+    'It looks like feet in a metre job.',
+    'Send the elevations in the unit that is declared with them.',
+  ),
+  layer_offset_suspected: (check, length) =>
+    suspected(check, check.layerOffset, `the offset of ${check.layerName}`, length),
+  active_offset_suspected: (check, length) =>
+    suspected(check, check.activeOffset, 'the machine’s active offset', length),
+  offset_differs: ({ layerName, layerOffset, activeOffset }, length) => {
+    const [active, wanted] = [activeOffset ?? 0, layerOffset ?? 0];
+    const figure = offsetFigure(wanted, length, active);
+    return {
+      text: `The machine’s active offset is ${offsetFigure(active, length, wanted)}, that of ${layerName} is ${figure}.`,
+      action: `Set ${figure} in the machine before it cuts.`,
+    };
   },
-  length: Lengths,
-): string {
-  const edge = EDGE[check.edge];
-  const size = length.text(Math.abs(check.difference));
-  if (isUnfit(check.reasons)) {
-    const words = check.reasons.map(wordsOfBenchReason);
-    return `Do not correct. ${words.map(({ text, action }) => `${text} ${action ?? ''}`.trim()).join(' ')}`;
-  }
-  const others = check.reasons.filter((code) => code === 'offset_differs' || code === 'surface_differs');
-  const warning = others
-    .map((code) => ` ${wordsOfBenchReason(code).text} ${wordsOfBenchReason(code).action}`)
-    .join('');
-  if (!offersCorrection(check.reasons))
-    return `${edge} agrees with ${check.benchmark} within the tolerance (${size}).${warning}`;
-  const low = check.difference < 0;
-  const reads = low ? 'low' : 'high';
-  const ground = low ? 'high' : 'low';
-  const act = low ? `add ${size} to` : `take ${size} off`;
-  return `${edge} reads ${size} ${reads}: it would leave ground ${size} ${ground}. First check ${check.benchmark} by the setup. Only if the setup agrees, ${act} the ${edge.toLowerCase()}'s height, then bench again.${warning}`;
+  surface_differs: always(
+    'The machine’s surface is not the layer’s.',
+    'Load the layer’s surface into the machine before it cuts.',
+  ),
+  edge_low: always('The edge reads low.', CHECK_MARK),
+  edge_high: always('The edge reads high.', CHECK_MARK),
+};
+
+function suspected({ difference }: BenchFacts, offset: number | null, whose: string, length: Lengths) {
+  const figure = offsetFigure(offset ?? 0, length);
+  const size = length.text(Math.abs(difference));
+  const match = size === length.text(Math.abs(offset ?? 0)) ? 'exactly' : 'within the tolerance';
+  return {
+    text: `The edge reads ${readsOff(difference, length)}, ${match} ${match === 'exactly' ? '' : 'of '}${whose} (${figure}): is the offset left on (or off)?`,
+    action: 'Look at the offset in the machine, and read the edge again with the offset excluded.',
+  };
+}
+
+function readsOff(difference: number, length: Lengths): string {
+  return `${length.text(Math.abs(difference))} ${difference < 0 ? 'low' : 'high'}`;
+}
+
+export function wordsOfBenchReason(code: string, check: BenchFacts, length: Lengths): Words {
+  const reason = code as BenchReason;
+  if (reason in FORCE_WORDS) return FORCE_WORDS[reason as ForceFault];
+  return { code, ...SAYS[reason as Exclude<BenchReason, ForceFault>](check, length) };
 }

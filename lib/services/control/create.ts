@@ -2,15 +2,19 @@ import { and, eq } from 'drizzle-orm';
 import type * as z from 'zod';
 import { bulkInsert } from '@/db/bulk';
 import { controlPoints, controlPointVersions, type SubmittedControl } from '@/db/schema';
+import { greatMove } from '@/lib/compute/survey/controlMove';
 import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { Lengths, otherFoot } from '@/lib/services/lengths';
 import { loadProject, type ProjectRow } from '@/lib/services/projects/load';
 import { record } from '@/lib/services/record';
+import { refusedItems } from '@/lib/services/refusedItems';
 import { problemItem } from '@/openapi/problemItem';
 import type { ControlReceipt } from '@/openapi/schemas/control';
+import { differences } from './differences';
 import type { Entries, Entry } from './entries';
 import { byNames, type CurrentControl, currentControl } from './load';
+import { MOVE_FIX, moveText } from './moves';
 
 const insert = bulkInsert({ controlPoints, controlPointVersions });
 
@@ -39,6 +43,7 @@ export async function createControlPoints(
   const points: z.output<typeof ControlReceipt>['points'] = [];
   const written: ReturnType<typeof versionRow>[] = [];
   const seen = new Set<string>();
+  const shown = new Lengths(project.lengthUnit);
   for (const entry of entries) {
     const { pointer, point } = entry;
     if (seen.has(point.name)) {
@@ -50,10 +55,22 @@ export async function createControlPoints(
     seen.add(point.name);
     const before = known.get(point.name);
     const row = versionRow(entry, (before?.point.currentVersion ?? 0) + 1, unit, project, context);
-    if (before && isSame(before, row)) {
+    const differing = before ? differences(before.version, row) : [];
+    const move = before ? greatMove(before.version, row) : null;
+    if (before && differing.length === 0) {
       points.push({ pointer, name: point.name, outcome: 'unchanged', version: before.point.currentVersion });
     } else if (before && !revise) {
-      refused.push(problemItem(pointer, 'control_point_exists', `${point.name} exists with other values.`));
+      refused.push(
+        problemItem(
+          pointer,
+          'control_point_exists',
+          `${point.name} exists with another ${differing.join(', ')}${move ? `, and ${moveText(move, shown)}` : ''}.`,
+          move ? MOVE_FIX : undefined,
+        ),
+      );
+    } else if (move && !confirmUnits) {
+      const detail = `${point.name} ${moveText(move, shown)}.`;
+      refused.push(problemItem(pointer, 'control_point_moves', detail, MOVE_FIX));
     } else {
       written.push(row);
       points.push({
@@ -84,7 +101,7 @@ export async function createControlPoints(
     tenant.defer(
       tenant.db
         .update(controlPoints)
-        .set({ currentVersion: version, status: 'trusted', updatedAt: now })
+        .set({ currentVersion: version, updatedAt: now })
         .where(
           and(
             eq(controlPoints.organizationId, organizationId),
@@ -111,10 +128,7 @@ export async function createControlPoints(
     );
   }
   return {
-    counts: {
-      ...counts,
-      refused: new Set(refused.map((r) => r.pointer.split('/').slice(0, 3).join('/'))).size,
-    },
+    counts: { ...counts, refused: refusedItems(refused) },
     points,
     refused,
   };
@@ -151,21 +165,4 @@ function versionRow(
     createdBy: context.caller.name,
     createdAt: context.runtime.now().toISOString(),
   };
-}
-
-/** A tenth of a micrometre: what is left of a coordinate after a round trip through another unit. */
-const SAME = 1e-7;
-
-function isSame({ version }: CurrentControl, row: ReturnType<typeof versionRow>): boolean {
-  const close = (a: number | null, b: number | null) =>
-    a === null || b === null ? a === b : Math.abs(a - b) < SAME;
-  return (
-    close(version.easting, row.easting) &&
-    close(version.northing, row.northing) &&
-    close(version.elevation, row.elevation) &&
-    close(version.sigmaHorizontal, row.sigmaHorizontal) &&
-    close(version.sigmaVertical, row.sigmaVertical) &&
-    version.kind === row.kind &&
-    version.description === row.description
-  );
 }

@@ -6,7 +6,7 @@ import { problemsOfIssues } from '@/lib/formats/validate';
 import { invalid, invalidItems, Problem } from '@/lib/problem';
 import { CONTROL_COLUMNS, CONTROL_NEEDED } from '@/openapi/controlTable';
 import { problemItem } from '@/openapi/problemItem';
-import { ControlPointInput, type ControlSubmission } from '@/openapi/schemas/control';
+import { ControlPointInput, type ControlSubmission, MAX_CONTROL_POINTS } from '@/openapi/schemas/control';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 
 /** A point that was sent in, and where it stood. */
@@ -46,7 +46,9 @@ const NUMBER = /^[+-]?(?:\d+\.?\d*|\.\d+)$/;
 /** The points of a CSV submission, a row each; empty cells count as absent. */
 function entriesOfCsv(text: string, unit: LengthUnit | undefined, confirmUnits: boolean): Entries {
   if (!unit) throw invalid('?length', 'units_required', 'A CSV body needs ?length=m, ft or ftUS.');
-  const table = readTable(text, CONTROL_COLUMNS, CONTROL_NEEDED);
+  const table = readTable(text, CONTROL_COLUMNS, CONTROL_NEEDED, MAX_CONTROL_POINTS);
+  if (table.more)
+    throw invalid('/rows', 'invalid_value', `The table must have at most ${MAX_CONTROL_POINTS} rows.`);
   const refused = [...table.problems];
   const entries: Entry[] = [];
   for (const row of table.rows) {

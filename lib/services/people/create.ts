@@ -4,6 +4,7 @@ import type { JsonOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/people';
 import { addPerson } from './add';
 import { invite } from './invite';
+import { requireOwnRole } from './reach';
 
 /** Makes an account that waits for its invitation to be accepted. */
 export async function createPerson(
@@ -11,6 +12,7 @@ export async function createPerson(
   { body }: { body: JsonOf<typeof contract.createPerson> },
 ) {
   const { caller } = context;
+  requireOwnRole(caller, body.role);
   const row = await addPerson(context, caller.organizationId, { ...body, passwordHash: null });
   record(context, caller, {
     type: 'person.invited',

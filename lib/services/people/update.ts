@@ -8,6 +8,7 @@ import type { JsonOf, ParamsOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/people';
 import { loadPerson } from './load';
 import { presentPerson } from './present';
+import { requireOwnRole, requireReach } from './reach';
 
 type Update = typeof contract.updatePerson;
 
@@ -19,6 +20,8 @@ export async function updatePerson(
   const { tenant, caller } = context;
   const { organizationId } = caller;
   const before = await loadPerson(tenant, organizationId, params.personId, true);
+  requireReach(caller, before);
+  if (body.role !== undefined) requireOwnRole(caller, body.role);
   const active = before.passwordHash === null ? ('invited' as const) : ('active' as const);
   const change = {
     name: body.name ?? before.name,

@@ -21,8 +21,6 @@ export async function createProject(
   { body }: { body: JsonOf<typeof contract.createProject> },
 ) {
   const { tenant, caller, runtime } = context;
-  if (caller.projectIds !== null)
-    throw new Problem('forbidden', 'A key that is bound to projects opens none.');
   if (body.frame.kind !== 'local') {
     throw invalid(
       '/frame/kind',

@@ -7,16 +7,21 @@ import { Problem } from '@/lib/problem';
 
 export type ProjectRow = InferSelectModel<typeof projects>;
 
-/** @throws Problem where the organization has no such project */
+/**
+ * @param lock until the end of the transaction against changes, not against rows that point to it
+ * @throws Problem where the organization has no such project
+ */
 export async function loadProject(
   tenant: Tenant,
   organizationId: string,
   projectId: string,
+  lock = false,
 ): Promise<ProjectRow> {
-  const [row] = await tenant.db
+  const query = tenant.db
     .select()
     .from(projects)
     .where(and(eq(projects.organizationId, organizationId), eq(projects.id, projectId)));
+  const [row] = await (lock ? query.for('no key update') : query);
   if (!row) throw new Problem('not_found', 'There is no such project.');
   return row;
 }

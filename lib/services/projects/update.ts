@@ -18,7 +18,7 @@ export async function updateProject(
 ) {
   const { tenant, caller, runtime } = context;
   const { organizationId } = caller;
-  const before = await loadProject(tenant, organizationId, params.projectId);
+  const before = await loadProject(tenant, organizationId, params.projectId, true);
   const length = new Lengths(before.lengthUnit);
   const row: ProjectRow = {
     ...before,

@@ -6,6 +6,7 @@ import { emailHandle } from '@/lib/access/secrets';
 import { clearFailures, countFailure, requireAttempt } from '@/lib/access/throttle';
 import { Problem } from '@/lib/problem';
 import type { PublicContext } from '@/lib/services/context';
+import { loadPerson } from '@/lib/services/people/load';
 import type { PersonRow } from '@/lib/services/people/present';
 import { record } from '@/lib/services/record';
 import { type OpenedSession, openSession } from './open';
@@ -24,16 +25,22 @@ export async function signIn(
     await countFailure(account, context.address);
     throw new Problem('sign_in_failed');
   }
-  await clearFailures(account);
-  return handleTransaction(handle, 'email', async (tenant) => {
-    const { organizationId, id, name } = usable;
+  const opened = await handleTransaction(handle, 'email', async (tenant) => {
+    const { organizationId, id } = usable;
+    const person = await loadPerson(tenant, organizationId, id, true);
+    // While the password was verified it may have been set anew, or the account closed.
+    if (person.passwordHash !== usable.passwordHash || person.status !== 'active')
+      throw new Problem('sign_in_failed');
+    const { name } = person;
     record(
       { ...context, tenant },
       { kind: 'person', organizationId, personId: id, name },
       { type: 'session.opened', subject: id },
     );
-    return openSession({ ...context, tenant }, usable);
+    return openSession({ ...context, tenant }, person);
   });
+  await clearFailures(account);
+  return opened;
 }
 
 function findPerson(handle: Buffer): Promise<PersonRow | undefined> {

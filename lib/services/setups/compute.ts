@@ -9,6 +9,8 @@ import { type CheckResult, fitOf, keepMark, type SetupNote, type SetupResult } f
 
 export interface SetupTask {
   shots: readonly Shot[];
+  /** Shots of the checks that came later, oldest check first. */
+  later?: readonly (readonly Shot[])[];
   /** All marks that the shots name. */
   control: ReadonlyMap<string, ControlMark>;
   accuracy: InstrumentAccuracy;
@@ -27,37 +29,39 @@ export interface OwnCheck {
 
 const PURPOSES = ['check', 'closing'] as const;
 
+/** A setup's result, and the differences of its own and of its later checks. */
+export interface ComputedSetup {
+  result: SetupResult;
+  checks: OwnCheck[];
+  later: CheckDifference[][];
+}
+
 /**
- * A setup from its shots: fit, statistics, its own check shots, verdict.
+ * A setup from its shots: fit, statistics, its own check shots and later ones, verdict.
  *
  * @throws StationError where the shots do not determine a station
  */
-export function computeSetup(task: SetupTask): { result: SetupResult; checks: OwnCheck[] } {
+export function computeSetup(task: SetupTask): ComputedSetup {
   const { control, accuracy, surroundings, ppm, limits } = task;
-  const isUsed = (shot: Shot) => control.get(shot.target)?.status !== 'quarantined';
   const orienting = task.shots.filter((shot) => shot.purpose === 'orient');
-  const fit = fitStation({ shots: orienting.filter(isUsed), control, accuracy, surroundings, ppm });
-  const leftOut = [...new Set(orienting.filter((shot) => !isUsed(shot)).map((shot) => shot.target))];
+  const used = orienting.filter((shot) => !isQuarantined(shot, control));
+  const fit = fitStation({ shots: used, control, accuracy, surroundings, ppm });
   const work = accuracyAtWork(fit.station, accuracy.zenith, limits.work.radius, surroundings);
   const checks = PURPOSES.flatMap((purpose): OwnCheck[] => {
-    const shots = task.shots.filter((shot) => shot.purpose === purpose && isUsed(shot));
-    if (shots.length === 0) return [];
-    const { station, heightDetermined, scale } = fit;
-    const given = {
-      ...task,
-      shots,
-      station,
-      heightDetermined,
-      scale,
-      crossCovariance: crossCovariances(fit),
-      tolerance: limits.residual,
-    };
-    return [{ purpose, targets: checkDifferences(given) }];
+    const targets = compare(
+      fit,
+      task.shots.filter((shot) => shot.purpose === purpose),
+      task,
+    );
+    return targets.length === 0 ? [] : [{ purpose, targets }];
   });
-  const differences = latestOf(checks.flatMap(({ targets }) => targets));
+  const { later = [] } = task;
+  const laterChecks = later.map((shots) => compare(fit, shots, task));
+  const differences = latestOf([...checks.map(({ targets }) => targets), ...laterChecks]);
+  const unused = quarantinedIn([...task.shots, ...later.flat()], control);
   const result: SetupResult = {
     ...judgeSetup(fit, limits, differences, work),
-    notes: [...task.notes, ...notesOf(fit, leftOut, differences, limits)],
+    notes: [...task.notes, ...notesOf(fit, unused, differences, limits)],
     station: { ...fit.station, covariance: Array.from(fit.station.covariance) },
     heightDetermined: fit.heightDetermined,
     converged: fit.converged,
@@ -69,8 +73,9 @@ export function computeSetup(task: SetupTask): { result: SetupResult; checks: Ow
     limits,
     geometry: fit.geometry,
     faceErrors: fit.faceErrors,
+    explanations: fit.explanations,
     marks: fit.marks.map(keepMark),
-    leftOut: leftOut.map((name) => {
+    leftOut: quarantinedIn(orienting, control).map((name) => {
       const { version, easting, northing, elevation } = control.get(name)!;
       const shots = orienting.flatMap((shot) => (shot.target === name ? shot.id : []));
       return { name, version, published: { easting, northing, elevation }, shots };
@@ -79,41 +84,64 @@ export function computeSetup(task: SetupTask): { result: SetupResult; checks: Ow
     surroundings,
     ppm,
   };
-  return { result, checks };
+  return { result, checks, later: laterChecks };
 }
 
 /**
  * A kept setup judged again with check shots that came later. The check on each mark that was observed last counts,
  * in whatever order they came in.
  *
- * @param earlier differences of the checks observed before these shots, oldest first
- * @param later those of checks observed after them, sent in before
+ * @param earlier differences of each check observed before these shots, oldest first
+ * @param later those of each check observed after them, sent in before
  */
 export function judgeWithCheck(
   result: SetupResult,
   shots: readonly Shot[],
   control: ReadonlyMap<string, ControlMark>,
-  earlier: readonly CheckDifference[],
-  later: readonly CheckDifference[],
+  earlier: readonly CheckDifference[][],
+  later: readonly CheckDifference[][],
 ): { result: SetupResult; check: CheckResult } {
   const fit = fitOf(result);
-  const targets = checkDifferences({
-    shots: shots.filter((shot) => control.get(shot.target)?.status !== 'quarantined'),
+  const targets = compare(fit, shots, { ...result, control });
+  const judged = judgeSetup(fit, result.limits, latestOf([...earlier, targets, ...later]), result.work);
+  const noted = result.notes.flatMap((note) => (note.code === 'mark_quarantined' ? note.target : []));
+  const unused = quarantinedIn(shots, control).filter((target) => !noted.includes(target));
+  const notes = [
+    ...result.notes,
+    ...unused.map((target): SetupNote => ({ code: 'mark_quarantined', target })),
+  ];
+  return {
+    result: { ...result, ...judged, notes },
+    check: { targets, tolerance: result.limits.residual, verdict: judged.verdict },
+  };
+}
+
+/** Differences of check shots against a fit; shots to quarantined marks take no part. */
+function compare(
+  fit: StationFit,
+  shots: readonly Shot[],
+  { control, accuracy, surroundings, ppm, limits }: Omit<SetupTask, 'shots' | 'later' | 'notes'>,
+): CheckDifference[] {
+  return checkDifferences({
+    shots: shots.filter((shot) => !isQuarantined(shot, control)),
     control,
     station: fit.station,
     heightDetermined: fit.heightDetermined,
     scale: fit.scale,
     crossCovariance: crossCovariances(fit),
-    accuracy: result.accuracy,
-    surroundings: result.surroundings,
-    ppm: result.ppm,
-    tolerance: result.limits.residual,
+    accuracy,
+    surroundings,
+    ppm,
+    tolerance: limits.residual,
   });
-  const judged = judgeSetup(fit, result.limits, latestOf([...earlier, ...targets, ...later]), result.work);
-  return {
-    result: { ...result, ...judged },
-    check: { targets, tolerance: result.limits.residual, verdict: judged.verdict },
-  };
+}
+
+function isQuarantined({ target }: Shot, control: ReadonlyMap<string, ControlMark>): boolean {
+  return control.get(target)?.status === 'quarantined';
+}
+
+function quarantinedIn(shots: readonly Shot[], control: ReadonlyMap<string, ControlMark>): string[] {
+  return [...new Set(shots.filter((shot) => isQuarantined(shot, control)).map(({ target }) => target))];
 }
 
 /** Whether a check confirms the setup in all that it could show. */
@@ -124,9 +152,23 @@ export function isAgreed(targets: readonly CheckDifference[]): boolean {
   );
 }
 
-/** The latest difference on each mark. */
-function latestOf(differences: readonly CheckDifference[]): CheckDifference[] {
-  return [...new Map(differences.map((difference) => [difference.target, difference])).values()];
+/** Of each mark, all differences of the check that shot it last: two erections in one check both count. */
+function latestOf(checks: readonly (readonly CheckDifference[])[]): CheckDifference[] {
+  const latest = new Map<string, CheckDifference[]>();
+  for (const targets of checks) {
+    for (const [target, own] of byMark(targets)) latest.set(target, own);
+  }
+  return [...latest.values()].flat();
+}
+
+function byMark(differences: readonly CheckDifference[]): Map<string, CheckDifference[]> {
+  const marks = new Map<string, CheckDifference[]>();
+  for (const difference of differences) {
+    const own = marks.get(difference.target);
+    if (own) own.push(difference);
+    else marks.set(difference.target, [difference]);
+  }
+  return marks;
 }
 
 function crossCovariances(fit: StationFit): Map<string, Float64Array> {
@@ -135,14 +177,14 @@ function crossCovariances(fit: StationFit): Map<string, Float64Array> {
 
 function notesOf(
   fit: StationFit,
-  leftOut: readonly string[],
+  unused: readonly string[],
   checks: readonly CheckDifference[],
   limits: SetupLimits,
 ): SetupNote[] {
   const notes: SetupNote[] = [];
   for (const mark of fit.marks)
     if (mark.status === 'suspect') notes.push({ code: 'mark_suspect', target: mark.name });
-  for (const target of leftOut) notes.push({ code: 'mark_quarantined', target });
+  for (const target of unused) notes.push({ code: 'mark_quarantined', target });
   if (fit.test.low) notes.push({ code: 'spread_small', value: fit.test.sigma0 });
   if (fit.scale !== 1) notes.push({ code: 'spread_scaled', value: fit.scale });
   if (!fit.geometry.inside) notes.push({ code: 'outside_control' });

@@ -43,17 +43,23 @@ export function forceFault(
   turns: readonly Turn[],
   at: string,
 ): ForceFault | null {
-  if (setup.state === 'superseded') return 'setup_superseded';
-  if (setup.verdict === 'fail') return 'setup_failed_since';
+  const fault = voidedBy(setup);
+  if (fault) return fault;
   const instant = new Date(at);
   const before = turns.filter(({ action, effectiveAt }) => {
     const slack = action === 'release' ? CLOCK_SLACK_MS : 0;
     return new Date(effectiveAt).getTime() <= instant.getTime() + slack;
   });
-  const last = before.at(-1);
-  const inForce =
-    last?.action === 'release' && last.validUntil !== null && instant < new Date(last.validUntil);
+  // A second release, to another machine or for a shorter time, does not end the first.
+  const standing = before.slice(before.map(({ action }) => action).lastIndexOf('withdraw') + 1);
+  const inForce = standing.some(({ validUntil }) => validUntil !== null && instant < new Date(validUntil));
   return inForce ? null : 'setup_not_in_force';
+}
+
+/** Why all that was ever shot from a setup is void, in force then or not. Null where it stands. */
+export function voidedBy({ state, verdict }: Pick<SetupRow, 'state' | 'verdict'>): ForceFault | null {
+  if (state === 'superseded') return 'setup_superseded';
+  return verdict === 'fail' ? 'setup_failed_since' : null;
 }
 
 /** Whether a setup guided a machine on a layer: then it does not check that machine's work independently. */

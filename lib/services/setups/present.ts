@@ -1,11 +1,19 @@
 import type * as z from 'zod';
+import type { Explanation } from '@/lib/compute/survey/explain';
 import { toArcseconds, toAzimuth, toDegrees } from '@/lib/compute/units/convert';
 import type { Lengths } from '@/lib/services/lengths';
-import { asMoment } from '@/lib/services/moments';
-import type { Setup, SetupCheck, SetupStatus, SetupTarget } from '@/openapi/schemas/setup';
+import { asMoment, asMomentOrNull } from '@/lib/services/moments';
+import type {
+  Setup,
+  SetupCheck,
+  Explanation as SetupExplanation,
+  SetupStatus,
+  SetupTarget,
+} from '@/openapi/schemas/setup';
+import { wordsOfExplanation } from './explanationWords';
 import type { CheckRow, LoadedSetup, ReleaseRow, SetupRow } from './load';
 import type { KeptMark, SetupResult } from './result';
-import { RELEASE_CAUTIONS, radioOfSetup, wordsOfNote, wordsOfReason } from './words';
+import { RELEASE_CAUTIONS, radioOfSetup, wordsOfNote, wordsOfReasons } from './words';
 
 /** The state of a setup now: expiry is derived, never stored. */
 export function statusOf(
@@ -38,9 +46,17 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
     status,
     verdict: result.verdict,
     verdicts: result.verdicts,
-    reasons: result.reasons.map((reason) => wordsOfReason(reason, length)),
+    reasons: wordsOfReasons(result.reasons, result.explanations, length),
     notes: result.notes.map((note) => wordsOfNote(note, length)),
-    radio: radioOfSetup(setup.station, result.verdict, result.reasons, setup.toleranceClass, status, length),
+    radio: radioOfSetup(
+      setup.station,
+      result.verdict,
+      result.reasons,
+      result.explanations,
+      setup.toleranceClass,
+      status,
+      length,
+    ),
     cautions: [...RELEASE_CAUTIONS],
     units: { length: length.unit, angle: 'deg' },
     position: {
@@ -109,9 +125,10 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
       ...presentedChecks.filter((check) => check.clientId === null).flatMap(targetsOfCheck),
     ],
     checks: presentedChecks,
-    explanations: [],
+    explanations: result.explanations.map((explanation) => presentExplanation(explanation, length)),
     identification: null,
     release: release && presentRelease(release, length),
+    validUntil: asMomentOrNull(setup.validUntil),
     supersedes: setup.supersedesId,
     supersededBy: setup.supersededById,
     excluded: setup.excluded,
@@ -125,6 +142,20 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
       control: [...result.marks, ...result.leftOut].map(({ name, version }) => ({ name, version })),
       computedAt: asMoment(row.computedAt),
     },
+  };
+}
+
+function presentExplanation(explanation: Explanation, length: Lengths): z.output<typeof SetupExplanation> {
+  const { size, unit, text, confirm } = wordsOfExplanation(explanation, length);
+  const { fault, subject, weight } = explanation;
+  return {
+    fault,
+    subject: subject.length > 0 ? subject.join(', ') : null,
+    size,
+    unit,
+    weight,
+    text,
+    confirm,
   };
 }
 
@@ -244,6 +275,7 @@ export function presentCheck(row: CheckRow, length: Lengths): z.output<typeof Se
       vertical: t.vertical,
     })),
     setupVerdict: result.verdict,
+    carriedFrom: row.carriedFromId,
     units: { length: length.unit },
   };
 }

@@ -1,9 +1,9 @@
-import { and, asc, eq, isNull, sql } from 'drizzle-orm';
+import { and, eq, sql } from 'drizzle-orm';
 import { bulkInsert } from '@/db/bulk';
-import { observations, setupChecks, setupResults, setups, toleranceClasses } from '@/db/schema';
+import { setupChecks, setupResults, setups, toleranceClasses } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
-import type { Shot } from '@/lib/compute/survey/shots';
-import { StationError } from '@/lib/compute/survey/stationFit';
+import type { CheckDifference } from '@/lib/compute/survey/checkShots';
+import { StationError } from '@/lib/compute/survey/stationAdjustment';
 import { invalid, invalidItems, Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { asMark, byNames, currentControl } from '@/lib/services/control/load';
@@ -15,6 +15,7 @@ import type * as contract from '@/openapi/contracts/setups';
 import { problemItem } from '@/openapi/problemItem';
 import { computeSetup, isAgreed } from './compute';
 import { type CheckRow, type LoadedSetup, loadSetup, type SetupRow } from './load';
+import { type LaterCheck, loadObserved } from './observed';
 import { presentSetup } from './present';
 import { METHOD, METHOD_VERSION } from './result';
 
@@ -22,7 +23,10 @@ type Refit = typeof contract.refitSetup;
 
 const insert = bulkInsert({ setups, setupResults, setupChecks });
 
-/** Computes a setup anew without some of its shots; the new one supersedes, what was left out stays visible. */
+/**
+ * Computes a setup anew without some of its shots; the new one supersedes, what was left out stays visible. The checks
+ * that came later judge the new fit too: a refit does not talk them away.
+ */
 export async function refitSetup(
   context: VerbContext,
   { params, query, body }: { params: ParamsOf<Refit>; query: QueryOf<Refit>; body: JsonOf<Refit> },
@@ -34,12 +38,15 @@ export async function refitSetup(
   if (before.setup.state === 'superseded') {
     throw new Problem('conflict', 'This setup was refitted before: refit its successor.');
   }
-  const shots = await loadShots(context, before.setup);
-  const unknown = body.exclude.flatMap((id, i) =>
-    shots.some((shot) => shot.id === id)
-      ? []
-      : [problemItem(`/exclude/${i}`, 'shot_unknown', `The setup has no shot ${id}.`)],
-  );
+  const { shots, later } = await loadObserved(tenant, before.setup);
+  const unknown = body.exclude.flatMap((id, i) => {
+    if (shots.some((shot) => shot.id === id)) return [];
+    const owner = later.find((one) => one.shots.some((shot) => shot.id === id));
+    const detail = owner
+      ? `${id} belongs to the check ${owner.check.clientId}, which a newer check answers, not a refit.`
+      : `The setup has no shot ${id}.`;
+    return [problemItem(`/exclude/${i}`, 'shot_unknown', detail)];
+  });
   if (unknown.length > 0) throw invalidItems(unknown);
   const excluded = [
     ...before.setup.excluded,
@@ -48,13 +55,14 @@ export async function refitSetup(
       .map((shot) => ({ shot, reason: body.reason })),
   ];
   const kept = shots.filter((shot) => !excluded.some((out) => out.shot === shot.id));
-  const names = [...new Set(shots.map((shot) => shot.target))];
+  const names = [...new Set([...shots, ...later.flatMap((one) => one.shots)].map((shot) => shot.target))];
   const marks = await currentControl(tenant, organizationId, project.id, byNames(names));
   const { result: earlier } = before.result;
   let computed: ReturnType<typeof computeSetup>;
   try {
     computed = computeSetup({
       shots: kept,
+      later: later.map((one) => one.shots),
       control: new Map(marks.map((row) => [row.point.name, asMark(row)])),
       accuracy: earlier.accuracy,
       surroundings: earlier.surroundings,
@@ -66,7 +74,7 @@ export async function refitSetup(
     if (!(error instanceof StationError)) throw error;
     throw invalid('/exclude', 'setup_not_computable', 'What is left does not determine a station.');
   }
-  const made = await write(context, before.setup, computed, excluded);
+  const made = await write(context, before.setup, computed, later, excluded);
   record(context, caller, {
     type: 'setup.refitted',
     subject: made.setup.id,
@@ -88,42 +96,6 @@ const ASSUMED = new Set([
   'control_sigma_default',
   'compensator_off',
 ]);
-
-/** The shots of the setup itself; those of later checks belong to the checks. */
-async function loadShots({ tenant, caller }: VerbContext, setup: SetupRow): Promise<Shot[]> {
-  const rows = await tenant.db
-    .select()
-    .from(observations)
-    .where(
-      and(
-        eq(observations.organizationId, caller.organizationId),
-        eq(observations.setupId, setup.rootId),
-        isNull(observations.checkId),
-      ),
-    )
-    .orderBy(asc(observations.seq));
-  return rows.map((row) => ({
-    id: row.clientId,
-    target: row.target,
-    purpose: row.purpose,
-    face: row.face,
-    set: row.set,
-    direction: row.direction,
-    zenith: row.zenith,
-    distance:
-      row.slopeDistance === null
-        ? null
-        : {
-            slopeDistance: row.slopeDistance,
-            prismConstantMm: row.prismConstantMm ?? 0,
-            prismConstantAppliedMm: row.prismConstantAppliedMm ?? 0,
-            appliedPpm: row.appliedPpm ?? 0,
-          },
-    targetHeight: row.targetHeight,
-    targetCentringSigma: row.targetCentringSigma,
-    targetHeightSigma: row.targetHeightSigma,
-  }));
-}
 
 /** The limits of the setup's class as they are now; as they were where the class is gone. */
 async function currentLimits({ tenant, caller }: VerbContext, { setup, result }: LoadedSetup) {
@@ -148,7 +120,8 @@ async function currentLimits({ tenant, caller }: VerbContext, { setup, result }:
 async function write(
   { tenant, caller, runtime }: VerbContext,
   before: SetupRow,
-  { result, checks }: ReturnType<typeof computeSetup>,
+  { result, checks, later }: ReturnType<typeof computeSetup>,
+  carried: readonly LaterCheck[],
   excluded: SetupRow['excluded'],
 ): Promise<LoadedSetup> {
   const { organizationId } = caller;
@@ -180,21 +153,28 @@ async function write(
     result,
     computedAt: now,
   };
-  const checkRows = checks.map(
-    ({ purpose, targets }): CheckRow => ({
-      organizationId,
-      id: runtime.uuid(),
-      projectId: setup.projectId,
-      setupId: id,
-      uploadId: setup.uploadId,
-      clientId: null,
-      purpose,
-      agreed: isAgreed(targets),
-      result: { targets, tolerance: result.limits.residual, verdict: result.verdict },
-      observedAt: setup.observedAt,
-      resultVersion: 1,
+  type Origin = Pick<CheckRow, 'uploadId' | 'clientId' | 'purpose' | 'observedAt' | 'carriedFromId'>;
+  const judged = (origin: Origin, targets: CheckDifference[]): CheckRow => ({
+    ...origin,
+    organizationId,
+    id: runtime.uuid(),
+    projectId: setup.projectId,
+    setupId: id,
+    agreed: isAgreed(targets),
+    result: { targets, tolerance: result.limits.residual, verdict: result.verdict },
+    resultVersion: 1,
+  });
+  const { uploadId, observedAt } = setup;
+  const own = { uploadId, observedAt, clientId: null, carriedFromId: null };
+  const checkRows = [
+    ...checks.map(({ purpose, targets }) => judged({ ...own, purpose }, targets)),
+    ...carried.flatMap(({ check }, i) => {
+      const { uploadId, clientId, purpose, observedAt } = check;
+      const origin = { uploadId, clientId, purpose, observedAt, carriedFromId: check.id };
+      // Its marks may be quarantined by now: then it says nothing any more.
+      return later[i].length === 0 ? [] : judged(origin, later[i]);
     }),
-  );
+  ];
   await insert(tenant, { setups: [setup], setupResults: [resultRow], setupChecks: checkRows });
   await tenant.db
     .update(setups)

@@ -57,7 +57,13 @@ export async function releaseSetup(
     actorName: caller.name,
   };
   await insert(tenant, { setupReleases: [row] });
-  const state = { state: 'released' as const, releasedAt: effectiveAt, validUntil, withdrawnAt: null };
+  const state = {
+    state: 'released' as const,
+    releasedAt: effectiveAt,
+    // An earlier release that runs longer stands.
+    validUntil: later(setup.validUntil, validUntil),
+    withdrawnAt: null,
+  };
   await tenant.db
     .update(setups)
     .set(state)
@@ -70,6 +76,10 @@ export async function releaseSetup(
   });
   const released = { ...loaded, setup: { ...setup, ...state }, release: row };
   return presentSetup(released, new Lengths(query.length ?? project.lengthUnit), now);
+}
+
+function later(known: string | null, instant: string): string {
+  return known !== null && new Date(known) > new Date(instant) ? known : instant;
 }
 
 function requireReleasable(setup: SetupRow, personId: string, note: string | undefined): void {

@@ -1,6 +1,7 @@
 import type { Ellipse } from '@/lib/compute/adjustment/ellipse';
 import type { GlobalTest } from '@/lib/compute/adjustment/globalTest';
 import type { CheckDifference } from '@/lib/compute/survey/checkShots';
+import type { Explanation } from '@/lib/compute/survey/explain';
 import type { FaceErrors } from '@/lib/compute/survey/faces';
 import type { SightGeometry } from '@/lib/compute/survey/geometry';
 import type { InstrumentAccuracy } from '@/lib/compute/survey/instrument';
@@ -11,7 +12,7 @@ import type { WorkAccuracy } from '@/lib/compute/survey/workAccuracy';
 
 /** Name and version of the computation; a change of figures raises the version. */
 export const METHOD = 'free station, least squares';
-export const METHOD_VERSION = '1.0.0';
+export const METHOD_VERSION = '1.1.0';
 
 /** What is worth knowing of a setup, though no verdict hangs on it. */
 export type SetupNote =
@@ -58,6 +59,7 @@ export interface SetupResult extends SetupVerdict {
   limits: SetupLimits;
   geometry: SightGeometry;
   faceErrors: FaceErrors | null;
+  explanations: Explanation[];
   marks: KeptMark[];
   /** Marks that took no part because they are quarantined. */
   leftOut: Pick<FittedMark, 'name' | 'version' | 'published' | 'shots'>[];
@@ -89,8 +91,8 @@ export function keepMark(mark: FittedMark): KeptMark {
 
 /** A kept result in the form that the engine judges again when a check comes in. */
 export function fitOf(result: SetupResult): StationFit {
-  const { station, heightDetermined, converged, iterations, test, scale, ellipse95, geometry, faceErrors } =
-    result;
+  const { station, heightDetermined, converged, iterations, test, scale, ellipse95, geometry } = result;
+  const { faceErrors, explanations } = result;
   return {
     station,
     heightDetermined,
@@ -101,6 +103,7 @@ export function fitOf(result: SetupResult): StationFit {
     ellipse95,
     geometry,
     faceErrors,
+    explanations,
     marks: result.marks.map((mark) => ({
       ...mark,
       stationCovariance: Float64Array.from(mark.stationCovariance),

@@ -1,5 +1,7 @@
+import type { Explanation } from '@/lib/compute/survey/explain';
 import type { Axis, SetupReason, Verdict } from '@/lib/compute/survey/verdict';
 import type { Lengths } from '@/lib/services/lengths';
+import { firstAct } from './explanationWords';
 import type { SetupNote } from './result';
 
 /** A finding in plain words, with what to do next. */
@@ -22,7 +24,7 @@ function fine(length: Lengths, metres: number): string {
 }
 
 /** Why the verdict is what it is. */
-export function wordsOfReason(reason: SetupReason, length: Lengths): Words {
+function wordsOfReason(reason: SetupReason, length: Lengths): Words {
   const { code } = reason;
   switch (code) {
     case 'not_converged':
@@ -96,7 +98,7 @@ export function wordsOfReason(reason: SetupReason, length: Lengths): Words {
     case 'check_wanted':
       return {
         code,
-        text: `The fit is good; an independent check ${axes(reason.axes)} is still wanted: no mark outside the fit was shot.`,
+        text: `An independent check ${axes(reason.axes)} is still wanted: no shot to a trusted mark outside the fit confirms it.`,
         action:
           'Shoot a mark that took no part in the fit, a benchmark for the height, and post it as a setup check.',
       };
@@ -112,6 +114,33 @@ export function wordsOfReason(reason: SetupReason, length: Lengths): Words {
       return { code, text: `Not checked: ${parts.join('; ')}.` };
     }
   }
+}
+
+/** Findings on single shots, which one fault behind them explains better. */
+const SYMPTOMS: ReadonlySet<SetupReason['code']> = new Set([
+  'not_converged',
+  'observation_outlier',
+  'target_residual_over',
+  'spread_too_large',
+]);
+
+/**
+ * All reasons in words. Where one explanation stands out, what to do is said once, with the first symptom: to shoot
+ * every mark again that a wrong prism constant throws out would help nobody.
+ */
+export function wordsOfReasons(
+  reasons: readonly SetupReason[],
+  explanations: readonly Explanation[],
+  length: Lengths,
+): Words[] {
+  const act = firstAct(explanations, length);
+  const first = reasons.find(({ code }) => SYMPTOMS.has(code));
+  return reasons.map((reason) => {
+    const words = wordsOfReason(reason, length);
+    if (act === null || !SYMPTOMS.has(reason.code)) return words;
+    const { code, text } = words;
+    return reason === first ? { code, text, action: act } : { code, text };
+  });
 }
 
 /** What is worth knowing, though no verdict hangs on it. */
@@ -170,6 +199,7 @@ export function radioOfSetup(
   station: string,
   verdict: Verdict,
   reasons: readonly SetupReason[],
+  explanations: readonly Explanation[],
   className: string,
   status: string,
   length: Lengths,
@@ -177,19 +207,22 @@ export function radioOfSetup(
   if (status === 'withdrawn') return `Stop. ${station} is withdrawn. Do not work from it.`;
   if (status === 'superseded') return `Stop. ${station} is superseded. Use the refit.`;
   if (status === 'expired') return `Stop. ${station} has run out. Check it and release it again.`;
-  const [first] = reasons;
+  const act = wordsOfReasons(reasons, explanations, length)[0].action ?? '';
   switch (verdict) {
     case 'pass': {
-      const good = reasons.find((reason) => reason.code === 'within_limits');
-      const figure = good
-        ? `, ${length.text(good.horizontal)} in plan and ${length.text(good.vertical)} in height at ${length.text(good.radius, 0)}`
+      const within = reasons.find((reason) => reason.code === 'within_limits');
+      const figure = within
+        ? `, ${length.text(within.horizontal)} in plan and ${length.text(within.vertical)} in height at ${length.text(within.radius, 0)}`
         : '';
-      return `Go. ${station} is good for ${className}${figure}. Bench the blade before cutting.`;
+      const good = `${station} is good for ${className}${figure}.`;
+      return status === 'released'
+        ? `Go. ${good} Bench the blade before cutting.`
+        : `Wait. ${good} Have it released before anybody works from it.`;
     }
     case 'hold':
-      return `Wait. ${station} is not proven yet. ${wordsOfReason(first, length).action ?? ''}`.trim();
+      return `Wait. ${station} is not proven yet. ${act}`.trim();
     case 'fail':
-      return `Stop. ${station} is not to be used. ${wordsOfReason(first, length).action ?? ''}`.trim();
+      return `Stop. ${station} is not to be used. ${act}`.trim();
   }
 }
 

@@ -1,14 +1,12 @@
 import { benchReading } from '@/lib/compute/grade/benchCheck';
 import { toMetres } from '@/lib/compute/units/convert';
+import { judgeBench, releasedFor } from '@/lib/services/benchChecks/judge';
 import type { CallerContext } from '@/lib/services/context';
-import { isSameOffset } from '@/lib/services/layers/offset';
 import { utcInstant } from '@/lib/services/moments';
-import { forceFault } from '@/lib/services/setups/force';
 import { problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 import type { Document } from './document';
 import { type Draft, findSetup, pointerOf } from './draft';
-import type { BenchRow, SiteSetup } from './site';
 
 type BenchItem = Document['benchChecks'][number];
 
@@ -56,8 +54,8 @@ function draftBench(draft: Draft, context: CallerContext, item: BenchItem, point
       problemItem(`${pointer}/setup`, 'setup_unknown', `There is no setup ${item.setup} in this project.`),
     );
   }
-  const layer = item.layer === undefined ? null : (site.layers.get(item.layer) ?? null);
-  if (item.layer !== undefined && !layer) {
+  const named = item.layer === undefined ? null : (site.layers.get(item.layer) ?? null);
+  if (item.layer !== undefined && !named) {
     problems.push(
       problemItem(`${pointer}/layer`, 'layer_unknown', `There is no layer ${item.layer} in this project.`),
     );
@@ -69,21 +67,15 @@ function draftBench(draft: Draft, context: CallerContext, item: BenchItem, point
   const tolerance = toMetres(item.tolerance, length);
   const activeOffset = item.activeOffset === undefined ? null : toMetres(item.activeOffset, length);
   const reading = benchReading(benchmark.elevation, elevations, tolerance);
-  const holds = [
-    ...unfit(benchmark.name, benchmark.status, setup, observedAt),
-    ...(layer && activeOffset !== null && !isSameOffset(activeOffset, layer.offset)
-      ? ['offset_differs']
-      : []),
-    ...(layer && item.surfaceSha256 !== undefined && item.surfaceSha256 !== layer.surfaceSha256
-      ? ['surface_differs']
-      : []),
-    ...(reading.unsteady ? ['readings_unsteady'] : []),
-  ];
-  const reasons = [
-    ...holds,
-    ...(reading.verdict === 'fail' ? [reading.difference < 0 ? 'edge_low' : 'edge_high'] : []),
-  ];
-  const row: BenchRow = {
+  const layer = named ?? (setup && releasedFor(setup, item.machine, observedAt));
+  const { verdict, reasons } = judgeBench(
+    reading,
+    { name: benchmark.name, elevation: benchmark.elevation, status: benchmark.status },
+    { elevations, tolerance, activeOffset, surfaceSha256: item.surfaceSha256, observedAt },
+    setup,
+    layer,
+  );
+  const row = {
     organizationId: caller.organizationId,
     id: runtime.uuid(),
     projectId: site.project.id,
@@ -105,14 +97,14 @@ function draftBench(draft: Draft, context: CallerContext, item: BenchItem, point
     surfaceSha256: item.surfaceSha256 === undefined ? null : Buffer.from(item.surfaceSha256, 'hex'),
     activeOffset,
     correctionAppliedFor: item.correctionAppliedFor ?? null,
-    verdict: holds.length > 0 ? 'hold' : reading.verdict,
+    verdict,
     reasons,
     observedAt,
   };
-  draft.benchRows.push(row);
+  draft.benchRows.push({ ...row, layerOffset: layer?.offset ?? null });
   draft.rows.benchChecks.push(row);
   site.taken.bench.add(item.clientId);
-  const { machine, edge, verdict, projectId } = row;
+  const { machine, edge, projectId } = row;
   draft.happenings.push({
     type: 'bench.checked',
     subject: row.id,
@@ -120,15 +112,4 @@ function draftBench(draft: Draft, context: CallerContext, item: BenchItem, point
     data: { machine, edge, verdict },
   });
   return [];
-}
-
-/** Why a benchmark or a setup cannot say anything about a blade: then no correction is offered either. */
-function unfit(benchmark: string, status: string, setup: SiteSetup | null, observedAt: string): string[] {
-  const reasons: string[] = [];
-  if (status !== 'trusted') reasons.push('benchmark_not_trusted');
-  if (!setup) return reasons;
-  if (setup.result.marks.some((mark) => mark.name === benchmark)) reasons.push('benchmark_in_fit');
-  const fault = forceFault(setup.setup, setup.releases, observedAt);
-  if (fault) reasons.push(fault);
-  return reasons;
 }

@@ -95,7 +95,8 @@ async function process(
   if (!site) throw new Problem('not_found', 'There is no such project.');
   const length = new Lengths(query.length ?? site.project.lengthUnit);
   if (site.before) {
-    if (site.before.sha256 !== sha256(raw.bytes).toString('hex')) throw new Problem('upload_conflict');
+    const content = read.contentSha256 ?? sha256(raw.bytes);
+    if (site.before.contentSha256 !== content.toString('hex')) throw new Problem('upload_conflict');
     return { status: 200, receipt: await loadReceipt(tenant, site.project, site.before.id, length) };
   }
   const foot = otherFoot(
@@ -121,6 +122,7 @@ async function process(
   const kept = rawAndUpload(context, params.projectId, raw, {
     uploadId: draft.uploadId,
     clientId: document.clientId,
+    contentSha256: read.contentSha256,
     status: 'processed',
     accepted,
     refusals: refused,

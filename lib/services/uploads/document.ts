@@ -1,20 +1,23 @@
 import type * as z from 'zod';
+import { sha256 } from '@/lib/access/secrets';
 import { BodyError, bodyText, type RawBody } from '@/lib/formats/body';
 import { type Itemwise, parseItemwise } from '@/lib/formats/itemwise';
 import { JsonError, parseStrictJson } from '@/lib/formats/strictJson';
 import { Problem } from '@/lib/problem';
-import { UPLOAD_LIMIT } from '@/openapi/contracts/uploads';
 import { UPLOAD_KINDS, UploadDocument } from '@/openapi/schemas/upload';
 import type { Needs } from './site';
 
 export type Document = z.output<typeof UploadDocument>;
-export type ReadDocument = Itemwise<Document>;
+export interface ReadDocument extends Itemwise<Document> {
+  /** SHA-256 of what was in a compressed body; null where it came as it is. */
+  contentSha256: Buffer | null;
+}
 
 /** @throws Problem where the body cannot be read at all */
 export async function readDocument(raw: RawBody): Promise<ReadDocument> {
   if (raw.bytes.byteLength === 0) throw new Problem('body_required');
   try {
-    const text = await bodyText(raw, UPLOAD_LIMIT);
+    const text = await bodyText(raw);
     if (raw.mediaType !== 'application/json') {
       const declared = raw.mediaType === '' ? 'nothing' : raw.mediaType.slice(0, 80);
       throw new BodyError(
@@ -23,7 +26,10 @@ export async function readDocument(raw: RawBody): Promise<ReadDocument> {
       );
     }
     const { value, flaws } = parseStrictJson(text);
-    return parseItemwise(UploadDocument, UPLOAD_KINDS, value, flaws);
+    return {
+      ...parseItemwise(UploadDocument, UPLOAD_KINDS, value, flaws),
+      contentSha256: raw.contentEncoding === null ? null : sha256(await raw.content),
+    };
   } catch (error) {
     if (error instanceof BodyError || error instanceof JsonError)
       throw new Problem(error.code, error.message);

@@ -1,10 +1,11 @@
 import type { InferInsertModel } from 'drizzle-orm';
 import type { benchChecks, gradeChecks, observations, setupChecks, setupResults, setups } from '@/db/schema';
+import type { BenchCheckRow } from '@/lib/services/benchChecks/load';
 import type { Happening } from '@/lib/services/record';
 import type { CheckRow, LoadedSetup, SetupRow } from '@/lib/services/setups/load';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 import type { Document } from './document';
-import type { BenchRow, Site, SiteSetup } from './site';
+import type { Site, SiteSetup } from './site';
 
 type GradeRow = Required<InferInsertModel<typeof gradeChecks>>;
 
@@ -19,7 +20,7 @@ export interface Draft {
   setups: LoadedSetup[];
   checks: CheckRow[];
   gradeRows: GradeRow[];
-  benchRows: BenchRow[];
+  benchRows: BenchCheckRow[];
   rows: {
     setups: InferInsertModel<typeof setups>[];
     setupResults: InferInsertModel<typeof setupResults>[];

@@ -9,9 +9,10 @@ import type { Problem } from '@/lib/problem';
 import type { CallerContext } from '@/lib/services/context';
 import { loadProject } from '@/lib/services/projects/load';
 import { record } from '@/lib/services/record';
+import { refusedItems } from '@/lib/services/refusedItems';
 import { problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
-import { type RawFacts, refusedItems, type UploadRow } from './present';
+import type { RawFacts, UploadRow } from './present';
 
 /** Rows of a body and its upload, for whichever transaction keeps them. */
 export function rawAndUpload(
@@ -21,6 +22,7 @@ export function rawAndUpload(
   given: {
     uploadId: string;
     clientId: string | null;
+    contentSha256: Buffer | null;
     status: UploadRow['status'];
     accepted: number;
     refusals: readonly ProblemItem[];
@@ -47,13 +49,13 @@ export function rawAndUpload(
     status: given.status,
     rawBodyId: facts.id,
     accepted: given.accepted,
-    refused: refusedItems(given.refusals.map(({ pointer }) => pointer)),
+    refused: refusedItems(given.refusals),
     actorKind: caller.kind,
     actorId: callerId(caller),
     actorName: caller.name,
     receivedAt,
   };
-  return { rawRow: { ...kept, bytes }, facts, uploadRow };
+  return { rawRow: { ...kept, contentSha256: given.contentSha256, bytes }, facts, uploadRow };
 }
 
 export function refusalRows(organizationId: string, uploadId: string, refusals: readonly ProblemItem[]) {
@@ -79,6 +81,7 @@ export async function keepRefused(
   const { rawRow, uploadRow } = rawAndUpload(context, projectId, raw, {
     uploadId,
     clientId,
+    contentSha256: null,
     status: 'refused',
     accepted: 0,
     refusals,

@@ -7,7 +7,7 @@ import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/uploads';
 import { presentUpload } from './present';
 
-/** A raw body without its bytes. */
+/** What a receipt tells of a raw body. */
 export const RAW_FACTS = {
   organizationId: rawBodies.organizationId,
   id: rawBodies.id,

@@ -5,8 +5,8 @@ import { asMoment } from '@/lib/services/moments';
 import type { Upload } from '@/openapi/schemas/upload';
 
 export type UploadRow = InferSelectModel<typeof uploads>;
-/** A raw body without its bytes. */
-export type RawFacts = Omit<InferSelectModel<typeof rawBodies>, 'bytes'> & { size: number };
+/** What a receipt tells of a raw body. */
+export type RawFacts = Omit<InferSelectModel<typeof rawBodies>, 'bytes' | 'contentSha256'> & { size: number };
 
 export function presentUpload(row: UploadRow, raw: RawFacts): z.output<typeof Upload> {
   return {
@@ -21,9 +21,4 @@ export function presentUpload(row: UploadRow, raw: RawFacts): z.output<typeof Up
     sender: row.actorName,
     counts: { accepted: row.accepted, refused: row.refused },
   };
-}
-
-/** Items that were refused, counted once each however much was wrong with them. */
-export function refusedItems(pointers: readonly string[]): number {
-  return new Set(pointers.map((pointer) => pointer.split('/').slice(0, 3).join('/'))).size;
 }

@@ -1,4 +1,4 @@
-import { and, asc, eq, sql } from 'drizzle-orm';
+import { and, asc, eq, isNull, sql } from 'drizzle-orm';
 import type * as z from 'zod';
 import {
   benchChecks,
@@ -11,6 +11,7 @@ import {
 } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
 import { Problem } from '@/lib/problem';
+import { type BenchCheckRow, selectBenchChecks } from '@/lib/services/benchChecks/load';
 import { presentBenchCheck } from '@/lib/services/benchChecks/present';
 import { type GradeRow, presentGradeCheck } from '@/lib/services/gradeChecks/present';
 import { type LayerFacts, layerFacts } from '@/lib/services/layers/facts';
@@ -22,7 +23,6 @@ import type { ProblemItem } from '@/openapi/schemas/problem';
 import type { Receipt } from '@/openapi/schemas/upload';
 import { RAW_FACTS } from './list';
 import { presentUpload, type RawFacts, type UploadRow } from './present';
-import type { BenchRow } from './site';
 
 /** All that an upload became. */
 export interface ReceiptParts {
@@ -32,7 +32,7 @@ export interface ReceiptParts {
   setups: readonly LoadedSetup[];
   checks: readonly CheckRow[];
   grade: readonly GradeRow[];
-  bench: readonly BenchRow[];
+  bench: readonly BenchCheckRow[];
 }
 
 export function presentReceipt(
@@ -44,7 +44,7 @@ export function presentReceipt(
   // As it was first answered: whatever was released, withdrawn or superseded since belongs to the setups themselves.
   const fresh = (loaded: LoadedSetup): LoadedSetup => ({
     ...loaded,
-    setup: { ...loaded.setup, state: 'computed', supersededById: null },
+    setup: { ...loaded.setup, state: 'computed', validUntil: null, supersededById: null },
     release: null,
   });
   const then = new Date(0);
@@ -113,6 +113,7 @@ export async function loadReceipt(
           eq(setupChecks.organizationId, organizationId),
           eq(setupChecks.uploadId, uploadId),
           sql`${setupChecks.clientId} is not null`,
+          isNull(setupChecks.carriedFromId),
         ),
       )
       .orderBy(asc(setupChecks.id))
@@ -123,10 +124,10 @@ export async function loadReceipt(
       .where(and(eq(gradeChecks.organizationId, organizationId), eq(gradeChecks.uploadId, uploadId)))
       .orderBy(asc(gradeChecks.id))
       .execute(),
-    tenant.db
-      .select()
-      .from(benchChecks)
-      .where(and(eq(benchChecks.organizationId, organizationId), eq(benchChecks.uploadId, uploadId)))
+    selectBenchChecks(
+      tenant,
+      and(eq(benchChecks.organizationId, organizationId), eq(benchChecks.uploadId, uploadId)),
+    )
       .orderBy(asc(benchChecks.id))
       .execute(),
   ]);

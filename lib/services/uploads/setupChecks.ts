@@ -13,7 +13,9 @@ import {
   type NormalShot,
   normaliseShots,
   observationRow,
+  pointerIn,
 } from './shotsOfSetup';
+import type { Site } from './site';
 
 type CheckItem = Document['setupChecks'][number];
 
@@ -43,17 +45,19 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
     ];
   const { setup, result, checks } = found;
   const ids = new Set(found.shotIds);
-  const { shots, problems } = normaliseShots(item.shots, document.units, site, pointer, ids);
-  const at = (shot: NormalShot) =>
-    `${pointer}/shots/${item.shots.findIndex((s) => s.clientId === shot.sent.clientId)}`;
+  // They are the check's, whatever they say of themselves.
+  const sent = item.shots.map((shot) => ({ ...shot, purpose: item.purpose }));
+  const { shots, problems } = normaliseShots(sent, document.units, site, pointer, ids);
+  const at = pointerIn(pointer, item.shots);
   problems.push(...incompleteChecks(shots, at));
+  if (problems.length === 0) problems.push(...unusable(shots, site, `${pointer}/shots`));
   if (problems.length > 0) return problems;
 
   const observedAt =
     item.observedAt === undefined ? runtime.now().toISOString() : utcInstant(item.observedAt);
   const before = checks.filter((check) => new Date(check.observedAt) <= new Date(observedAt));
   const after = checks.filter((check) => !before.includes(check));
-  const [earlier, later] = [before, after].map((some) => some.flatMap((check) => check.result.targets));
+  const [earlier, later] = [before, after].map((some) => some.map((check) => check.result.targets));
   const judged = judgeWithCheck(result, shots.map(asEngineShot), site.control, earlier, later);
   const resultVersion = setup.resultVersion + 1;
   const check: CheckRow = {
@@ -68,6 +72,7 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
     result: judged.check,
     observedAt,
     resultVersion,
+    carriedFromId: null,
   };
   rows.setupChecks.push(check);
   draft.checks.push(check);
@@ -107,4 +112,12 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
     data: { station: setup.station, agreed: check.agreed, verdict: judged.result.verdict },
   });
   return [];
+}
+
+/** A check says something by one mark at least that may be used. */
+function unusable(shots: readonly NormalShot[], site: Site, pointer: string): ProblemItem[] {
+  const names = [...new Set(shots.map(({ sent }) => sent.target))];
+  if (names.some((name) => site.control.get(name)?.status !== 'quarantined')) return [];
+  const detail = `${names.join(', ')}: quarantined, and no other mark was shot.`;
+  return [problemItem(pointer, 'target_quarantined', detail)];
 }

@@ -1,4 +1,4 @@
-import { StationError } from '@/lib/compute/survey/stationFit';
+import { StationError } from '@/lib/compute/survey/stationAdjustment';
 import { toMetres } from '@/lib/compute/units/convert';
 import type { CallerContext } from '@/lib/services/context';
 import { utcInstant } from '@/lib/services/moments';
@@ -17,6 +17,7 @@ import {
   type NormalShot,
   normaliseShots,
   observationRow,
+  pointerIn,
 } from './shotsOfSetup';
 import type { Site, SiteClass, SiteInstrument } from './site';
 
@@ -48,8 +49,7 @@ function draftSetup(draft: Draft, context: CallerContext, item: SetupItem, point
     targets,
     pointer,
   );
-  const at = (shot: NormalShot) =>
-    `${pointer}/shots/${item.shots.findIndex((s) => s.clientId === shot.sent.clientId)}`;
+  const at = pointerIn(pointer, item.shots);
   const checking = shots.filter(({ sent }) => sent.purpose !== 'orient');
   const problems = [...known.problems, ...airProblems, ...shotProblems, ...incompleteChecks(checking, at)];
   const { instrument, limits } = known;
@@ -71,15 +71,16 @@ function draftSetup(draft: Draft, context: CallerContext, item: SetupItem, point
     return [];
   } catch (error) {
     if (!(error instanceof StationError)) throw error;
-    return [problemItem(`${pointer}/shots`, 'setup_not_computable', wordsOfStationError(error))];
+    return [problemItem(`${pointer}/shots`, 'setup_not_computable', STATION_ERRORS[error.code])];
   }
 }
 
-function wordsOfStationError({ code }: StationError): string {
-  return code === 'too_few_sights'
-    ? 'Fewer than two marks carry both a direction and a distance, or they stand at one place.'
-    : 'The shots leave the station undetermined.';
-}
+const STATION_ERRORS: Record<StationError['code'], string> = {
+  too_few_sights: 'Fewer than two marks carry both a direction and a distance, or they stand at one place.',
+  zenith_wanted:
+    'Distances without a zenith angle cannot be brought to the horizontal: too few marks have both, and no zenith angle tells how high the instrument stands.',
+  not_determined: 'The shots leave the station undetermined.',
+};
 
 function knownParts(site: Site, item: SetupItem, pointer: string) {
   const problems: ProblemItem[] = [];
@@ -89,6 +90,16 @@ function knownParts(site: Site, item: SetupItem, pointer: string) {
         `${pointer}/method`,
         'method_not_supported',
         `Setups by ${item.method} are not computed yet.`,
+      ),
+    );
+  }
+  if (item.method === 'resection' && item.stationPoint !== undefined) {
+    problems.push(
+      problemItem(
+        `${pointer}/stationPoint`,
+        'mutually_exclusive',
+        'stationPoint and method resection: a resection finds its station from the targets.',
+        'Leave stationPoint out; it belongs to a backsight.',
       ),
     );
   }
@@ -207,6 +218,7 @@ function accept(draft: Draft, context: CallerContext, item: SetupItem, parts: Co
       result: kept,
       observedAt: setup.observedAt,
       resultVersion: 1,
+      carriedFromId: null,
     };
   });
   const loaded: LoadedSetup = { setup, result: resultRow, checks, release: null };

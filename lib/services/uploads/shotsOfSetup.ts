@@ -49,7 +49,28 @@ export function normaliseShots(
     if (Array.isArray(readings)) problems.push(...readings);
     else if (target !== null) normal.push({ sent: { ...shot, target }, readings });
   });
+  problems.push(...mixedSigmas(normal, pointerIn(pointer, shots)));
   return { shots: normal, problems: once(problems) };
+}
+
+/** The pointers of an item's shots, by their client ids. */
+export function pointerIn(pointer: string, shots: readonly Shot[]): (shot: NormalShot) => string {
+  return ({ sent }) => `${pointer}/shots/${shots.findIndex((shot) => shot.clientId === sent.clientId)}`;
+}
+
+const SIGMAS = ['targetCentringSigma', 'targetHeightSigma'] as const;
+
+/** Centring and height of one erection are one error in all its shots: they have one σ, stated in all or in none. */
+function mixedSigmas(shots: readonly NormalShot[], pointers: (shot: NormalShot) => string): ProblemItem[] {
+  return byErection(shots).flatMap(([first, ...others]) =>
+    others.flatMap((shot) =>
+      SIGMAS.filter((field) => shot.readings[field] !== first.readings[field]).map((field) => {
+        const { clientId, target } = shot.sent;
+        const detail = `${clientId} and ${first.sent.clientId} stand on ${target} alike, with another ${field}Mm.`;
+        return problemItem(`${pointers(shot)}/${field}Mm`, 'sigma_conflict', detail);
+      }),
+    ),
+  );
 }
 
 /** The same finding at the same place, such as a missing unit, is told once. */
@@ -109,21 +130,35 @@ export function observationRow(
   };
 }
 
-/** A check needs direction, zenith angle and distance to each of its targets, in whatever faces. */
+/** A check needs direction, zenith angle and distance to each reflector as it stood, in whatever faces. */
 export function incompleteChecks(
   shots: readonly NormalShot[],
   pointers: (shot: NormalShot) => string,
 ): ProblemItem[] {
-  const byTarget = new Map<string, NormalShot[]>();
-  for (const shot of shots) {
-    byTarget.set(shot.sent.target, [...(byTarget.get(shot.sent.target) ?? []), shot]);
-  }
-  return [...byTarget.values()].flatMap((group) => {
+  return byErection(shots).flatMap((group) => {
     const has = (pick: (readings: Readings) => unknown) =>
       group.some(({ readings }) => pick(readings) !== null);
     const complete = has((r) => r.direction) && has((r) => r.zenith) && has((r) => r.distance);
     if (complete) return [];
-    const detail = `The check of ${group[0].sent.target} lacks a direction, a zenith angle or a distance.`;
+    const { target } = group[0].sent;
+    const heights = new Set(
+      shots.flatMap(({ sent, readings }) => (sent.target === target ? readings.targetHeight : [])),
+    );
+    const standing = heights.size > 1 ? ', at one target height,' : '';
+    const detail = `The check of ${target}${standing} lacks a direction, a zenith angle or a distance.`;
     return [problemItem(pointers(group[0]), 'reading_incomplete', detail)];
   });
+}
+
+/** Shots by the reflector as it stood: for one purpose, one mark at one target height, as the engine takes it. */
+function byErection(shots: readonly NormalShot[]): NormalShot[][] {
+  const erections = new Map<string, NormalShot[]>();
+  for (const shot of shots) {
+    const { purpose, target } = shot.sent;
+    const key = `${purpose}\n${target}\n${shot.readings.targetHeight}`;
+    const own = erections.get(key);
+    if (own) own.push(shot);
+    else erections.set(key, [shot]);
+  }
+  return [...erections.values()];
 }

@@ -1,5 +1,5 @@
 import type { InferSelectModel } from 'drizzle-orm';
-import type { benchChecks, projects, setupReleases } from '@/db/schema';
+import type { projects, setupReleases } from '@/db/schema';
 import type { NamedStatement, Tenant } from '@/db/tenant';
 import type { InstrumentAccuracy } from '@/lib/compute/survey/instrument';
 import type { ControlMark } from '@/lib/compute/survey/shots';
@@ -42,16 +42,18 @@ export interface SiteLayer {
   surfaceSha256: string;
 }
 
+type SiteRelease = Pick<
+  InferSelectModel<typeof setupReleases>,
+  'seq' | 'action' | 'machine' | 'layerName' | 'layerVersion' | 'offset' | 'effectiveAt' | 'validUntil'
+> & { surfaceSha256: string | null };
+
 export interface SiteSetup {
   setup: SetupRow;
   result: SetupResult;
   checks: CheckRow[];
   /** Client ids of the shots that it has already. */
   shotIds: string[];
-  releases: Pick<
-    InferSelectModel<typeof setupReleases>,
-    'seq' | 'action' | 'machine' | 'layerName' | 'effectiveAt' | 'validUntil'
-  >[];
+  releases: SiteRelease[];
 }
 
 export interface SiteClass extends SetupLimits {
@@ -63,15 +65,13 @@ export interface Site {
   project: InferSelectModel<typeof projects>;
   classes: SiteClass[];
   /** The processed upload of the same clientId, if there is one. */
-  before: { id: string; sha256: string } | null;
+  before: { id: string; contentSha256: string } | null;
   control: Map<string, ControlMark & { sigmaStated: boolean }>;
   instruments: Map<string, SiteInstrument>;
   layers: Map<string, SiteLayer>;
   setups: SiteSetup[];
   taken: { setups: Set<string>; checks: Set<string>; grade: Set<string>; bench: Set<string> };
 }
-
-export type BenchRow = InferSelectModel<typeof benchChecks>;
 
 /** The transaction's own organization: an upload is looked up before its sender is known by name. */
 const TENANT = `(select nullif(current_setting('app.organization_id', true), '')::uuid)`;
@@ -92,7 +92,7 @@ const CLASSES = `select name, json_build_object('horizontal', residual_horizonta
     check_required as "checkRequired"
   from tolerance_classes where organization_id = ${TENANT} and project_id = $1 order by position`;
 
-const BEFORE = `select u.id, encode(r.sha256, 'hex') as sha256
+const BEFORE = `select u.id, encode(coalesce(r.content_sha256, r.sha256), 'hex') as "contentSha256"
   from uploads u join raw_bodies r on r.organization_id = u.organization_id and r.id = u.raw_body_id
   where u.organization_id = ${TENANT} and u.project_id = $1 and u.client_id = $2 and u.status = 'processed'`;
 
@@ -168,9 +168,11 @@ const CHECK = camel('c', [
     'agreed',
     'result',
   ],
-  ...['observed_at', 'result_version'],
+  ...['observed_at', 'result_version', 'carried_from_id'],
 ]);
-const RELEASE = camel('e', ['seq', 'action', 'machine', 'layer_name', 'effective_at', 'valid_until']);
+const RELEASE = `${camel('e', [
+  ...['seq', 'action', 'machine', 'layer_name', 'layer_version', 'effective_at', 'valid_until'],
+])}, e."offset", encode(e.surface_sha256, 'hex') as "surfaceSha256"`;
 
 const SETUPS = `select to_json(x) as setup, r.result, x.checks, x.releases, x."shotIds" from (
     select ${SETUP},

@@ -1,0 +1,4 @@
+ALTER TABLE "setup_checks" DROP CONSTRAINT "setup_checks_client_id";--> statement-breakpoint
+ALTER TABLE "setup_checks" ADD COLUMN "carried_from_id" uuid;--> statement-breakpoint
+ALTER TABLE "setup_checks" ADD CONSTRAINT "setup_checks_organization_id_carried_from_id_setup_checks_organization_id_id_fk" FOREIGN KEY ("organization_id","carried_from_id") REFERENCES "public"."setup_checks"("organization_id","id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
+CREATE UNIQUE INDEX "setup_checks_client_id" ON "setup_checks" USING btree ("organization_id","project_id","client_id") WHERE "setup_checks"."carried_from_id" is null;

@@ -1,0 +1,1 @@
+ALTER TABLE "raw_bodies" ADD COLUMN "content_sha256" "bytea";

@@ -1,0 +1,126 @@
+import { Cofactors } from '@/lib/compute/adjustment/cofactors';
+import { globalTest } from '@/lib/compute/adjustment/globalTest';
+import { SingularError } from '@/lib/compute/adjustment/model';
+import { type Solution, solve } from '@/lib/compute/adjustment/solve';
+import { suspiciousStart, withSuspicions } from '@/lib/compute/adjustment/suspicions';
+import { CRITICAL_W } from '@/lib/compute/statistics/distributions';
+import {
+  logEvidence,
+  logEvidenceOfFaults,
+  logEvidenceOfSpread,
+  shares,
+} from '@/lib/compute/statistics/evidence';
+import { exchangesOf } from './exchanges';
+import type { Fault } from './fault';
+import type { AdjustedStation } from './stationAdjustment';
+import { type Suspicion, suspicionsOf } from './suspicions';
+
+/** One thing that would explain what does not fit, with its share of the belief. */
+export interface Explanation {
+  fault: Fault;
+  /** Marks that it concerns. */
+  subject: string[];
+  /** m of distances, shifts and heights (as shot minus as published), ratio of a scale, rad of a face; null without. */
+  size: number | null;
+  weight: number;
+}
+
+/**
+ * How often each kind of fault is met, set against each other before anything is read: common practice at best, and
+ * the figures outweigh it soon. A kind shares its odds among all that it might concern.
+ */
+const ODDS: Record<Fault, number> = {
+  none: 0.9,
+  targetMoved: 0.03,
+  heightOfTargetOrMark: 0.03,
+  distanceConstant: 0.02,
+  targetsSwapped: 0.01,
+  distanceScale: 0.005,
+  wrongFoot: 0.005,
+  singleFace: 0.005,
+  unexplained: 0.005,
+};
+/** Lighter explanations are not named; what they weigh goes to `unexplained`. */
+const WORTH_NAMING = 0.01;
+
+interface Candidate {
+  fault: Fault;
+  subject: string[];
+  size: number | null;
+  evidence: number;
+}
+
+/**
+ * What would explain residuals that do not fit: single faults, each tried as further unknowns of the same adjustment
+ * or as the same shots to other marks, weighed by how well they fit and how much freedom they took for it. Where
+ * everything fits, nothing needs explaining.
+ *
+ * @param standardised w of every row; NaN where not controlled
+ */
+export function explain(adjusted: AdjustedStation, standardised: Float64Array): Explanation[] {
+  const { solution } = adjusted;
+  const { weightedSquares, degreesOfFreedom } = solution;
+  const outlying = standardised.some((w) => Math.abs(w) > CRITICAL_W);
+  const fits = solution.converged && !outlying && globalTest(weightedSquares, degreesOfFreedom).passed;
+  if (fits) return [{ fault: 'none', subject: [], size: null, weight: 1 }];
+
+  const bare = { subject: [], size: null };
+  const candidates: Candidate[] = [
+    { ...bare, fault: 'none', evidence: logEvidence(weightedSquares) },
+    { ...bare, fault: 'unexplained', evidence: logEvidenceOfSpread(weightedSquares, degreesOfFreedom) },
+    ...suspicionsOf(adjusted).flatMap((suspicion) => tried(adjusted, suspicion) ?? []),
+    ...exchangesOf(adjusted).map(({ weightedSquares: squares, ...exchange }) => ({
+      ...exchange,
+      size: null,
+      evidence: logEvidence(squares),
+    })),
+  ];
+  const countOf = (fault: Fault) => candidates.filter((candidate) => candidate.fault === fault).length;
+  const weights = shares(
+    candidates.map(({ fault, evidence }) => ({ evidence, odds: ODDS[fault] / countOf(fault) })),
+  );
+  return named(candidates.map(({ evidence: _, ...candidate }, i) => ({ ...candidate, weight: weights[i] })));
+}
+
+/** The adjustment with a suspected fault among its unknowns; null where the shots do not determine it. */
+function tried({ model, solution }: AdjustedStation, suspicion: Suspicion): Candidate | null {
+  const { fault, subject, entries, usual, sizeOf } = suspicion;
+  const suspicious = withSuspicions(model, usual.length, entries);
+  const start = suspiciousStart(model, solution.converged ? solution.unknowns : model.start, usual.length);
+  const attempt = orNull(() => solve(suspicious, start));
+  if (!attempt?.converged) return null;
+  const estimate = usual.map((_, i) => attempt.unknowns[model.shared + i]);
+  const covariance = covarianceOfFaults(attempt, model.shared, usual.length);
+  const evidence = orNull(() =>
+    logEvidenceOfFaults(attempt.weightedSquares, { estimate, covariance, usual }),
+  );
+  return evidence === null ? null : { fault, subject, size: sizeOf(estimate), evidence };
+}
+
+function covarianceOfFaults(solution: Solution, first: number, count: number): Float64Array {
+  const cofactors = new Cofactors(solution);
+  return Float64Array.from({ length: count * count }, (_, i) =>
+    cofactors.of(first + Math.floor(i / count), first + (i % count)),
+  );
+}
+
+function orNull<T>(attempt: () => T): T | null {
+  try {
+    return attempt();
+  } catch (error) {
+    if (error instanceof SingularError) return null;
+    throw error;
+  }
+}
+
+/** The weighty ones, heaviest first; `none` and `unexplained` always, with what the light ones weigh. */
+function named(explanations: readonly Explanation[]): Explanation[] {
+  const light = explanations.filter(
+    ({ fault, weight }) => weight < WORTH_NAMING && fault !== 'none' && fault !== 'unexplained',
+  );
+  const rest = light.reduce((sum, { weight }) => sum + weight, 0);
+  return explanations
+    .filter((explanation) => !light.includes(explanation))
+    .map((e) => (e.fault === 'unexplained' ? { ...e, weight: e.weight + rest } : e))
+    .sort((a, b) => b.weight - a.weight);
+}
