@@ -3,6 +3,7 @@ import next from 'next';
 import { assertDurable } from '@/db/durability';
 import { closeDatabase } from '@/db/tenant';
 import { getConfig } from '@/lib/config';
+import { closing } from '@/lib/http/closing';
 import { createHubServer } from '@/lib/http/server';
 import { log } from '@/lib/log/log';
 
@@ -17,6 +18,7 @@ const dev = mode === 'development';
 const app = next({ dev, hostname: host, port, ...(dev ? {} : { httpServer: createServer() }) });
 await app.prepare();
 const server = createHubServer(app.getRequestHandler());
+const close = closing(server);
 server.listen(port, host, () => {
   const address = server.address();
   const bound = typeof address === 'object' && address ? address.port : port;
@@ -29,9 +31,7 @@ async function drain(signal: string): Promise<void> {
   if (draining) return;
   draining = true;
   log().info({ signal }, 'web draining');
-  const closed = new Promise<void>((resolve) => server.close(() => resolve()));
-  server.closeIdleConnections();
-  await Promise.race([closed, new Promise((resolve) => setTimeout(resolve, DRAIN_MS))]);
+  await Promise.race([close(), new Promise((resolve) => setTimeout(resolve, DRAIN_MS))]);
   await closeDatabase();
   process.exit(0);
 }

@@ -9,6 +9,9 @@ await assertDurable();
 const runner = await run({
   connectionString: getConfig().databaseUrl,
   concurrency: 2,
+  // With them a stop waits until it is written what became of a job: by default a job that ends while the worker stops
+  // stays locked for hours.
+  preset: { worker: { completeJobBatchDelay: 0, failJobBatchDelay: 0 } },
   noHandleSignals: true,
   taskList: TASKS,
   parsedCronItems: parseCronItems(CRON),
@@ -30,4 +33,12 @@ async function drain(signal: string): Promise<void> {
   process.exit(0);
 }
 
+/** The queue gives up where it cannot write what became of a job: whoever watches over the worker starts another. */
+function giveUp(): void {
+  if (draining) return;
+  log().fatal('worker gives up');
+  process.exit(1);
+}
+
+runner.promise.then(giveUp, giveUp);
 for (const signal of ['SIGTERM', 'SIGINT'] as const) process.on(signal, () => void drain(signal));

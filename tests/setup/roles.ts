@@ -34,7 +34,9 @@ export async function callerRoles(database: Pick<HubDatabase, 'appUrl'>) {
   await tenantTransaction(organizationId, async (tenant) => {
     const context = { tenant, runtime };
     const createdAt = runtime.now().toISOString();
-    await tenant.db.insert(organizations).values({ id: organizationId, name: 'Thistledown Earthworks', createdAt });
+    await tenant.db
+      .insert(organizations)
+      .values({ id: organizationId, name: 'Thistledown Earthworks', createdAt });
     for (const role of ROLES) {
       const email = `${role}-${suffix}@test.example`;
       const person = await addPerson(context, organizationId, {
