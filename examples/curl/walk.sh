@@ -106,6 +106,7 @@ setup="$(after setups <<<"$receipt" | word id)"
 # Put in force for the dozer, together with what it is to cut.
 release="$(file release | send "$site/setups/$setup/release" release)"
 echo "  Released to $(word machine <<<"$release"), offset $(feet offset <<<"$release")"
+echo "  $(word radio <<<"$release")"
 # `date` counts whole seconds: what follows must not seem older than the release.
 sleep 1
 

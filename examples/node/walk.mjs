@@ -126,10 +126,11 @@ saySetup(good);
 if (good.verdict !== 'pass') stop('This setup should have passed.');
 
 // Put in force for the dozer, together with what it is to cut.
-const { release } = await post(`${site}/setups/${good.id}/release`, await data('release'));
+const { release, radio } = await post(`${site}/setups/${good.id}/release`, await data('release'));
 say(
   `  Released to ${release.machine} for ${release.layer}, offset ${ft(release.offset)}, until ${release.validUntil}`,
 );
+say(`  ${radio}`);
 
 // Two setups that must not be used: a forgotten prism constant, and a target that a truck has bumped.
 const [wrongPrism] = (await upload('setup-wrong-prism')).setups;

@@ -154,8 +154,10 @@ if good["verdict"] != "pass":
     stop("This setup should have passed.")
 
 # Put in force for the dozer, together with what it is to cut.
-release = call("POST", f"{site}/setups/{good['id']}/release", data("release"))["release"]
+released = call("POST", f"{site}/setups/{good['id']}/release", data("release"))
+release = released["release"]
 print(f"  Released to {release['machine']} for {release['layer']}, offset {release['offset']:.2f} ft")
+print(f"  {released['radio']}")
 
 # Two setups that must not be used: a forgotten prism constant, and a target that a truck has bumped.
 say_setup(upload("setup-wrong-prism")["setups"][0])

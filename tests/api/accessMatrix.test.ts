@@ -25,6 +25,16 @@ const scopeOf = ({ access }: Contract) =>
 /** Operations on the asker's own session, which a key has none of. */
 const OF_SESSIONS = ['signOut'];
 
+/** Operations on the organization as a whole, which a key for some of its projects has no part in. */
+const OF_ORGANIZATIONS = [
+  'listPeople',
+  'createPerson',
+  'getPerson',
+  'updatePerson',
+  'reinvitePerson',
+  'createProject',
+];
+
 describe('every operation', () => {
   let mine: FullOrganization;
   let theirs: FullOrganization;
@@ -136,6 +146,13 @@ describe('every operation', () => {
     const nowhere = await ask(operation, keys.elsewhere, { ...mine.values, projectId: missing('projectId') });
     expect(essence(other)).toEqual(essence(nowhere));
   });
+
+  it.each(guarded.filter(([id]) => OF_ORGANIZATIONS.includes(id)))(
+    '%s is refused to a key that is bound to projects',
+    async (_, operation) => {
+      expect(outcome(await ask(operation, keys.elsewhere))).toEqual([403, 'forbidden']);
+    },
+  );
 
   it.each(named)('%s takes what cannot be an id or a name for what does not exist', async (_, operation) => {
     for (const name of parametersOf(operation)) {

@@ -177,6 +177,17 @@ describe('API keys', () => {
     expectProblem(await bound.post(`/api-keys/${wide.apiKey.id}/rotate`, rotate), 'forbidden');
   });
 
+  it('are not revoked by what reaches other projects than they', async () => {
+    const bound = as(await organization.newKey(['keys:write'], [projects[0]]));
+    for (const projectIds of [null, [projects[1]], projects]) {
+      const { body } = await create({ projectIds });
+      expectProblem(await bound.post(`/api-keys/${body.apiKey.id}/revoke`), 'forbidden');
+      await as(body.secret).get('/whoami').expect(200);
+    }
+    const { body } = await create({ projectIds: [projects[0]] });
+    await bound.post(`/api-keys/${body.apiKey.id}/revoke`).expect(200);
+  });
+
   it('note their last use to the minute', async () => {
     const { body } = await create();
     const before = Date.now();

@@ -315,6 +315,18 @@ describe('bad input', () => {
       ['/method method_not_supported'],
     ],
     [
+      'an occupied mark in a resection',
+      (s) => Object.assign(s, { stationPoint: 'HT-5' }),
+      undefined,
+      ['/stationPoint mutually_exclusive'],
+    ],
+    [
+      'another σ in the second face of an erection',
+      (s) => Object.assign(s.shots[1], { targetCentringSigmaMm: 3, targetHeightSigmaMm: 5 }),
+      undefined,
+      ['/shots/1/targetCentringSigmaMm sigma_conflict', '/shots/1/targetHeightSigmaMm sigma_conflict'],
+    ],
+    [
       'a method that is none',
       (s) => Object.assign(s, { method: 'guess' }),
       undefined,

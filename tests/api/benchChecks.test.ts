@@ -104,14 +104,84 @@ describe('bench checks', () => {
     await site.admin.patch(site.at('/control-points/BM-1'), { status: 'trusted', note: 'Checked.' });
   });
 
-  it('hold where the machine’s offset or surface is not the layer’s', async () => {
+  it('hold where the machine’s offset or surface is not the layer’s, and say what it must be', async () => {
     const bound = { layer: 'subgrade', activeOffset: -0.5, surfaceSha256: design.surface.sha256 };
-    expect(await check(bound)).toMatchObject({ verdict: 'pass', layer: 'subgrade', activeOffset: -0.5 });
+    expect(await check(bound)).toMatchObject({
+      verdict: 'pass',
+      layer: 'subgrade',
+      layerOffset: -0.5,
+      activeOffset: -0.5,
+    });
     const offset = await check({ ...bound, activeOffset: 0.5 });
     expect([offset.verdict, codes(offset.reasons)]).toEqual(['hold', ['offset_differs']]);
-    expect(offset.instruction).toContain('Set the layer’s offset in the machine before it cuts.');
+    expect(offset.instruction).toBe(
+      'Left edge agrees with BM-1 within the tolerance (0.00 ft). The machine’s active offset is +0.50 ft, that of subgrade is −0.50 ft. Set −0.50 ft in the machine before it cuts.',
+    );
+    const close = await check({ ...bound, activeOffset: -0.501 });
+    expect(close.reasons[0].text).toContain('is −0.501000 ft, that of subgrade is −0.500000 ft');
     const surface = await check({ ...bound, surfaceSha256: 'ab'.repeat(32) });
     expect([surface.verdict, codes(surface.reasons)]).toEqual(['hold', ['surface_differs']]);
+  });
+
+  it('ask for the offset before any correction where the edge is off by just that', async () => {
+    const low = await check({ layer: 'subgrade', activeOffset: -0.5, elevations: [KNOWN - 0.5] });
+    expect(low).toMatchObject({
+      verdict: 'fail',
+      correction: null,
+      instruction:
+        'Do not correct. The edge reads 0.50 ft low, exactly the offset of subgrade (−0.50 ft): is the offset left on (or off)? Look at the offset in the machine, and read the edge again with the offset excluded.',
+    });
+    expect(codes(low.reasons)).toEqual(['layer_offset_suspected', 'edge_low']);
+    const high = await check({ layer: 'subgrade', activeOffset: 0, elevations: [KNOWN + 0.46] });
+    expect(codes(high.reasons)).toEqual(['layer_offset_suspected', 'offset_differs', 'edge_high']);
+    expect(high).toMatchObject({ verdict: 'fail', correction: null });
+    expect(high.instruction).toContain(
+      'reads 0.46 ft high, within the tolerance of the offset of subgrade (−0.50 ft)',
+    );
+    expect(high.instruction).toContain('active offset is 0.00 ft, that of subgrade is −0.50 ft');
+    const beside = await check({ layer: 'subgrade', elevations: [KNOWN - 0.44] });
+    expect(beside.correction).toBeCloseTo(0.44, 9);
+  });
+
+  it('know the offset from the machine alone, or from what the setup was released to it for', async () => {
+    const alone = await check({ activeOffset: -0.3, elevations: [KNOWN - 0.3] });
+    expect(codes(alone.reasons)).toEqual(['active_offset_suspected', 'edge_low']);
+    expect(alone.instruction).toContain('exactly the machine’s active offset (−0.30 ft)');
+
+    const { body } = await site.upload(document('released', { setups: [resection('released')] })).expect(201);
+    const release = {
+      machine: 'DZ-3',
+      layer: 'subgrade',
+      releasedAt: minutesAgo(60),
+      validMinutes: 120,
+    };
+    await site.admin.post(site.at(`/setups/${body.setups[0].id}/release`), release).expect(200);
+    const bound = { setup: 'released', elevations: [KNOWN - 0.5] };
+    const told = await check(bound);
+    expect(told).toMatchObject({ layer: 'subgrade', layerOffset: -0.5, correction: null });
+    expect(codes(told.reasons)).toEqual(['layer_offset_suspected', 'edge_low']);
+    expect((await site.admin.get(site.at(`/bench-checks/${told.id}`)).expect(200)).body).toEqual(told);
+    const other = await check({ ...bound, machine: 'DZ-4' });
+    expect(other).toMatchObject({ layer: null, layerOffset: null });
+    const surface = { surfaceSha256: 'ab'.repeat(32), elevations: [KNOWN], activeOffset: -0.5 };
+    expect(codes((await check({ ...bound, ...surface })).reasons)).toEqual(['surface_differs']);
+  });
+
+  it('fail without a correction for a gross error, and say what it looks like', async () => {
+    const metres = await check({ elevations: [KNOWN * 0.3048, KNOWN * 0.3048] });
+    expect(metres).toMatchObject({ verdict: 'fail', correction: null });
+    expect(codes(metres.reasons)).toEqual(['gross_error', 'metres_as_feet']);
+    expect(metres.instruction).toBe(
+      'Do not correct. The edge reads 285.90 ft low: a gross error, no blade is off by more than 2.0 ft. It looks like metres in a foot job. Check the unit of the readings first, then that the edge stood on BM-1, then the frame that the machine works in. Send the elevations in the unit that is declared with them.',
+    );
+    const elsewhere = await check({ elevations: [KNOWN + 3] });
+    expect(codes(elsewhere.reasons)).toEqual(['gross_error']);
+    // Whatever else is amiss, and with repeats that scatter among themselves.
+    const both = await check({ elevations: [KNOWN + 3, KNOWN + 4] });
+    expect(codes(both.reasons)).toEqual(['readings_unsteady', 'gross_error']);
+    expect(both).toMatchObject({ verdict: 'fail', correction: null });
+    const slip = await check({ elevations: [KNOWN, KNOWN - 100] });
+    expect([slip.verdict, codes(slip.reasons)]).toEqual(['hold', ['readings_unsteady']]);
   });
 
   it('are refused one by one with what is wrong', async () => {

@@ -3,6 +3,7 @@ import { expectProblem, places } from './fixtures/problems';
 import {
   document,
   MARKS,
+  newSite,
   newSiteOrganization,
   resection,
   type SiteOrganization,
@@ -145,6 +146,41 @@ describe('control points', () => {
       .expect(200);
   });
 
+  it('stay as trusted as they were when they are revised', async () => {
+    const point = { name: 'Q-1', easting: 1, northing: 1 };
+    await post([point]).expect(201);
+    for (const status of ['quarantined', 'suspect', 'trusted']) {
+      await site.admin.patch(site.at('/control-points/Q-1'), { status, note: 'Leans.' }).expect(200);
+      point.easting += 1;
+      await post([point], '?revise=true').expect(201);
+      expect(await read('Q-1')).toMatchObject({ easting: point.easting, status });
+    }
+  });
+
+  it('are the same whatever became of the default that they were left to', async () => {
+    const other = await newSite(site.admin, 'Other default');
+    const bring = (point: object, query = '') =>
+      site.admin.post(other.at(`/control-points${query}`), { units: { length: 'ft' }, points: [point] });
+    const [left, stated] = [
+      { name: 'D-1', easting: 1, northing: 2, elevation: 3 },
+      { name: 'D-2', easting: 1, northing: 2, sigma: { horizontal: 0.01, vertical: 0.02 } },
+    ];
+    await bring(left).expect(201);
+    await bring(stated).expect(201);
+    await site.admin.patch(other.at(''), { controlSigma: { horizontal: 0.01, vertical: 0.02 } }).expect(200);
+    for (const point of [left, stated])
+      expect((await bring(point, '?revise=true').expect(201)).body.counts.unchanged).toBe(1);
+
+    const detail = async (point: object) =>
+      expectProblem(await bring(point), 'nothing_accepted', ['/points/0 control_point_exists']).errors?.[0]
+        .detail;
+    expect(await detail({ ...left, sigma: stated.sigma })).toBe('D-1 exists with another sigma.');
+    expect(await detail({ ...stated, sigma: undefined })).toBe('D-2 exists with another sigma.');
+    expect(
+      await detail({ ...left, northing: 5, elevation: undefined, kind: 'target', description: 'Nail' }),
+    ).toBe('D-1 exists with another northing, elevation, kind, description.');
+  });
+
   it('count for no verdict while suspect', async () => {
     for (const name of ['HT-3', 'HT-4'])
       await site.admin
@@ -254,6 +290,62 @@ describe('control points as CSV', () => {
   it.each(refusals)('are refused %s', async (_, csv, query, expected) => {
     const code = expected[0].startsWith('?') ? 'invalid' : 'nothing_accepted';
     expectProblem(await post(csv, query), code, expected);
+  });
+
+  it('are told the types that are taken where they come as another', async () => {
+    const answer = await post('name,easting,northing').set('Content-Type', 'text/plain');
+    expectProblem(answer, 'media_type_unsupported');
+    expect(answer.headers.accept).toBe('application/json, text/csv');
+  });
+
+  it('come in as many as JSON takes, and no more', async () => {
+    const table = (rows: number) =>
+      `name,easting,northing\n${Array.from({ length: rows }, (_, i) => `M-${i},${i},0`).join('\n')}`;
+    expectProblem(await post(table(5_001)), 'invalid', ['/rows invalid_value']);
+    expect((await post(table(5_000)).expect(201)).body.counts.created).toBe(5_000);
+  });
+
+  it('are refused with a NUL in their text, beside the good ones', async () => {
+    const { body } = await post('name,easting,northing,description\nZ-1,1,2,a\u0000b\nZ-2,1,2,ab').expect(
+      201,
+    );
+    expect(places(body.refused)).toEqual(['/rows/2/description text_forbidden']);
+    expect(body.counts).toEqual({ created: 1, revised: 0, unchanged: 0, refused: 1 });
+  });
+
+  it('say how far points would move, and do not move them so far unless that is confirmed', async () => {
+    const csv = 'name,easting,northing,elevation\nGM-1,3000,4000,400\nGM-2,3100,4000,\n';
+    await post(csv).expect(201);
+    const fix = expect.stringMatching(/unit and the frame.*new name.*confirmUnits/);
+    const moved = async (query: string, text = csv) =>
+      expectProblem(await post(text, query), 'nothing_accepted').errors;
+    expect(await moved('?length=m')).toEqual([
+      {
+        pointer: '/rows/2',
+        code: 'control_point_exists',
+        detail:
+          'GM-1 exists with another easting, northing, elevation, and would move 11,441 ft: it looks like feet sent as metres.',
+        fix,
+      },
+      {
+        pointer: '/rows/3',
+        code: 'control_point_exists',
+        detail:
+          'GM-2 exists with another easting, northing, and would move 11,542 ft: it looks like feet sent as metres.',
+        fix,
+      },
+    ]);
+    const refused = await moved('?length=m&revise=true');
+    expect(places(refused)).toEqual(['/rows/2 control_point_moves', '/rows/3 control_point_moves']);
+    expect(refused?.[0]).toMatchObject({
+      detail: 'GM-1 would move 11,441 ft: it looks like feet sent as metres.',
+      fix,
+    });
+    const [shift] = (await moved('?length=ft&revise=true', 'name,easting,northing\nGM-2,3104,4003\n')) ?? [];
+    expect(shift.detail).toBe('GM-2 would move 5 ft.');
+    await post('name,easting,northing\nGM-2,3103,4000\n', '?length=ft&revise=true').expect(201);
+    const { body } = await post(csv, '?length=m&revise=true&confirmUnits=true').expect(201);
+    expect(body.counts.revised).toBe(2);
   });
 
   it('take the other foot once confirmed', async () => {

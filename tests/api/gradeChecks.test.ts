@@ -164,6 +164,30 @@ describe('grade shots', () => {
     expect(await at(-5)).toEqual(notInForce);
   });
 
+  it('stand under any release that covers them: a second, shorter one does not end the first', async () => {
+    const { body } = await site.upload(document('s-7', { setups: [resection('s-7')] })).expect(201);
+    const [{ id }] = body.setups;
+    const release = (minutes: number, validMinutes: number) =>
+      site.admin
+        .post(site.at(`/setups/${id}/release`), { releasedAt: minutesAgo(minutes), validMinutes })
+        .expect(200);
+    const { validUntil } = (await release(60, 120)).body;
+    const second = await release(50, 20);
+    expect(second.body).toMatchObject({ status: 'released', validUntil });
+    const shot = groundShot({ ...HERE, elevation: LAYER });
+    const at = [61, 55, 40, 10].map((minutes) => ({ setup: 's-7', shot, observedAt: minutesAgo(minutes) }));
+    const answer = await post(at).expect(201);
+    expect(answer.body.gradeChecks.map((c: { verdict: string }) => c.verdict)).toEqual([
+      'hold',
+      'pass',
+      'pass',
+      'pass',
+    ]);
+    await site.admin.post(site.at(`/setups/${id}/withdraw`), {}).expect(200);
+    const late = await post([{ setup: 's-7', shot, observedAt: minutesAgo(-5) }]).expect(201);
+    expect(codes(late.body.gradeChecks[0].reasons)).toEqual(['setup_not_in_force']);
+  });
+
   it('are held where the setup was refitted or failed since', async () => {
     const { body } = await site.upload(document('s-3', { setups: [resection('s-3'), resection('s-4')] }));
     for (const { id } of body.setups)
@@ -297,10 +321,12 @@ describe('grade shots', () => {
       { geodetic },
       { position: { easting: 1, northing: 2 } },
       { position },
+      { shot: groundShot(position), setup: 's-6', sigma },
     ]).expect(201);
     expect(places(body.refused).sort()).toEqual([
       '/gradeShots/0/layer layer_unknown',
       '/gradeShots/1 one_of_required',
+      '/gradeShots/10/sigma mutually_exclusive',
       '/gradeShots/2 mutually_exclusive',
       '/gradeShots/3/setup required',
       '/gradeShots/4/setup setup_unknown',

@@ -8,6 +8,7 @@ import {
   newSiteOrganization,
   resection,
   type SiteOrganization,
+  shotsTo,
 } from './fixtures/site';
 
 describe('the summary of a layer', () => {
@@ -88,6 +89,90 @@ describe('the summary of a layer', () => {
       label: 'C 0.03',
       radio: 'Accepted. high: 3 of 3 inside tolerance, 0.03 ft high on average.',
     });
+  });
+
+  /** Grade shots on a lot of 3 × 3 places 100 ft apart, rows from the south. */
+  const shootLot = (layer: string, deviations: readonly number[]) => {
+    const gradeShots = deviations.map((deviation, i) => ({
+      clientId: `${layer}-${i}`,
+      layer,
+      position: {
+        easting: 5000 + 100 * (i % 3),
+        northing: 8000 + 100 * Math.floor(i / 3),
+        elevation: 400 + deviation,
+      },
+      observedAt: minutesAgo(60 - i),
+    }));
+    return site.upload(document(layer, { gradeShots })).expect(201);
+  };
+  const acceptance = { rule: 'everyPoint', citation: 'c 1' };
+
+  it('begins with what to cut and to fill, and where', async () => {
+    await makeLayer('corner', { acceptance });
+    await shootLot('corner', [0, 0, 0.01, 0, 0, 0, -0.02, 0, 0.12]);
+    expect(await summary('corner')).toMatchObject({
+      radio:
+        'Cut the north-east corner and shoot again. corner is not accepted: 1 of 9 high, none low; worst C 0.12 at corner-8.',
+      reasons: [{ code: 'every_point', action: 'Cut the north-east corner (corner-8) and shoot again.' }],
+    });
+    await makeLayer('both', { acceptance });
+    await shootLot('both', [-0.2, -0.15, -0.11, 0, 0, 0, 0.07, 0, 0.06]);
+    expect((await summary('both')).radio).toBe(
+      'Cut the north side, fill the south side, and shoot again. both is not accepted: 2 of 9 high, 3 low; worst F 0.20 at both-0.',
+    );
+    await makeLayer('about');
+    await shootLot('about', [0.1, 0, 0, 0, 0.2, 0, 0, 0, 0.3]);
+    expect(await summary('about')).toMatchObject({
+      radio:
+        'Cut at about-0, about-4 and about-8 and shoot again. about is not accepted: 3 of 9 high, none low; worst C 0.30 at about-8.',
+      reasons: [
+        {
+          code: 'no_acceptance_rule',
+          action: 'Cut at about-0, about-4 and about-8 and shoot again.',
+        },
+      ],
+    });
+  });
+
+  it('says what is missing where it is not proven yet', async () => {
+    await makeLayer('more', { acceptance: { rule: 'window', required: 2, of: 5, citation: 'c 2' } });
+    await shootLot('more', [0, 0.2]);
+    expect(await summary('more')).toMatchObject({
+      verdict: 'hold',
+      radio:
+        'Wait. more is not proven yet: 1 of 2 inside tolerance, 0.10 ft high on average. Cut the east side and shoot again, with at least 3 more.',
+    });
+    await makeLayer('spread', {
+      acceptance: { rule: 'percentWithinLimits', minimum: 99, citation: 'c 3' },
+      tolerance: { below: 0.1, above: 0.1 },
+    });
+    await shootLot('spread', [0.1, -0.1, 0.1, -0.1, 0, 0, 0.1, 0.1, -0.1]);
+    expect((await summary('spread')).radio).toBe(
+      'Trim the lot closer to grade and shoot again. spread is not accepted: 9 of 9 inside tolerance, 0.01 ft high on average, but the lot as a whole lies too close to its limits.',
+    );
+  });
+
+  it('asks for the offset where the lot as a whole lies off by it, and cuts nothing', async () => {
+    for (const [name, shift, side, where] of [
+      ['off', 0.5, 'high', 'on Pad itself'],
+      ['twice', -0.5, 'low', 'at twice the offset'],
+    ] as const) {
+      await makeLayer(name, { offset: -0.5, acceptance });
+      const lot = [0, 0.02, -0.03, 0.01, 0, 0, 0.04, 0, 0.06];
+      await shootLot(
+        name,
+        lot.map((deviation) => deviation - 0.5 + shift),
+      );
+      const body = await summary(name);
+      expect(body.radio).toBe(
+        `Stop and check the offset. All of ${name} lies off by its own offset, 0.50 ft ${side}: wrong offset left on or off, or the wrong layer.`,
+      );
+      expect(body.reasons[0]).toMatchObject({
+        code: 'off_by_offset',
+        text: `The lot as a whole lies 0.50 ft ${side}, within the tolerance of the layer’s own offset (−0.50 ft): ground lies ${where}.`,
+      });
+      expect(body.reasons[1]).toEqual({ code: 'every_point', text: expect.any(String) });
+    }
   });
 
   it('counts plain readings by each rule, as its clause says', async () => {
@@ -179,6 +264,46 @@ describe('the summary of a layer', () => {
 
     await makeLayer('scope', { surfaceId: surface.id, offset: -1 }, '?revise=true');
     expect(await summary('scope')).toMatchObject({ layerVersion: 2, count: 0, offset: -1 });
+  });
+
+  it.each<[string, (id: string) => Promise<unknown>]>([
+    [
+      'fails by a later check',
+      () => {
+        const shots = shotsTo('HT-5', { clientId: 'late', moved: { northing: 1 } });
+        const closing = { clientId: 'late', setup: 'void-1', purpose: 'closing', shots };
+        return site.upload(document('late', { setupChecks: [closing] })).expect(201);
+      },
+    ],
+    [
+      'is refitted',
+      (id) => {
+        const refit = { exclude: ['orient-HT-1/left'], reason: 'Sun in the glass.' };
+        return site.admin.post(site.at(`/setups/${id}/refits`), refit).expect(201);
+      },
+    ],
+  ])('counts nothing from a setup that %s, shot and sent before', async (what, happens) => {
+    const name = what.startsWith('fails') ? 'void-1' : 'void-2';
+    await makeLayer(name);
+    const { body } = await site.upload(document(name, { setups: [resection(name)] })).expect(201);
+    const [{ id }] = body.setups;
+    await site.admin.post(site.at(`/setups/${id}/release`), { releasedAt: minutesAgo(60) }).expect(200);
+    const shot = groundShot({ easting: 5150, northing: 8150, elevation: 400 });
+    const gradeShots = [0, 1, 2].map((i) => ({
+      clientId: `${name}-${i}`,
+      layer: name,
+      setup: name,
+      shot,
+      observedAt: minutesAgo(30),
+    }));
+    await site.upload(document(`${name}-g`, { gradeShots })).expect(201);
+    expect(await summary(name)).toMatchObject({ verdict: 'pass', count: 3 });
+    await happens(id);
+    expect(await summary(name)).toMatchObject({
+      verdict: 'hold',
+      count: 0,
+      notCounted: { outside: 0, notInForce: 3 },
+    });
   });
 
   it('is of a layer that exists', async () => {

@@ -2,6 +2,7 @@ import supertest from 'supertest';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { newSecret } from '@/lib/access/secrets';
 import { systemRuntime } from '@/lib/runtime';
+import { ROLE_SCOPES } from '@/openapi/scopes';
 import { type Api, api } from '@/tests/setup/api';
 import { newOrganization } from '@/tests/setup/organization';
 import { withClient } from './fixtures/database';
@@ -114,6 +115,28 @@ describe('people', () => {
     expect((await admin.patch(path, { status: 'active' }).expect(200)).body.status).toBe('active');
     expect((await signIn(url, person.email, PASSWORD)).answer.status).toBe(201);
     expectProblem(await admin.patch(path, { email: 'x@example.com' }), 'invalid', ['/email unknown_field']);
+  });
+
+  it('are given no role, changed or let in anew by whoever may do less than they', async () => {
+    const small = api(url, await organization.newKey(['people:write', 'people:read']));
+    const { person } = await invite('Kit', 'foreman');
+    const body = { name: 'Lou', email: address('lou'), role: 'admin' };
+    expectProblem(await small.post('/people', body), 'invalid', ['/role scope_not_yours']);
+    expectProblem(await small.patch(`/people/${person.id}`, { role: 'admin' }), 'forbidden');
+    for (const { id } of [organization.people.admin, person]) {
+      expectProblem(await small.post(`/people/${id}/invitations`), 'forbidden');
+      for (const change of [{ status: 'closed' }, { role: 'analyst' }, { name: 'Nobody' }])
+        expectProblem(await small.patch(`/people/${id}`, change), 'forbidden');
+    }
+
+    const scopes = ['people:write', ...ROLE_SCOPES.foreman] as const;
+    const equal = api(url, await organization.newKey(scopes));
+    expectProblem(await equal.patch(`/people/${person.id}`, { role: 'surveyor' }), 'invalid', [
+      '/role scope_not_yours',
+    ]);
+    await equal.post(`/people/${person.id}/invitations`).expect(201);
+    await equal.patch(`/people/${person.id}`, { role: 'analyst' }).expect(200);
+    await equal.post('/people', { ...body, role: 'foreman' }).expect(201);
   });
 
   it('always keep one administrator', async () => {

@@ -1,6 +1,7 @@
 import { beforeAll, describe, expect, it } from 'vitest';
 import { type Api, api } from '@/tests/setup/api';
 import { newOrganization } from '@/tests/setup/organization';
+import { whileHeld } from './fixtures/database';
 import { expectProblem } from './fixtures/problems';
 
 describe('projects', () => {
@@ -84,6 +85,18 @@ describe('projects', () => {
       const wrong = await admin.patch(`/projects/${body.id}`, { [field]: 'm' });
       expectProblem(wrong, 'invalid', [`/${field} unknown_field`]);
     }
+  });
+
+  it('keep both of two changes that are made at the same moment', async () => {
+    const { body } = await create('Shared').expect(201);
+    const lock = `select 1 from projects where id = '${body.id}' for update`;
+    const changes = [{ displayDecimals: 4 }, { combinedFactor: 0.9998 }, { siteElevation: 100 }];
+    const answers = await whileHeld(organization.hub.superuserUrl, { lock }, changes.length, () =>
+      Promise.all(changes.map((change) => admin.patch(`/projects/${body.id}`, change))),
+    );
+    expect(answers.map(({ status }) => status)).toEqual([200, 200, 200]);
+    const { body: now } = await admin.get(`/projects/${body.id}`);
+    for (const change of changes) expect(now).toMatchObject(change);
   });
 
   it('have names of their own', async () => {

@@ -60,6 +60,29 @@ describe('the bytes of an upload', () => {
     expect(raw.headers['content-disposition']).toContain('.gz"');
   });
 
+  it('are known again compressed anew, or not at all', async () => {
+    const text = JSON.stringify(document('again', { setups: [resection('again-1')] }));
+    const gzip = { 'Content-Encoding': 'gzip' };
+    const [first, other] = [gzipSync(text, { level: 9 }), gzipSync(text, { level: 1 })];
+    expect(first.equals(other)).toBe(false);
+    const keyed = { ...gzip, 'Idempotency-Key': 'packed-again' };
+    const { status, bytes } = await post(first, keyed);
+    expect(status).toBe(201);
+    const replayed = await post(other, keyed);
+    expect(replayed.headers['idempotency-replayed']).toBe('true');
+    expect(replayed.bytes.equals(bytes)).toBe(true);
+    for (const again of [await post(first, gzip), await post(other, gzip), await post(text)]) {
+      expect(again.status).toBe(200);
+      expect(again.body).toEqual(JSON.parse(bytes.toString()));
+    }
+    const changed = gzipSync(text.replace('ST-1', 'ST-2'));
+    expectProblem((await post(changed, gzip)) as never, 'upload_conflict');
+    // What came as it is may come compressed the next time.
+    const plain = JSON.stringify(document('plain', { setups: [resection('plain-1')] }));
+    expect((await post(plain)).status).toBe(201);
+    expect((await post(gzipSync(plain), gzip)).status).toBe(200);
+  });
+
   const sound = JSON.stringify(document('x', { setups: [resection('x')] }));
   const refusals: [string, Buffer | string, Record<string, string>, Parameters<typeof expectProblem>[1]][] = [
     ['broken JSON', sound.slice(0, -3), {}, 'body_unreadable'],
@@ -81,7 +104,10 @@ describe('the bytes of an upload', () => {
     ['null', 'null', {}, 'invalid'],
   ];
   it.each(refusals)('are kept and listed as refused: %s', async (_, body, headers, code) => {
-    const problem = expectProblem((await post(body, headers)) as never, code);
+    const answer = await post(body, headers);
+    const problem = expectProblem(answer as never, code);
+    if (code === 'media_type_unsupported')
+      expect(answer.headers).toMatchObject({ accept: 'application/json', 'accept-encoding': 'gzip' });
     const upload = await newest();
     const bytes = Buffer.from(body);
     expect(upload).toMatchObject({

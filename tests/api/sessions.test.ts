@@ -2,7 +2,7 @@ import supertest from 'supertest';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { api } from '@/tests/setup/api';
 import { newOrganization } from '@/tests/setup/organization';
-import { withClient } from './fixtures/database';
+import { whileHeld, withClient } from './fixtures/database';
 import { expectProblem, withoutRequest } from './fixtures/problems';
 import { signIn } from './fixtures/session';
 
@@ -57,6 +57,22 @@ describe('sessions', () => {
     expect(unknown.answer.headers['set-cookie']).toBeUndefined();
     const { date: _a, 'request-id': _b, ...headers } = wrong.answer.headers;
     expect(unknown.answer.headers).toMatchObject(headers);
+  });
+
+  it('do not open with a password, or an account, that ends while it is verified', async () => {
+    const ending = await newOrganization();
+    const { id, email, password } = ending.people.inspector;
+    const lock = `select 1 from people where id = '${id}' for update`;
+    const changes = ['status = $$closed$$', 'status = $$active$$, password_hash = $$of another$$'];
+    for (const change of changes.map((set) => `update people set ${set} where id = '${id}'`)) {
+      const answer = await whileHeld(ending.hub.superuserUrl, { lock, change }, 1, async () => {
+        return (await signIn(url, email, password)).answer;
+      });
+      expectProblem(answer, 'sign_in_failed');
+      await withClient(ending.hub.superuserUrl, (client) =>
+        client.query(`update people set status = 'active' where id = $1`, [id]),
+      );
+    }
   });
 
   it('end at once on signing out, everywhere the cookie is', async () => {

@@ -1,5 +1,6 @@
 import type { Browser, Page } from 'playwright-core';
 import { afterAll, beforeAll, expect, it } from 'vitest';
+import { api } from '@/tests/setup/api';
 import { newOrganization } from '@/tests/setup/organization';
 import { openBrowser, openDesk } from './browser';
 import { walkedOrganization } from './site';
@@ -55,7 +56,10 @@ it('previews a dropped sheet, brings in its good rows and says of each bad one w
   await page.getByRole('button', { name: 'Bring in 4 points' }).click();
 
   await page.getByText('2 new, 0 in a new version, 0 unchanged, 2 refused.').waitFor();
-  await preview.getByRole('row', { name: /HT-7/ }).getByText('"five" is no decimal number.').waitFor();
+  await preview
+    .getByRole('row', { name: /HT-7/ })
+    .getByText('Column easting: "five" is no decimal number. Write a plain number')
+    .waitFor();
   await preview
     .getByRole('row', { name: /5333\.2/ })
     .getByText('refused')
@@ -63,6 +67,7 @@ it('previews a dropped sheet, brings in its good rows and says of each bad one w
   const registry = page.getByRole('table', { name: 'Control points' });
   await registry.getByText('BM-7').waitFor();
   expect(await registry.getByRole('link').allTextContents()).toEqual(['BM-7', 'HT-8']);
+  expect(await page.content()).not.toMatch(/\/rows\/|revise=true/);
   expect(complaints).toEqual([]);
   await context.close();
 });
@@ -105,5 +110,33 @@ it('shows what a bumped point did in every setup, and quarantines it with a reas
     .waitFor();
   await page.getByLabel('Show').selectOption('suspect');
   await page.getByText('No point is suspect').waitFor();
+  await context.close();
+});
+
+it('counts trust over the whole registry, whatever is shown of it', async () => {
+  const { hub, people, key } = await newOrganization();
+  const caller = api(hub.url, key);
+  const project = await caller.post('/projects', {
+    name: 'Long dike',
+    lengthUnit: 'm',
+    frame: { kind: 'local' },
+  });
+  const at = `/projects/${project.body.id}/control-points`;
+  const points = Array.from({ length: 230 }, (_, i) => ({
+    name: `P-${1000 + i}`,
+    easting: 100 + 10 * (i % 20),
+    northing: 100 + 10 * Math.floor(i / 20),
+    kind: 'target',
+  }));
+  await caller.post(at, { units: { length: 'm' }, points }).expect(201);
+  await caller.patch(`${at}/P-1229`, { status: 'suspect', note: 'Leans.' }).expect(200);
+  const { page, context } = await openDesk(browser, hub.url, people.analyst);
+  await page.goto(`/projects/${project.body.id}/control`);
+  await page.getByText('230 shown', { exact: true }).waitFor();
+  const counts = () => page.locator('dl dd:nth-child(3n)').allTextContents();
+  expect(await counts()).toEqual(['229', '1', '0']);
+  await page.getByLabel('Show').selectOption('suspect');
+  await page.getByText('1 shown', { exact: true }).waitFor();
+  expect(await counts()).toEqual(['229', '1', '0']);
   await context.close();
 });

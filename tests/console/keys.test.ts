@@ -39,7 +39,10 @@ it('makes a key that posts the example, shows the setup, rotates the key and rev
   await page.getByLabel('The old key still works').selectOption('for an hour');
   await page.getByRole('button', { name: 'Make the new key' }).click();
   const successor = (await page.locator('[data-secret]').textContent()) ?? '';
-  await page.keyboard.press('Escape');
+  // The only copy is on the screen: neither one Escape nor several close it.
+  for (let i = 0; i < 3; i++) await page.keyboard.press('Escape');
+  expect(await page.locator('[data-secret]').textContent()).toBe(successor);
+  await page.getByRole('button', { name: 'I have kept it' }).click();
   await page.getByText(/old key works until/).waitFor();
   const get = (key: string) => api(hub.url, key).get('/whoami');
   await get(secret).expect(200);
@@ -65,5 +68,33 @@ it('marks a key that may do nothing as a mistake of the form, in words', async (
     await box.uncheck();
   await page.getByRole('button', { name: 'Make the key' }).click();
   await page.getByRole('alert').filter({ hasText: '/scopes' }).waitFor();
+  await context.close();
+});
+
+it('stays open while the key is being made, and selects it where the browser has no clipboard', async () => {
+  const { hub, people } = await newOrganization();
+  const { page, context } = await openDesk(browser, hub.url, people.admin);
+  await page.addInitScript(() => Object.defineProperty(navigator, 'clipboard', { value: undefined }));
+  await page.goto('/keys');
+  await page.getByRole('button', { name: 'Make a key' }).click();
+  await page.getByLabel(/^Name/).fill('rover-1');
+  let letOn = () => {};
+  const held = new Promise<void>((resolve) => {
+    letOn = resolve;
+  });
+  await page.route('**/api-keys', async (route) => {
+    if (route.request().method() === 'POST') await held;
+    await route.continue();
+  });
+  await page.getByRole('button', { name: 'Make the key' }).click();
+  for (let i = 0; i < 3; i++) await page.keyboard.press('Escape');
+  expect(await page.getByRole('button', { name: 'Not now' }).isDisabled()).toBe(true);
+  letOn();
+  const secret = (await page.locator('[data-secret]').textContent()) ?? '';
+  await page.getByRole('button', { name: 'Copy' }).click();
+  await page.getByText('It is selected: press Ctrl+C.').waitFor();
+  expect(await page.evaluate(() => String(getSelection()))).toBe(secret);
+  await page.getByRole('button', { name: 'I have kept it' }).click();
+  await page.getByRole('row', { name: /rover-1/ }).waitFor();
   await context.close();
 });

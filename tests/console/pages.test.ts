@@ -29,8 +29,26 @@ beforeAll(async () => {
     .get(`/projects/${site.projectId}/uploads?status=refused`)
     .expect(200);
   uploadId = refused.body.data[0].id;
+  await withdrawOne();
 }, 60_000);
 afterAll(() => browser.close());
+
+/** Withdraws the refit from two machines; a crew has answered, the other has not. */
+async function withdrawOne(): Promise<void> {
+  const { hub, key, site } = ground;
+  const caller = api(hub.url, key);
+  const at = (path: string) => `/projects/${site.projectId}${path}`;
+  const { body: passed } = await caller.get(at('/setups?verdict=pass')).expect(200);
+  const { id } = passed.data.find((setup: { id: string }) => setup.id !== site.setupId);
+  for (const machine of ['DZ-3', 'EX-2'])
+    await caller.post(at(`/setups/${id}/release`), { machine, layer: site.layer }).expect(200);
+  const note = 'The tripod was bumped by the water truck.';
+  const { body } = await caller.post(at(`/setups/${id}/withdraw`), { note }).expect(200);
+  const [answered] = body.acknowledgements;
+  await caller
+    .post(at(`/acknowledgements/${answered.id}/acknowledge`), { note: 'Parked at the north gate.' })
+    .expect(200);
+}
 
 /** Every page, by the name of its picture. */
 const PAGES: Record<string, (project: string) => string> = {
@@ -41,6 +59,7 @@ const PAGES: Record<string, (project: string) => string> = {
   projects: () => '/projects',
   setups: (project) => `${project}/setups`,
   setup: (project) => `${project}/setups/${ground.site.setupId}`,
+  withdrawals: (project) => `${project}/withdrawals`,
   control: (project) => `${project}/control`,
   'control-point': (project) => `${project}/control/HT-103`,
   grade: (project) => `${project}/grade`,
@@ -137,4 +156,40 @@ describe('on paper', () => {
     await page.pdf({ path: `${SCREENS}/setup.pdf`, preferCSSPageSize: true });
     await context.close();
   });
+
+  it.each([
+    ['A4', 688, false],
+    ['A4', 1016, true],
+    ['Letter', 710, false],
+    ['Letter', 950, true],
+  ] as const)(
+    'a setup on %s, %i px between the margins, is one column with everything in it',
+    async (format, width, landscape) => {
+      const { hub, people, site } = ground;
+      const viewport = { width, height: 900 };
+      const { page, context } = await openDesk(browser, hub.url, people.admin, { viewport });
+      await page.goto(`/projects/${site.projectId}/setups/${site.setupId}`);
+      await settled(page);
+      const way = landscape ? 'landscape' : 'portrait';
+      await page.pdf({ path: `${SCREENS}/setup-${format}-${way}.pdf`, format, landscape });
+      await page.emulateMedia({ media: 'print' });
+      const targets = page.getByRole('table', { name: 'Targets with their residuals' });
+      expect(await targets.getByRole('columnheader').allInnerTexts()).toHaveLength(8);
+      for (const head of await targets.getByRole('columnheader').all())
+        expect(await head.isVisible()).toBe(true);
+      const table = (await targets.boundingBox())!;
+      expect(table.x).toBe(0);
+      expect(table.x + table.width).toBeLessThanOrEqual(width);
+      const names = targets.getByRole('row').locator('td:first-child');
+      for (const name of await names.all()) expect((await name.boundingBox())!.height).toBeLessThan(45);
+      expect(await page.getByText(/^printed \d+ \w+ \d{4}/).isVisible()).toBe(true);
+      expect(
+        await page
+          .locator('main')
+          .getByText(/^Thistledown Yard/)
+          .isVisible(),
+      ).toBe(true);
+      await context.close();
+    },
+  );
 });

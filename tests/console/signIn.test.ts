@@ -38,6 +38,7 @@ describe('an empty hub', () => {
 
     await page.goto('/welcome');
     await page.getByText('This hub has its administrator already').waitFor();
+    expect(await page.getByText('This hub is empty').count()).toBe(0);
     await context.close();
   });
 });
@@ -73,6 +74,21 @@ describe('signing in', () => {
     await context.close();
   });
 
+  it('is not undone on the screen while the hub does not hear of it', async () => {
+    const { hub, people } = await newOrganization();
+    const { page, context } = await openDesk(browser, hub.url, people.admin);
+    await page.goto('/projects');
+    await page.getByText('No project yet').waitFor();
+    await page.route('**/sessions/current', (route) => route.abort());
+    await page.getByRole('button', { name: 'Sign out' }).first().click();
+    await page.getByText('You are still signed in: The hub cannot be reached. Try again.').first().waitFor();
+    expect(new URL(page.url()).pathname).toBe('/projects');
+    await page.unroute('**/sessions/current');
+    await page.getByRole('button', { name: 'Sign out' }).first().click();
+    await page.waitForURL('**/sign-in');
+    await context.close();
+  });
+
   it('goes to no other site, whatever ?next= says', async () => {
     const { hub, people } = await newOrganization();
     for (const next of [
@@ -100,7 +116,7 @@ describe('by night', () => {
     await page.goto('/projects');
     const paper = () => page.evaluate(() => getComputedStyle(document.documentElement).backgroundColor);
     const day = await paper();
-    await page.getByLabel('Light').last().selectOption('night');
+    await page.getByLabel('Theme').last().selectOption('night');
     expect(await paper()).not.toBe(day);
     await page.reload({ waitUntil: 'commit' });
     await page.waitForSelector('body', { state: 'attached' });
@@ -110,6 +126,15 @@ describe('by night', () => {
 });
 
 describe('an invitation', () => {
+  it('without its token is called incomplete, and asks for no password', async () => {
+    const { hub } = await newOrganization();
+    const { page, context } = await openDesk(browser, hub.url);
+    await page.goto('/invitation');
+    await page.getByRole('heading', { name: 'The link is incomplete' }).waitFor();
+    expect(await page.getByLabel('Password').count()).toBe(0);
+    await context.close();
+  });
+
   it('lets a person set a password once, and shows them what their role may see', async () => {
     const { hub, people } = await newOrganization();
     const admin = await openDesk(browser, hub.url, people.admin);

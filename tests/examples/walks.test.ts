@@ -106,7 +106,9 @@ describe.each(LANGUAGES)('the walk in %s', (language) => {
   it('gets the lot refused for its high north-east corner alone', () => {
     const { grade, summary } = left[language];
     expect(summary).toMatchObject({ verdict: 'fail', count: 42, withinTolerance: 37 });
-    expect(summary.radio).toMatch(/^Not accepted\./);
+    expect(summary.radio).toMatch(
+      /^Cut the north-east corner and shoot again\. subgrade is not accepted: 5 of 42 high, none low; worst C /,
+    );
     expect(summary.notCounted).toEqual({ outside: 0, notInForce: 0 });
     const failed = grade.filter(({ verdict }) => verdict === 'fail');
     expect(failed).toHaveLength(5);
@@ -123,6 +125,7 @@ describe.each(LANGUAGES)('the walk in %s', (language) => {
     // A superseded setup says so by now; when it was printed it said what was wrong with it.
     const standing = Object.values(setups).filter(({ status }) => status !== 'superseded');
     for (const { radio } of standing) expect(walked.out).toContain(radio);
+    expect(walked.out).toMatch(/Wait\. ST-1 .*Have it released.*Released to DZ-4.*Go\. ST-1 /s);
     for (const { instruction } of Object.values(bench)) expect(walked.out).toContain(instruction);
     expect(walked.out).toContain(summary.radio);
   });
