@@ -11,6 +11,7 @@ export default {
       current: 'currentColor',
       paper: role('paper'),
       sheet: role('sheet'),
+      raised: role('raised'),
       rule: { DEFAULT: role('rule'), strong: role('rule-strong') },
       ink: { DEFAULT: role('ink'), second: role('ink-second'), third: role('ink-third') },
       mark: { DEFAULT: role('mark'), soft: role('mark-soft') },

@@ -1,7 +1,9 @@
 'use client';
 
 import type { ReactNode } from 'react';
+import type { ProblemItem } from '@/openapi/schemas/problem';
 import { Refusal } from './data/call';
+import { WaysBack } from './frame/WaysBack';
 
 /** Nothing here yet, and what to do about it. */
 export function Empty({ title, children }: { title: string; children?: ReactNode }) {
@@ -14,7 +16,16 @@ export function Empty({ title, children }: { title: string; children?: ReactNode
 }
 
 /** What went wrong, what to do, and the request id to report. */
-export function Failure({ error, retry }: { error: Error; retry?: () => void }) {
+export function Failure({
+  error,
+  retry,
+  sayItem,
+}: {
+  error: Error;
+  retry?: () => void;
+  /** Words for a problem's place and mending, where a person sees no JSON. */
+  sayItem?: (item: ProblemItem) => string;
+}) {
   const problem = error instanceof Refusal ? error.problem : null;
   const title =
     problem === null
@@ -34,8 +45,14 @@ export function Failure({ error, retry }: { error: Error; retry?: () => void }) 
         <ul className="mt-2 list-disc pl-5">
           {problem.errors.slice(0, 12).map((item) => (
             <li key={`${item.pointer}${item.code}`}>
-              {item.pointer ? <code className="font-code text-[13px]">{item.pointer}</code> : null}{' '}
-              {item.detail} {item.fix}
+              {sayItem ? (
+                sayItem(item)
+              ) : (
+                <>
+                  {item.pointer ? <code className="font-code text-[13px]">{item.pointer}</code> : null}{' '}
+                  {item.detail} {item.fix}
+                </>
+              )}
             </li>
           ))}
         </ul>
@@ -51,9 +68,12 @@ export function Failure({ error, retry }: { error: Error; retry?: () => void }) 
         ) : null}
       </p>
       {retry ? (
-        <button type="button" onClick={retry} className="mt-3 cursor-pointer font-semibold underline">
-          Try again
-        </button>
+        <p className="mt-3 flex flex-wrap gap-x-6 gap-y-2 font-semibold">
+          <button type="button" onClick={retry} className="cursor-pointer font-semibold underline">
+            Try again
+          </button>
+          {problem?.status === 404 ? <WaysBack /> : null}
+        </p>
       ) : null}
     </div>
   );

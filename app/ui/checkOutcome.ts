@@ -13,5 +13,6 @@ type Outcome = keyof typeof OUTCOMES;
 /** The worst of several outcomes; null where an axis was not checked. */
 export function worstOutcome(outcomes: readonly (Outcome | null)[]): { tone: Tone; word: string } {
   const order = Object.keys(OUTCOMES) as Outcome[];
-  return OUTCOMES[order.find((outcome) => outcomes.includes(outcome)) ?? 'agreed'];
+  const worst = order.find((outcome) => outcomes.includes(outcome));
+  return worst ? OUTCOMES[worst] : { tone: 'plain', word: 'nothing checked' };
 }

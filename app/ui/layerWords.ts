@@ -1,12 +1,30 @@
 import type * as z from 'zod';
 import type { Layer } from '@/openapi/schemas/design';
-import { fixed, unitSign } from './numbers';
+import { decimalsOf, fixed, type LengthUnit, signed, stated, unitSign } from './numbers';
 
 type Shown = z.output<typeof Layer>;
 
 /** How far ground may be off. */
 export function allowed({ tolerance, units }: Pick<Shown, 'tolerance' | 'units'>): string {
-  return `${fixed(tolerance.below, 2)} low to ${fixed(tolerance.above, 2)} ${unitSign(units.length)} high`;
+  const { below, above } = tolerance;
+  const decimals = Math.max(decimalsOf(below, units.length), decimalsOf(above, units.length));
+  return `${fixed(below, decimals)} low to ${fixed(above, decimals)} ${unitSign(units.length)} high`;
+}
+
+/** Where a layer lies from its surface, with the sign in words. */
+export function liesAt({
+  offset,
+  surfaceName,
+  units,
+}: Pick<Shown, 'offset' | 'surfaceName' | 'units'>): string {
+  if (offset === 0) return `on ${surfaceName}`;
+  const distance = `${stated(Math.abs(offset), units.length)} ${unitSign(units.length)}`;
+  return `${distance} ${offset < 0 ? 'below' : 'above'} ${surfaceName}`;
+}
+
+/** An offset as a machine is told it. */
+export function signedOffset(offset: number, unit: LengthUnit): string {
+  return `${signed(offset, decimalsOf(offset, unit))} ${unitSign(unit)}`;
 }
 
 /** What a lot is accepted by, with the clause that says so. */

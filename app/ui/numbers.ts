@@ -47,6 +47,21 @@ export function unitSign(unit: LengthUnit): string {
 /** Decimals of a coordinate and of a residual. */
 export const COORDINATE = 3;
 
+/** A tenth of a millimetre is the last that anybody states. */
+const MOST_DECIMALS = 4;
+
+/** Decimals of a length that somebody stated: the unit's usual ones, and more where it would read as another length. */
+export function decimalsOf(value: number, unit: LengthUnit): number {
+  let decimals = unit === 'm' ? 3 : 2;
+  while (decimals < MOST_DECIMALS && Math.abs(value - Number(value.toFixed(decimals))) > 1e-6) decimals++;
+  return decimals;
+}
+
+/** A stated length, such as a tolerance. */
+export function stated(value: number, unit: LengthUnit): string {
+  return fixed(value, decimalsOf(value, unit));
+}
+
 const MOMENT = new Intl.DateTimeFormat('en-GB', {
   day: 'numeric',
   month: 'short',

@@ -7,6 +7,7 @@ import { call } from '@/app/ui/data/call';
 import { useRead } from '@/app/ui/data/queries';
 import { Button } from '@/app/ui/form/Button';
 import { Field } from '@/app/ui/form/Field';
+import { Heading } from '@/app/ui/frame/Heading';
 import { Failure, Skeleton } from '@/app/ui/Notice';
 import type { SentOf } from '@/openapi/contract';
 import type * as contracts from '@/openapi/contracts/hub';
@@ -23,13 +24,16 @@ export function Welcome() {
   if (!hub.data) return <Skeleton lines={4} />;
   if (!hub.data.empty && !make.isSuccess) {
     return (
-      <p className="max-w-[62ch]">
-        This hub has its administrator already.{' '}
-        <Link href="/sign-in" className="font-semibold underline">
-          Sign in
-        </Link>
-        , or ask them for an invitation.
-      </p>
+      <Heading
+        lead={
+          <>
+            This hub has its administrator already. <Link href="/sign-in">Sign in</Link>, or ask them for an
+            invitation.
+          </>
+        }
+      >
+        Welcome
+      </Heading>
     );
   }
   function submit(event: FormEvent<HTMLFormElement>) {
@@ -42,37 +46,42 @@ export function Welcome() {
     });
   }
   return (
-    <form onSubmit={submit} className="max-w-[26rem] space-y-5">
-      <Field
-        label="Organization"
-        name="organization"
-        required
-        maxLength={120}
-        autoComplete="organization"
-        autoFocus
-      />
-      <Field label="Your name" name="name" required maxLength={120} autoComplete="name" />
-      <Field
-        label="E-mail, to sign in with"
-        name="email"
-        type="email"
-        required
-        maxLength={254}
-        autoComplete="username"
-      />
-      <Field
-        label="Password, twelve characters at least"
-        name="password"
-        type="password"
-        required
-        minLength={12}
-        maxLength={200}
-        autoComplete="new-password"
-      />
-      {make.error ? <Failure error={make.error} /> : null}
-      <Button type="submit" disabled={make.isPending || make.isSuccess}>
-        Begin
-      </Button>
-    </form>
+    <>
+      <Heading lead="This hub is empty. Name the organization that it serves and make its first administrator, who invites everybody else.">
+        Welcome
+      </Heading>
+      <form onSubmit={submit} className="max-w-[26rem] space-y-5">
+        <Field
+          label="Organization"
+          name="organization"
+          required
+          maxLength={120}
+          autoComplete="organization"
+          autoFocus
+        />
+        <Field label="Your name" name="name" required maxLength={120} autoComplete="name" />
+        <Field
+          label="E-mail, to sign in with"
+          name="email"
+          type="email"
+          required
+          maxLength={254}
+          autoComplete="username"
+        />
+        <Field
+          label="Password, twelve characters at least"
+          name="password"
+          type="password"
+          required
+          minLength={12}
+          maxLength={200}
+          autoComplete="new-password"
+        />
+        {make.error ? <Failure error={make.error} /> : null}
+        <Button type="submit" disabled={make.isPending || make.isSuccess}>
+          Begin
+        </Button>
+      </form>
+    </>
   );
 }

@@ -7,7 +7,6 @@ import { Button } from '@/app/ui/form/Button';
 import { Field } from '@/app/ui/form/Field';
 import { Select } from '@/app/ui/form/Select';
 import { Crumb, PageHead } from '@/app/ui/frame/PageHead';
-import { Times } from '@/app/ui/frame/Times';
 import { Empty, Failure, Skeleton } from '@/app/ui/Notice';
 import { moment } from '@/app/ui/numbers';
 import { Table } from '@/app/ui/table/Table';
@@ -30,7 +29,7 @@ export function Audit() {
   }
   return (
     <>
-      <Crumb trail={[{ name: 'Audit' }]} note={<Times />} />
+      <Crumb trail={[{ name: 'Audit' }]} />
       <PageHead
         title="Audit"
         sub="Every change, with who made it. Nothing here is ever changed or removed."
@@ -46,7 +45,7 @@ export function Audit() {
             ))}
           </Select>
         </div>
-        <Field label="Act, such as setup.release" name="action" maxLength={80} />
+        <Field label="Act, in full, such as setup.released" name="action" maxLength={80} />
         <Button type="submit" look="plain">
           Look
         </Button>
@@ -102,11 +101,15 @@ export function Audit() {
 }
 
 const UUID = /^[0-9a-f]{8}-[0-9a-f-]{27}$/;
+/** Pages of a project that show what an act was on; `whole` where it has none of its own. */
 const SECTIONS = [
   { of: 'setup.', path: 'setups' },
   { of: 'upload.', path: 'uploads' },
-  { of: 'control_point.', path: 'control' },
+  { of: 'control.imported', path: 'control', whole: true },
+  { of: 'control.', path: 'control' },
   { of: 'layer.', path: 'grade' },
+  { of: 'grade.', path: 'grade' },
+  { of: 'withdrawal.', path: 'withdrawals', whole: true },
 ];
 
 /** What an act was on: an id by its end, which is what tells it from others; with its page where it has one. */
@@ -128,11 +131,9 @@ function Subject({
   );
   const section = SECTIONS.find(({ of }) => action.startsWith(of));
   if (!section || projectId === null) return text;
+  const place = `/projects/${projectId}/${section.path}`;
   return (
-    <Link
-      href={`/projects/${projectId}/${section.path}/${encodeURIComponent(subject)}`}
-      className="underline"
-    >
+    <Link href={section.whole ? place : `${place}/${encodeURIComponent(subject)}`} className="underline">
       {text}
     </Link>
   );

@@ -5,7 +5,6 @@ import { usePages } from '@/app/ui/data/queries';
 import { useCan } from '@/app/ui/data/whoami';
 import { Button } from '@/app/ui/form/Button';
 import { Crumb, PageHead } from '@/app/ui/frame/PageHead';
-import { Times } from '@/app/ui/frame/Times';
 import { Empty, Failure, Skeleton } from '@/app/ui/Notice';
 import type * as contracts from '@/openapi/contracts/apiKeys';
 import { KeyTable } from './KeyTable';
@@ -17,7 +16,7 @@ export function Keys() {
   const [making, setMaking] = useState(false);
   return (
     <>
-      <Crumb trail={[{ name: 'Keys' }]} note={<Times />} />
+      <Crumb trail={[{ name: 'Keys' }]} />
       <PageHead
         title="Keys"
         sub="One key per device or program. A key is shown once, when it is made."

@@ -47,7 +47,11 @@ export function MakeKey({ close }: { close: () => void }) {
     });
   }
   return (
-    <Dialog title={make.data ? `Key ${make.data.apiKey.name}` : 'Make a key'} close={close}>
+    <Dialog
+      title={make.data ? `Key ${make.data.apiKey.name}` : 'Make a key'}
+      close={close}
+      held={make.isPending || make.isSuccess}
+    >
       {make.data ? (
         <Once
           secret={make.data.secret}
@@ -111,7 +115,7 @@ export function MakeKey({ close }: { close: () => void }) {
             <Button type="submit" disabled={make.isPending}>
               Make the key
             </Button>
-            <Button look="plain" onClick={close}>
+            <Button look="plain" disabled={make.isPending} onClick={close}>
               Not now
             </Button>
           </div>

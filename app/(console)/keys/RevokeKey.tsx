@@ -23,7 +23,7 @@ export function RevokeKey({ apiKey, close }: { apiKey: Key; close: () => void })
     },
   });
   return (
-    <Dialog title={`Revoke ${apiKey.name}`} close={close}>
+    <Dialog title={`Revoke ${apiKey.name}`} close={close} held={revoke.isPending}>
       <div className="space-y-4">
         <p>
           The next request with it is refused, and it never works again. What it sent stands.{' '}
@@ -34,7 +34,7 @@ export function RevokeKey({ apiKey, close }: { apiKey: Key; close: () => void })
           <Button look="danger" disabled={revoke.isPending} onClick={() => revoke.mutate()}>
             Revoke it now
           </Button>
-          <Button look="plain" onClick={close}>
+          <Button look="plain" disabled={revoke.isPending} onClick={close}>
             Keep it
           </Button>
         </div>

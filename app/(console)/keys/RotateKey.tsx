@@ -34,7 +34,7 @@ export function RotateKey({ apiKey, close }: { apiKey: Key; close: () => void })
     rotate.mutate(Number(new FormData(event.currentTarget).get('overlap')));
   }
   return (
-    <Dialog title={`Rotate ${apiKey.name}`} close={close}>
+    <Dialog title={`Rotate ${apiKey.name}`} close={close} held={rotate.isPending || rotate.isSuccess}>
       {rotate.data ? (
         <Once
           secret={rotate.data.secret}
@@ -57,7 +57,7 @@ export function RotateKey({ apiKey, close }: { apiKey: Key; close: () => void })
             <Button type="submit" disabled={rotate.isPending}>
               Make the new key
             </Button>
-            <Button look="plain" onClick={close}>
+            <Button look="plain" disabled={rotate.isPending} onClick={close}>
               Not now
             </Button>
           </div>

@@ -42,7 +42,7 @@ export function ChangePerson({ person, close }: { person: Person; close: () => v
   const error = change.error ?? invite.error;
   const busy = change.isPending || invite.isPending;
   return (
-    <Dialog title={person.name} close={close}>
+    <Dialog title={person.name} close={close} held={busy || invite.isSuccess}>
       {invite.data ? (
         <InvitationLink invitation={invite.data.invitation} close={close} />
       ) : (

@@ -31,6 +31,7 @@ export function InvitePerson({ close }: { close: () => void }) {
     <Dialog
       title={invite.data ? `Invitation for ${invite.data.person.name}` : 'Invite a person'}
       close={close}
+      held={invite.isPending || invite.isSuccess}
     >
       {invite.data ? (
         <InvitationLink invitation={invite.data.invitation} close={close} />
@@ -44,7 +45,7 @@ export function InvitePerson({ close }: { close: () => void }) {
             <Button type="submit" disabled={invite.isPending}>
               Invite
             </Button>
-            <Button look="plain" onClick={close}>
+            <Button look="plain" disabled={invite.isPending} onClick={close}>
               Not now
             </Button>
           </div>

@@ -5,7 +5,6 @@ import { usePages } from '@/app/ui/data/queries';
 import { useCan } from '@/app/ui/data/whoami';
 import { Button } from '@/app/ui/form/Button';
 import { Crumb, PageHead } from '@/app/ui/frame/PageHead';
-import { Times } from '@/app/ui/frame/Times';
 import { Failure, Skeleton } from '@/app/ui/Notice';
 import { moment } from '@/app/ui/numbers';
 import { State } from '@/app/ui/State';
@@ -24,7 +23,7 @@ export function People() {
   const [open, setOpen] = useState<Person | 'invite' | null>(null);
   return (
     <>
-      <Crumb trail={[{ name: 'People' }]} note={<Times />} />
+      <Crumb trail={[{ name: 'People' }]} />
       <PageHead
         title="People"
         sub="Who may see and do what, by role."

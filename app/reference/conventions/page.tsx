@@ -85,8 +85,9 @@ export default function ConventionsPage() {
       <Convention title="Bench check of a blade" drawing={<BladeDrawing />}>
         <p>
           Read minus known. Minus means that the edge reads low, and would leave ground high. The correction
-          is what is to be added to the edge’s height, with the sign turned; none is offered before the
-          benchmark itself is proved.
+          is what is to be added to the edge’s height, with the sign turned. Prove the benchmark by the setup
+          before putting it in. None is offered for a gross error, for a difference that is an offset, on a
+          mark that is not trusted or was in the setup’s own fit, or from a setup that is not in force.
         </p>
       </Convention>
     </>

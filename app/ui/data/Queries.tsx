@@ -18,7 +18,11 @@ export function Queries({ open = false, children }: { open?: boolean; children: 
     () =>
       new QueryClient({
         queryCache: new QueryCache(open ? {} : { onError: toSignIn }),
-        defaultOptions: { queries: { retry: shouldRetry, staleTime: 10_000, networkMode: 'always' } },
+        defaultOptions: {
+          queries: { retry: shouldRetry, staleTime: 10_000, networkMode: 'always' },
+          // A change is made now or not at all: none waits unseen for the connection.
+          mutations: { networkMode: 'always' },
+        },
       }),
   );
   return <QueryClientProvider client={client}>{children}</QueryClientProvider>;

@@ -1,6 +1,7 @@
 'use client';
 
 import { type QueryClient, useInfiniteQuery, useQuery } from '@tanstack/react-query';
+import { useEffect } from 'react';
 import type { AnswerOf, Contract } from '@/openapi/contract';
 import { type Call, call, Refusal } from './call';
 
@@ -24,9 +25,18 @@ interface Listed {
 
 type ItemOf<C extends Contract> = AnswerOf<C> extends { data: (infer T)[] } ? T : never;
 
+interface Pace {
+  /** `false` waits. */
+  enabled?: boolean;
+  /** Milliseconds after which it is read again by itself. */
+  every?: number;
+}
+
 /** Reads a list page by page; `rows` holds all pages read so far. */
-export function usePages<C extends Contract>(path: C['path'], input: Call<C> = {}) {
+export function usePages<C extends Contract>(path: C['path'], input: Call<C> = {}, pace: Pace = {}) {
   const query = useInfiniteQuery({
+    enabled: pace.enabled ?? true,
+    refetchInterval: pace.every ?? false,
     queryKey: [...keyOf(path, input), 'pages'],
     queryFn: ({ pageParam }) =>
       call<C>('GET' as Uppercase<C['method']>, path, {
@@ -38,6 +48,16 @@ export function usePages<C extends Contract>(path: C['path'], input: Call<C> = {
   });
   const rows = (query.data?.pages ?? []).flatMap((page) => page.data) as ItemOf<C>[];
   return { ...query, rows };
+}
+
+/** Reads a list to its end by itself, or up to `most` rows; what remains is read on demand. */
+export function useAllPages<C extends Contract>(path: C['path'], input: Call<C>, most: number) {
+  const list = usePages<C>(path, input);
+  const { hasNextPage, isFetching, isError, fetchNextPage, rows } = list;
+  useEffect(() => {
+    if (hasNextPage && !isFetching && !isError && rows.length < most) fetchNextPage();
+  }, [hasNextPage, isFetching, isError, rows.length, most, fetchNextPage]);
+  return list;
 }
 
 /** After a change: everything read under these paths is read again. */

@@ -1,4 +1,4 @@
-import { COORDINATE, fixed } from '@/app/ui/numbers';
+import { COORDINATE, fixed, unitSign } from '@/app/ui/numbers';
 import { DeviationMark } from './DeviationMark';
 import { type GradeShot, isOutside } from './deviation';
 
@@ -17,6 +17,7 @@ export function CheckSection({
   layer: string;
 }) {
   const { designElevation, layerElevation, point, tolerance, deviation } = check;
+  const height = (elevation: number) => `${fixed(elevation, COORDINATE)} ${unitSign(check.units.length)}`;
   if (designElevation === null || layerElevation === null || deviation === null) return null;
   const top = Math.max(designElevation, layerElevation + tolerance.above, point.elevation);
   const bottom = Math.min(designElevation, layerElevation - tolerance.below, point.elevation);
@@ -26,7 +27,7 @@ export function CheckSection({
     <svg
       viewBox={`0 0 ${WIDTH} ${HEIGHT}`}
       role="img"
-      aria-label={`From the side: ${surface} at ${fixed(designElevation, COORDINATE)}, ${layer} at ${fixed(layerElevation, COORDINATE)}, ground at ${fixed(point.elevation, COORDINATE)}.`}
+      aria-label={`From the side: ${surface} at ${height(designElevation)}, ${layer} at ${height(layerElevation)}, ground at ${height(point.elevation)}.`}
       className="mb-4 block h-auto w-full rounded border border-rule bg-sheet"
     >
       <rect
@@ -37,22 +38,22 @@ export function CheckSection({
         fill="var(--rule)"
       />
       {surface === layer ? null : (
-        <Level y={y(designElevation)} label={`${surface} ${fixed(designElevation, COORDINATE)}`} dashed />
+        <Level y={y(designElevation)} label={`${surface} ${height(designElevation)}`} dashed />
       )}
       <Level
         y={y(layerElevation)}
         clearOf={y(layerElevation + tolerance.above)}
-        label={`${layer} ${fixed(layerElevation, COORDINATE)}`}
+        label={`${layer} ${height(layerElevation)}`}
       />
       <DeviationMark
-        x={WIDTH * 0.68}
+        x={WIDTH * 0.62}
         y={y(point.elevation)}
         high={deviation > 0}
         outside={isOutside(check)}
         size={7}
       />
-      <text x={WIDTH * 0.68 + 14} y={y(point.elevation) - 6} className="fill-ink text-[13px] font-semibold">
-        ground {fixed(point.elevation, COORDINATE)}
+      <text x={WIDTH * 0.62 + 14} y={y(point.elevation) - 6} className="fill-ink text-[13px] font-semibold">
+        ground {height(point.elevation)}
       </text>
     </svg>
   );

@@ -1,6 +1,17 @@
 import type { ControlState } from '@/app/ui/controlState';
 import { unitSign } from '@/app/ui/numbers';
-import { Grid, LABEL, NorthArrow, roundLength, ScaleBar, SMALL } from './PlanParts';
+import { placeLabels } from './labels';
+import {
+  Grid,
+  LABEL,
+  LETTER,
+  NorthArrow,
+  northPlace,
+  roundLength,
+  ScaleBar,
+  SMALL,
+  scaleRoom,
+} from './PlanParts';
 import { fitView, roundStep } from './scale';
 
 interface Mark {
@@ -20,6 +31,22 @@ export function ControlPlan({ marks }: { marks: readonly Mark[] }) {
   const view = fitView(marks, SIZE.width, SIZE.height, EDGE);
   const grid = roundStep(SIZE.width / 4 / view.scale);
   const unit = unitSign(marks[0].units.length);
+  const points = marks.map((mark) => ({ x: view.x(mark.easting), y: view.y(mark.northing) }));
+  const boxes = [
+    ...points.map(({ x, y }) => ({ x: x - 11, y: y - 12, width: 22, height: 22 })),
+    scaleRoom(grid * view.scale, SIZE),
+  ];
+  const north = northPlace({ boxes, segments: [] }, SIZE);
+  const places = placeLabels(
+    marks.map(({ name, status }, i) => ({
+      ...points[i],
+      gap: 13,
+      width: Math.max(name.length, status === 'trusted' ? 0 : status.length) * LETTER,
+      height: status === 'trusted' ? 17 : 30,
+    })),
+    { boxes: [...boxes, north], segments: [] },
+    SIZE,
+  );
   return (
     <figure className="rounded border border-rule bg-sheet">
       <svg
@@ -29,14 +56,10 @@ export function ControlPlan({ marks }: { marks: readonly Mark[] }) {
         className="block h-auto w-full"
       >
         <Grid view={view} step={grid} size={SIZE} />
-        {marks.map((mark) => {
-          const [x, y] = [view.x(mark.easting), view.y(mark.northing)];
+        {marks.map((mark, i) => {
+          const { x, y } = points[i];
+          const { x: hang, top, anchor } = places[i];
           const colour = COLOUR[mark.status];
-          const right = x < SIZE.width - 130;
-          const place = {
-            x: right ? x + 13 : x - 13,
-            textAnchor: right ? ('start' as const) : ('end' as const),
-          };
           return (
             <g key={mark.name}>
               <path d={`M${x} ${y - 8}l7 12h-14Z`} fill="var(--sheet)" stroke={colour} strokeWidth="1.8" />
@@ -45,18 +68,24 @@ export function ControlPlan({ marks }: { marks: readonly Mark[] }) {
               ) : (
                 <path d={`M${x - 11} ${y + 8}L${x + 11} ${y - 12}`} stroke={colour} strokeWidth="1.8" />
               )}
-              <text {...place} y={y + 1} className={LABEL}>
+              <text x={hang} y={top + 13} textAnchor={anchor} className={LABEL}>
                 {mark.name}
               </text>
               {mark.status === 'trusted' ? null : (
-                <text {...place} y={y + 15} fill={colour} className={`font-medium ${SMALL}`}>
+                <text
+                  x={hang}
+                  y={top + 28}
+                  textAnchor={anchor}
+                  fill={colour}
+                  className={`font-medium ${SMALL}`}
+                >
                   {mark.status}
                 </text>
               )}
             </g>
           );
         })}
-        <NorthArrow view={view} marks={marks} size={SIZE} />
+        <NorthArrow at={north} />
         <ScaleBar view={view} length={grid} unit={unit} size={SIZE} />
       </svg>
       <figcaption className="border-t border-rule px-3.5 py-2 text-right text-[13.5px] text-ink-second">

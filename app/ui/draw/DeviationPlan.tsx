@@ -1,7 +1,7 @@
 import { unitSign } from '@/app/ui/numbers';
 import { DeviationMark } from './DeviationMark';
 import { type GradeShot, isOutside } from './deviation';
-import { Grid, NorthArrow, roundLength, ScaleBar } from './PlanParts';
+import { Grid, NorthArrow, northPlace, roundLength, ScaleBar } from './PlanParts';
 import { fitView, roundStep } from './scale';
 
 const SIZE = { width: 660, height: 440 };
@@ -27,6 +27,12 @@ export function DeviationPlan({
   );
   const unit = unitSign(checks[0].units.length);
   const grid = roundStep(SIZE.width / 4 / view.scale);
+  const boxes = checks.map(({ point }) => ({
+    x: view.x(point.easting) - 8,
+    y: view.y(point.northing) - 8,
+    width: 16,
+    height: 16,
+  }));
   const high = checks.filter(({ deviation }) => (deviation ?? 0) > 0).length;
   const outside = checks.filter(isOutside).length;
 
@@ -70,7 +76,7 @@ export function DeviationPlan({
             />
           </g>
         ))}
-        <NorthArrow view={view} marks={checks.map(({ point }) => point)} size={SIZE} />
+        <NorthArrow at={northPlace({ boxes, segments: [] }, SIZE)} />
         <ScaleBar view={view} length={grid} unit={unit} size={SIZE} />
       </svg>
       <figcaption className="flex flex-wrap justify-between gap-x-4 border-t border-rule px-3.5 py-2 text-[13.5px] text-ink-second">

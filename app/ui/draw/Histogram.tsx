@@ -1,4 +1,5 @@
-import { fixed } from '@/app/ui/numbers';
+import type { LengthUnit } from '@/app/ui/numbers';
+import { gradeLabel, HistogramAxis } from './HistogramAxis';
 import { roundStep } from './scale';
 
 const WIDTH = 420;
@@ -34,7 +35,7 @@ export function Histogram({
 }: {
   values: readonly number[];
   tolerance: { below: number; above: number };
-  unit: string;
+  unit: LengthUnit;
 }) {
   const span = tolerance.below + tolerance.above;
   const reach = Math.max(...values, tolerance.above, ...values.map((v) => -v), tolerance.below);
@@ -48,7 +49,7 @@ export function Histogram({
     <svg
       viewBox={`0 0 ${WIDTH} ${HEIGHT}`}
       role="img"
-      aria-label={`Distribution of ${values.length} deviations, from ${label(bins[0].from)} to ${label(bins[bins.length - 1].to)} ${unit}; most lie about ${label(mode(bins))} ${unit}.`}
+      aria-label={`Distribution of ${values.length} deviations, from ${gradeLabel(bins[0].from, unit)} to ${gradeLabel(bins[bins.length - 1].to, unit)}; most lie about ${gradeLabel(mode(bins), unit)}.`}
       className="block h-auto w-full rounded border border-rule bg-sheet"
     >
       <rect
@@ -68,15 +69,7 @@ export function Histogram({
           fill={colour((from + to) / 2, tolerance)}
         />
       ))}
-      <path d={`M8 ${BASE}H${WIDTH - 8}`} stroke="var(--ink)" />
-      {[-tolerance.below, 0, tolerance.above].map((value) => (
-        <g key={value}>
-          <path d={`M${x(value)} ${BASE}v5`} stroke="var(--ink)" />
-          <text x={x(value)} y={BASE + 21} textAnchor="middle" className="fill-ink-second text-[13px]">
-            {label(value)}
-          </text>
-        </g>
-      ))}
+      <HistogramAxis x={x} y={BASE} width={WIDTH} tolerance={tolerance} unit={unit} />
     </svg>
   );
 }
@@ -89,9 +82,4 @@ function colour(middle: number, tolerance: { below: number; above: number }): st
 function mode(bins: readonly Bin[]): number {
   const { from, to } = bins.reduce((best, bin) => (bin.count > best.count ? bin : best));
   return (from + to) / 2;
-}
-
-function label(value: number): string {
-  const text = fixed(Math.abs(value), 2);
-  return Number(text) === 0 ? '0' : `${value > 0 ? 'C' : 'F'} ${text}`;
 }

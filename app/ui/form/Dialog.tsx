@@ -2,16 +2,16 @@
 
 import { type ReactNode, useEffect, useId, useRef } from 'react';
 
-/** A sheet over the page; Escape and the backdrop close it, focus returns to where it was. */
-export function Dialog({
-  title,
-  close,
-  children,
-}: {
+interface Props {
   title: string;
   close: () => void;
+  /** While something would be lost: Escape does nothing. */
+  held?: boolean;
   children: ReactNode;
-}) {
+}
+
+/** A sheet over the page; Escape closes it, focus returns to where it was. */
+export function Dialog({ title, close, held = false, children }: Props) {
   const element = useRef<HTMLDialogElement>(null);
   const id = useId();
   useEffect(() => {
@@ -21,8 +21,12 @@ export function Dialog({
     <dialog
       ref={element}
       aria-labelledby={id}
-      onClose={close}
-      className="m-auto w-[min(34rem,calc(100vw-2rem))] rounded border border-rule-strong bg-paper p-6 text-ink backdrop:bg-black/45"
+      onCancel={(event) => {
+        if (held) event.preventDefault();
+      }}
+      // Browsers close on a second Escape whatever was prevented.
+      onClose={() => (held ? element.current?.showModal() : close())}
+      className="m-auto w-[min(34rem,calc(100vw-2rem))] rounded border border-ink-third bg-raised p-6 text-ink shadow-2xl backdrop:bg-black/60"
     >
       <h2 id={id} className="mb-4 font-head text-2xl leading-none">
         {title}

@@ -7,12 +7,15 @@ import { useWhoami } from '@/app/ui/data/whoami';
 import type { Scope } from '@/openapi/scopes';
 import { Brand } from './Brand';
 import { Offline } from './Offline';
+import { OpenCount } from './OpenCount';
+import { PrintHead } from './PrintHead';
 import { ProjectSwitch } from './ProjectSwitch';
 import { SignOut } from './SignOut';
 import { ThemeSwitch } from './ThemeSwitch';
 
 const OF_A_PROJECT = [
   { path: 'setups', name: 'Setups' },
+  { path: 'withdrawals', name: 'Withdrawals' },
   { path: 'control', name: 'Control' },
   { path: 'grade', name: 'Grade' },
   { path: 'uploads', name: 'Uploads' },
@@ -35,7 +38,7 @@ export function Frame({ children }: { children: ReactNode }) {
   const { data: me, isError: isStranger } = useWhoami();
   // The library that lays out the API document brings a main part of its own.
   const Main = pathname === '/reference' ? 'div' : 'main';
-  const entry = (href: string, name: string) => (
+  const entry = (href: string, name: string, beside?: ReactNode) => (
     <li key={href}>
       <Link
         href={href}
@@ -43,11 +46,12 @@ export function Frame({ children }: { children: ReactNode }) {
         className="flex py-2 pr-3 font-medium text-ink-second no-underline hover:text-ink aria-[current]:font-semibold aria-[current]:text-ink max-md:border-b-[3px] max-md:border-transparent max-md:px-2 max-md:aria-[current]:border-mark md:-mr-px md:border-r-[3px] md:border-transparent md:aria-[current]:border-mark"
       >
         {name}
+        {beside}
       </Link>
     </li>
   );
   return (
-    <div className="min-h-screen md:grid md:grid-cols-[212px_minmax(0,1fr)]">
+    <div className="min-h-screen md:grid md:grid-cols-[212px_minmax(0,1fr)] print:block">
       <a
         href="#page"
         className="absolute top-2 left-2 z-20 -translate-y-20 rounded bg-ink px-4 py-2 font-semibold text-paper focus:translate-y-0"
@@ -63,13 +67,22 @@ export function Frame({ children }: { children: ReactNode }) {
             </div>
           </div>
           {isStranger ? <div className="md:h-8" /> : <ProjectSwitch projectId={projectId} />}
-          <nav aria-label="Sections" className="max-md:overflow-x-auto max-md:px-3">
-            <ul className="max-md:flex">
+          <nav aria-label="Sections" className="max-md:px-3">
+            <ul className="max-md:flex max-md:flex-wrap">
               {projectId
-                ? OF_A_PROJECT.map(({ path, name }) => entry(`/projects/${projectId}/${path}`, name))
+                ? OF_A_PROJECT.map(({ path, name }) =>
+                    entry(
+                      `/projects/${projectId}/${path}`,
+                      name,
+                      path === 'withdrawals' ? <OpenCount projectId={projectId} /> : null,
+                    ),
+                  )
                 : null}
               {projectId ? (
-                <li aria-hidden="true" className="my-2.5 mr-6 border-t border-rule max-md:hidden" />
+                <li
+                  aria-hidden="true"
+                  className="border-rule max-md:basis-full md:my-2.5 md:mr-6 md:border-t"
+                />
               ) : null}
               {OF_THE_HUB.filter(({ scope }) => !scope || me?.scopes.includes(scope)).map(({ path, name }) =>
                 entry(path, name),
@@ -83,7 +96,12 @@ export function Frame({ children }: { children: ReactNode }) {
           </div>
         </header>
       </div>
-      <Main id="page" tabIndex={-1} className="max-w-[1300px] px-5 pt-6 pb-14 outline-none md:px-10">
+      <Main
+        id="page"
+        tabIndex={-1}
+        className="max-w-[1300px] px-5 pt-6 pb-14 outline-none md:px-10 print:max-w-none print:p-0"
+      >
+        <PrintHead projectId={projectId} />
         <Offline />
         {children}
       </Main>

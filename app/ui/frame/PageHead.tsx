@@ -1,7 +1,8 @@
 import Link from 'next/link';
 import type { ReactNode } from 'react';
+import { Times } from './Times';
 
-/** The line above a page: where it is, and the units that hold for it. */
+/** The line above a page: where it is, and the units and the zone of time that hold for it. */
 export function Crumb({ trail, note }: { trail: { name: string; href?: string }[]; note?: ReactNode }) {
   return (
     <div className="mb-5 flex justify-between gap-6 border-b border-rule pb-2.5 text-[13.5px] text-ink-third">
@@ -19,7 +20,12 @@ export function Crumb({ trail, note }: { trail: { name: string; href?: string }[
           </span>
         ))}
       </nav>
-      {note ? <span className="text-right">{note}</span> : null}
+      <div className="flex flex-wrap justify-end gap-x-5 text-right">
+        {note ? <span>{note}</span> : null}
+        <span>
+          <Times />
+        </span>
+      </div>
     </div>
   );
 }

@@ -16,7 +16,7 @@ export function ProjectSwitch({ projectId }: { projectId: string | undefined }) 
   if (!projectId) {
     return (
       <p className="px-5 pb-3 md:px-0 md:py-5">
-        <Link href="/projects" className="font-semibold text-ink">
+        <Link href="/projects" className="font-semibold text-ink underline">
           Choose a project
         </Link>
       </p>

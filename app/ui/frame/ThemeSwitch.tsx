@@ -25,7 +25,7 @@ export function ThemeSwitch() {
   }
   return (
     <label className="flex items-center gap-2 text-[13.5px] text-ink-second">
-      Light
+      Theme
       <select
         suppressHydrationWarning
         value={theme}

@@ -1,6 +1,6 @@
 'use client';
 
-import { type ReactNode, useMemo, useState } from 'react';
+import { Fragment, type ReactNode, useMemo, useState } from 'react';
 import { Button } from '@/app/ui/form/Button';
 import { csvOf, save } from './csv';
 
@@ -15,6 +15,8 @@ export interface Column<R> {
   figures?: boolean;
   /** Left out on a narrow screen. */
   wide?: boolean;
+  /** On a narrow screen it stands under its row, across the whole width. */
+  below?: boolean;
 }
 
 interface Props<R> {
@@ -38,7 +40,10 @@ export function Table<R>({ caption, rows, columns, keyOf, file, more }: Props<R>
     setOrder((now) =>
       now?.column !== column ? { column, down: false } : now.down ? null : { column, down: true },
     );
-  const hide = (column: Column<R>) => (column.wide ? 'max-md:hidden' : '');
+  const hide = (column: Column<R>) => (column.wide || column.below ? 'max-md:hidden' : '');
+  const show = (column: Column<R>, row: R) => (column.cell ? column.cell(row) : column.value?.(row));
+  const below = columns.filter((column) => column.below);
+  const line = below.length > 0 ? 'border-rule md:border-b max-md:pb-0.5' : 'border-b border-rule';
   return (
     <div>
       <div className="overflow-x-auto">
@@ -51,7 +56,7 @@ export function Table<R>({ caption, rows, columns, keyOf, file, more }: Props<R>
                   key={column.name}
                   scope="col"
                   aria-sort={order?.column === i ? (order.down ? 'descending' : 'ascending') : undefined}
-                  className={`border-b-[1.5px] border-rule-strong px-2.5 pb-2 align-bottom max-md:px-1.5 font-head text-[13px] text-ink-second first:pl-0 last:pr-0 ${column.figures ? 'text-right' : 'text-left'} ${hide(column)}`}
+                  className={`border-b-[1.5px] border-rule-strong px-2.5 pb-2 align-bottom max-md:px-1.5 print:px-1.5 font-head text-[13px] text-ink-second first:pl-0 last:pr-0 ${column.figures ? 'text-right' : 'text-left'} ${hide(column)}`}
                 >
                   {column.value ? (
                     <button
@@ -73,16 +78,25 @@ export function Table<R>({ caption, rows, columns, keyOf, file, more }: Props<R>
           </thead>
           <tbody>
             {sorted.map((row) => (
-              <tr key={keyOf(row)} className="hover:bg-sheet">
-                {columns.map((column) => (
-                  <td
-                    key={column.name}
-                    className={`border-b border-rule px-2.5 py-2.5 align-middle max-md:px-1.5 max-md:text-[13.5px] first:pl-0 last:pr-0 ${column.figures ? 'text-right font-medium' : ''} ${hide(column)}`}
-                  >
-                    {column.cell ? column.cell(row) : column.value?.(row)}
-                  </td>
+              <Fragment key={keyOf(row)}>
+                <tr className="hover:bg-sheet">
+                  {columns.map((column) => (
+                    <td
+                      key={column.name}
+                      className={`px-2.5 py-2.5 align-middle max-md:px-1.5 max-md:text-[13.5px] first:pl-0 last:pr-0 print:px-1.5 print:py-1.5 print:text-[12px] ${line} ${column.figures ? 'text-right font-medium' : ''} ${hide(column)}`}
+                    >
+                      {show(column, row)}
+                    </td>
+                  ))}
+                </tr>
+                {below.map((column) => (
+                  <tr key={column.name} className="md:hidden">
+                    <td colSpan={columns.length} className="border-b border-rule pb-2.5">
+                      {show(column, row)}
+                    </td>
+                  </tr>
                 ))}
-              </tr>
+              </Fragment>
             ))}
           </tbody>
         </table>

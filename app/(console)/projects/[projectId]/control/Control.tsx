@@ -2,14 +2,14 @@
 
 import { useState } from 'react';
 import { CONTROL_MEANING, CONTROL_TONE, type ControlState } from '@/app/ui/controlState';
-import { usePages, useRead } from '@/app/ui/data/queries';
+import { useAllPages, usePages, useRead } from '@/app/ui/data/queries';
 import { useCan } from '@/app/ui/data/whoami';
 import { ControlPlan } from '@/app/ui/draw/ControlPlan';
 import { Select } from '@/app/ui/form/Select';
 import { Crumb, PageHead } from '@/app/ui/frame/PageHead';
 import { Ledger } from '@/app/ui/Ledger';
 import { Empty, Failure, Skeleton } from '@/app/ui/Notice';
-import { unitName } from '@/app/ui/numbers';
+import { fixed, unitName } from '@/app/ui/numbers';
 import { State } from '@/app/ui/State';
 import type * as controlContracts from '@/openapi/contracts/control';
 import type * as projectContracts from '@/openapi/contracts/projects';
@@ -17,9 +17,16 @@ import { ImportControl } from './ImportControl';
 import { Registry } from './Registry';
 
 const STATES = Object.keys(CONTROL_TONE) as ControlState[];
+/** Beyond this many points the first are drawn and counted, and the page says so. */
+const MOST_COUNTED = 2000;
 
 export function Control({ projectId }: { projectId: string }) {
   const [status, setStatus] = useState<ControlState | ''>('');
+  const all = useAllPages<typeof controlContracts.listControlPoints>(
+    '/projects/{projectId}/control-points',
+    { params: { projectId }, query: { limit: 200 } },
+    MOST_COUNTED,
+  );
   const project = useRead<typeof projectContracts.getProject>('/projects/{projectId}', {
     params: { projectId },
   });
@@ -28,7 +35,7 @@ export function Control({ projectId }: { projectId: string }) {
     query: { status: status || undefined, limit: 200 },
   });
   const mayWrite = useCan('control:write');
-  const error = list.error ?? project.error;
+  const error = all.error ?? list.error ?? project.error;
   return (
     <>
       <Crumb
@@ -37,7 +44,7 @@ export function Control({ projectId }: { projectId: string }) {
       />
       <PageHead title="Control" sub="Known points, with the trust they deserve. None is ever deleted." />
       {error ? (
-        <Failure error={error} retry={() => void [list, project].map((query) => query.refetch())} />
+        <Failure error={error} retry={() => void [all, list, project].map((query) => query.refetch())} />
       ) : list.isPending || !project.data ? (
         <Skeleton lines={8} />
       ) : (
@@ -55,10 +62,11 @@ export function Control({ projectId }: { projectId: string }) {
                 <div className="space-y-6">
                   <Ledger
                     title="How far it is trusted"
+                    note={all.hasNextPage ? `of the first ${fixed(all.rows.length, 0)} points` : undefined}
                     entries={STATES.map((state) => ({
                       name: CONTROL_MEANING[state],
                       value: <State tone={CONTROL_TONE[state]}>{state}</State>,
-                      beside: list.rows.filter((point) => point.status === state).length,
+                      beside: all.rows.filter((point) => point.status === state).length,
                     }))}
                   />
                   <div className="print:hidden">

@@ -14,6 +14,7 @@ import type * as contracts from '@/openapi/contracts/control';
 import { CONTROL_COLUMNS, CONTROL_NEEDED } from '@/openapi/controlTable';
 import { PreviewTable } from './PreviewTable';
 import { type Preview, readPreview } from './readPreview';
+import { sayProblemOfFile } from './rowWords';
 
 interface Order {
   length: LengthUnit;
@@ -71,8 +72,6 @@ export function ImportControl({ projectId, projectUnit }: { projectId: string; p
       ) : null}
       {preview ? (
         <form onSubmit={submit} className="mt-6 space-y-5">
-          <PreviewTable preview={preview} receipt={bring.data ?? null} refused={refused} />
-          {bring.error ? <Failure error={bring.error} /> : null}
           {bring.data ? (
             <p role="status" className="font-medium">
               {bring.data.counts.created} new, {bring.data.counts.revised} in a new version,{' '}
@@ -81,7 +80,10 @@ export function ImportControl({ projectId, projectUnit }: { projectId: string; p
                 ? ' Mend the refused rows in the file and drop it again: what stands is not brought in twice.'
                 : ''}
             </p>
-          ) : (
+          ) : null}
+          <PreviewTable preview={preview} receipt={bring.data ?? null} refused={refused} />
+          {bring.error ? <Failure error={bring.error} sayItem={sayProblemOfFile} /> : null}
+          {bring.data ? null : (
             <>
               <div className="max-w-[18rem]">
                 <Select

@@ -1,8 +1,10 @@
+import { Fragment } from 'react';
 import { State } from '@/app/ui/State';
 import type { AnswerOf } from '@/openapi/contract';
 import type * as contracts from '@/openapi/contracts/control';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 import type { Preview } from './readPreview';
+import { sayProblem } from './rowWords';
 
 type Receipt = AnswerOf<typeof contracts.createControlPoints>;
 
@@ -33,7 +35,7 @@ export function PreviewTable({
   return (
     <div>
       <section
-        className="max-h-[28rem] overflow-auto"
+        className={`overflow-auto ${answered ? '' : 'max-h-[28rem]'}`}
         // biome-ignore lint/a11y/noNoninteractiveTabindex: what scrolls must be reachable by keyboard.
         tabIndex={0}
         aria-label={`Rows of ${preview.name}`}
@@ -43,7 +45,7 @@ export function PreviewTable({
           <thead>
             <tr>
               <th scope="col" className={heads}>
-                Line
+                Row
               </th>
               {preview.header.map((name) => (
                 <th key={name} scope="col" className={heads}>
@@ -51,7 +53,7 @@ export function PreviewTable({
                 </th>
               ))}
               {answered ? (
-                <th scope="col" className={heads}>
+                <th scope="col" className={`max-md:hidden ${heads}`}>
                   Outcome
                 </th>
               ) : null}
@@ -60,32 +62,30 @@ export function PreviewTable({
           <tbody>
             {sorted.slice(0, MOST_SHOWN).map(({ line, cells }) => {
               const problems = problemsOf(line);
-              const outcome = outcomes.get(`/rows/${line}`);
+              const outcome = answered ? (
+                <RowOutcome point={outcomes.get(`/rows/${line}`)} problems={problems} />
+              ) : null;
+              const soft = problems.length > 0 ? 'bg-fail-soft' : '';
+              const cell = `py-2 pr-3 ${answered ? 'border-rule md:border-b' : 'border-b border-rule'}`;
               return (
-                <tr key={line} className={problems.length > 0 ? 'bg-fail-soft' : undefined}>
-                  <td className="border-b border-rule py-2 pr-3 text-ink-third">{line}</td>
-                  {preview.header.map((name, i) => (
-                    <td key={name} className="border-b border-rule py-2 pr-3">
-                      {cells[i] ?? ''}
-                    </td>
-                  ))}
+                <Fragment key={line}>
+                  <tr className={soft}>
+                    <td className={`text-ink-third ${cell}`}>{line}</td>
+                    {preview.header.map((name, i) => (
+                      <td key={name} className={cell}>
+                        {cells[i] ?? ''}
+                      </td>
+                    ))}
+                    {answered ? <td className={`max-md:hidden ${cell}`}>{outcome}</td> : null}
+                  </tr>
                   {answered ? (
-                    <td className="border-b border-rule py-2 pr-3">
-                      {problems.length > 0 ? (
-                        <>
-                          <State tone="fail">refused</State>
-                          {problems.map((problem) => (
-                            <span key={`${problem.pointer}${problem.code}`} className="block text-[13.5px]">
-                              {problem.detail} {problem.fix}
-                            </span>
-                          ))}
-                        </>
-                      ) : outcome ? (
-                        <State tone="pass">{`${outcome.outcome}, version ${outcome.version}`}</State>
-                      ) : null}
-                    </td>
+                    <tr className={`md:hidden ${soft}`}>
+                      <td colSpan={preview.header.length + 1} className="border-b border-rule pr-3 pb-2.5">
+                        {outcome}
+                      </td>
+                    </tr>
                   ) : null}
-                </tr>
+                </Fragment>
               );
             })}
           </tbody>
@@ -97,4 +97,26 @@ export function PreviewTable({
       </p>
     </div>
   );
+}
+
+function RowOutcome({
+  point,
+  problems,
+}: {
+  point: Receipt['points'][number] | undefined;
+  problems: readonly ProblemItem[];
+}) {
+  if (problems.length > 0) {
+    return (
+      <>
+        <State tone="fail">refused</State>
+        {problems.map((problem) => (
+          <span key={`${problem.pointer}${problem.code}`} className="block text-[13.5px]">
+            {sayProblem(problem)}
+          </span>
+        ))}
+      </>
+    );
+  }
+  return point ? <State tone="pass">{`${point.outcome}, version ${point.version}`}</State> : null;
 }

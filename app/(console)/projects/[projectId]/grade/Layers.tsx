@@ -4,9 +4,9 @@ import Link from 'next/link';
 import { usePages, useRead } from '@/app/ui/data/queries';
 import { OffsetSection } from '@/app/ui/draw/OffsetSection';
 import { Crumb, PageHead } from '@/app/ui/frame/PageHead';
-import { acceptedBy, allowed } from '@/app/ui/layerWords';
+import { acceptedBy, allowed, liesAt, signedOffset } from '@/app/ui/layerWords';
 import { Empty, Failure, Skeleton } from '@/app/ui/Notice';
-import { signed, unitName, unitSign } from '@/app/ui/numbers';
+import { unitName } from '@/app/ui/numbers';
 import { State } from '@/app/ui/State';
 import { Table } from '@/app/ui/table/Table';
 import type * as designContracts from '@/openapi/contracts/design';
@@ -65,10 +65,10 @@ export function Layers({ projectId }: { projectId: string }) {
                     <OffsetSection offset={layer.offset} />
                   </span>
                   <span>
-                    <span className="block font-medium">
-                      {signed(layer.offset, 2)} {unitSign(layer.units.length)}
+                    <span className="block font-medium whitespace-nowrap">
+                      {signedOffset(layer.offset, layer.units.length)}
                     </span>
-                    <span className="block text-[13.5px] text-ink-second">{layer.offsetText}</span>
+                    <span className="block text-[13.5px] text-ink-second">{liesAt(layer)}</span>
                   </span>
                 </span>
               ),
@@ -96,11 +96,12 @@ export function Layers({ projectId }: { projectId: string }) {
 
 /** The verdict of one layer, read beside the list. */
 function Stands({ projectId, layer }: { projectId: string; layer: string }) {
-  const { data } = useRead<typeof designContracts.getLayerSummary>(
+  const { data, isError } = useRead<typeof designContracts.getLayerSummary>(
     '/projects/{projectId}/layers/{layerName}/summary',
     { params: { projectId, layerName: layer } },
   );
-  if (!data) return null;
+  if (isError) return <span className="text-ink-third">could not be read</span>;
+  if (!data) return <span role="status" aria-label="Reading" />;
   if (data.count === 0) return <State tone="plain">no check yet</State>;
   return (
     <>

@@ -8,21 +8,35 @@ import { Select } from '@/app/ui/form/Select';
 import { Empty, Failure, Skeleton } from '@/app/ui/Notice';
 import { moment } from '@/app/ui/numbers';
 import { State } from '@/app/ui/State';
+import { endOf, SETUP_END } from '@/app/ui/setupEnd';
 import { Table } from '@/app/ui/table/Table';
 import type * as contracts from '@/openapi/contracts/setups';
 import type { Setup } from '@/openapi/schemas/setup';
 
 type Row = z.output<typeof Setup>;
-type Verdict = Row['verdict'];
+type VerdictWord = Row['verdict'];
 
 /** In force until when, or why not. */
-export function forceOf(setup: Row): string {
-  if (setup.status === 'released' && setup.release) return `until ${moment(setup.release.validUntil)}`;
-  return setup.status === 'computed' ? 'not released' : setup.status;
+function forceOf({ status, validUntil }: Row): string {
+  if (status === 'computed') return 'not released';
+  if (validUntil === null || (status !== 'released' && status !== 'expired')) return `no, ${status}`;
+  return `${status === 'expired' ? 'ran out' : 'until'} ${moment(validUntil)}`;
+}
+
+/** The verdict; or, once nobody may work from the setup any more, what ended it, and the verdict as what it was. */
+function Verdict({ setup }: { setup: Row }) {
+  const end = endOf(setup);
+  if (!end) return <State tone={setup.verdict}>{setup.verdict}</State>;
+  return (
+    <>
+      <State tone={SETUP_END[end].tone}>{end}</State>
+      <span className="block text-[13.5px] whitespace-nowrap text-ink-second">was {setup.verdict}</span>
+    </>
+  );
 }
 
 export function Setups({ projectId }: { projectId: string }) {
-  const [verdict, setVerdict] = useState<Verdict | ''>('');
+  const [verdict, setVerdict] = useState<VerdictWord | ''>('');
   const list = usePages<typeof contracts.listSetups>('/projects/{projectId}/setups', {
     params: { projectId },
     query: { verdict: verdict || undefined },
@@ -34,7 +48,7 @@ export function Setups({ projectId }: { projectId: string }) {
         <Select
           label="Verdict"
           value={verdict}
-          onChange={(event) => setVerdict(event.target.value as Verdict | '')}
+          onChange={(event) => setVerdict(event.target.value as VerdictWord | '')}
         >
           <option value="">all</option>
           <option value="pass">pass</option>
@@ -82,11 +96,11 @@ export function Setups({ projectId }: { projectId: string }) {
             {
               name: 'Verdict',
               value: (setup) => setup.verdict,
-              cell: (setup) => <State tone={setup.verdict}>{setup.verdict}</State>,
+              cell: (setup) => <Verdict setup={setup} />,
             },
             {
               name: 'On the radio',
-              wide: true,
+              below: true,
               value: (setup) => setup.radio,
               cell: (setup) => <span className="block max-w-[52ch] text-ink-second">{setup.radio}</span>,
             },

@@ -98,8 +98,8 @@ export function PointSheet({ projectId, pointName }: { projectId: string; pointN
                       cell: (row) => moment(row.observedAt),
                     },
                     { name: 'Version', wide: true, figures: true, value: (row) => row.version },
-                    figure('Northing', (row) => row.residual.northing),
                     figure('Easting', (row) => row.residual.easting),
+                    figure('Northing', (row) => row.residual.northing),
                     figure('Elevation', (row) => row.residual.elevation),
                   ]}
                 />
@@ -107,7 +107,9 @@ export function PointSheet({ projectId, pointName }: { projectId: string; pointN
             )}
           </section>
           <section>
-            <h2 className="mb-3 font-head text-[19px]">Versions</h2>
+            <h2 className="mb-3 font-head text-[19px]">
+              Versions <span className="font-text text-[13.5px] font-normal text-ink-second">in {unit}</span>
+            </h2>
             <Table
               caption={`Versions of ${pointName}`}
               rows={versions}
@@ -124,16 +126,16 @@ export function PointSheet({ projectId, pointName }: { projectId: string; pointN
                   ),
                 },
                 {
-                  name: 'Northing',
-                  figures: true,
-                  value: (v) => v.northing,
-                  cell: (v) => fixed(v.northing, COORDINATE),
-                },
-                {
                   name: 'Easting',
                   figures: true,
                   value: (v) => v.easting,
                   cell: (v) => fixed(v.easting, COORDINATE),
+                },
+                {
+                  name: 'Northing',
+                  figures: true,
+                  value: (v) => v.northing,
+                  cell: (v) => fixed(v.northing, COORDINATE),
                 },
                 {
                   name: 'Elevation',
@@ -148,7 +150,7 @@ export function PointSheet({ projectId, pointName }: { projectId: string; pointN
         <div className="space-y-9">
           <Ledger
             title="Published"
-            note={`± one standard deviation, ${now.sigmaSource === 'stated' ? 'as stated' : 'the project’s default'}`}
+            note={`in ${unit}, ± one standard deviation, ${now.sigmaSource === 'stated' ? 'as stated' : 'the project’s default'}`}
             entries={[
               length('Easting', now.easting, now.sigma.horizontal),
               length('Northing', now.northing, now.sigma.horizontal),

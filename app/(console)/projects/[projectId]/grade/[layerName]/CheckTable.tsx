@@ -9,11 +9,11 @@ interface Props {
   checks: readonly GradeShot[];
   layerName: string;
   chosen: string | null;
-  choose: (id: string) => void;
+  choose: (id: string, button: HTMLElement) => void;
   more: { has: boolean; busy: boolean; read: () => void };
 }
 
-/** Every check with its label; a press on its name shows it in the plan. */
+/** Every check with its label; a press on its name shows it in the plan and beside it. */
 export function CheckTable({ checks, layerName, chosen, choose, more }: Props) {
   const unit = unitSign(checks[0].units.length);
   const length = (name: string, pick: (check: GradeShot) => number | null) => ({
@@ -46,7 +46,7 @@ export function CheckTable({ checks, layerName, chosen, choose, more }: Props) {
               <button
                 type="button"
                 aria-pressed={check.id === chosen}
-                onClick={() => choose(check.id)}
+                onClick={(event) => choose(check.id, event.currentTarget)}
                 className="cursor-pointer font-semibold underline aria-pressed:text-mark"
               >
                 {check.clientId}

@@ -1,12 +1,13 @@
 'use client';
 
-import { useEffect, useState } from 'react';
-import { usePages, useRead } from '@/app/ui/data/queries';
+import { useRef, useState } from 'react';
+import { bringIntoView } from '@/app/ui/bringIntoView';
+import { useAllPages, useRead } from '@/app/ui/data/queries';
 import { DeviationPlan } from '@/app/ui/draw/DeviationPlan';
 import { Histogram } from '@/app/ui/draw/Histogram';
 import { type Fact, Facts } from '@/app/ui/Facts';
 import { Crumb, PageHead } from '@/app/ui/frame/PageHead';
-import { acceptedBy, allowed } from '@/app/ui/layerWords';
+import { acceptedBy, allowed, liesAt } from '@/app/ui/layerWords';
 import { Empty, Failure, Skeleton } from '@/app/ui/Notice';
 import { fixed, signed, unitName, unitSign } from '@/app/ui/numbers';
 import { Radio } from '@/app/ui/Radio';
@@ -33,15 +34,25 @@ export function LayerSheet({ projectId, layerName }: { projectId: string; layerN
     '/projects/{projectId}/layers/{layerName}/summary',
     { params },
   );
-  const list = usePages<typeof gradeContracts.listGradeChecks>('/projects/{projectId}/grade-checks', {
-    params: { projectId },
-    query: { layer: layerName, limit: 200 },
-  });
-  const { hasNextPage, isFetching, fetchNextPage, rows } = list;
+  const list = useAllPages<typeof gradeContracts.listGradeChecks>(
+    '/projects/{projectId}/grade-checks',
+    { params: { projectId }, query: { layer: layerName, limit: 200 } },
+    MOST_DRAWN,
+  );
+  const { hasNextPage, fetchNextPage, rows } = list;
   const [chosen, setChosen] = useState<string | null>(null);
-  useEffect(() => {
-    if (hasNextPage && !isFetching && rows.length < MOST_DRAWN) fetchNextPage();
-  }, [hasNextPage, isFetching, rows.length, fetchNextPage]);
+  const panel = useRef<HTMLElement>(null);
+  const [from, setFrom] = useState<HTMLElement | null>(null);
+  function chooseInPlan(id: string) {
+    setChosen(id);
+    setFrom(null);
+  }
+  /** What is chosen in the table is shown far above it: eyes and focus go there, and can come back. */
+  function chooseInTable(id: string, button: HTMLElement) {
+    setChosen(id);
+    setFrom(button);
+    bringIntoView(panel.current);
+  }
 
   const error = layer.error ?? summary.error ?? list.error;
   if (error)
@@ -61,7 +72,7 @@ export function LayerSheet({ projectId, layerName }: { projectId: string; layerN
         title={layerName}
         sub={
           <>
-            <strong className="font-semibold text-ink">{layer.data.offsetText}</strong>, allowed{' '}
+            <strong className="font-semibold text-ink">{liesAt(layer.data)}</strong>, allowed{' '}
             {allowed(layer.data)}
             {layer.data.tolerance.citation ? ` (${layer.data.tolerance.citation})` : ''}, version{' '}
             {layer.data.version}; {acceptedBy(layer.data)}
@@ -88,17 +99,25 @@ export function LayerSheet({ projectId, layerName }: { projectId: string; layerN
         <>
           <Facts facts={factsOf(summary.data, unit)} />
           <div className="grid gap-9 lg:grid-cols-[minmax(0,1.55fr)_minmax(280px,1fr)]">
-            <DeviationPlan checks={placed} chosen={shown?.id ?? null} choose={setChosen} />
+            <DeviationPlan checks={placed} chosen={shown?.id ?? null} choose={chooseInPlan} />
             <div className="space-y-7">
               <section>
                 <h2 className="mb-2 font-head text-[19px]">Deviation from the layer</h2>
                 <Histogram
                   values={placed.flatMap(({ deviation }) => (deviation === null ? [] : [deviation]))}
                   tolerance={layer.data.tolerance}
-                  unit={unit}
+                  unit={layer.data.units.length}
                 />
               </section>
-              {shown ? <OneCheck check={shown} layer={layer.data} projectId={projectId} /> : null}
+              {shown ? (
+                <OneCheck
+                  panel={panel}
+                  check={shown}
+                  layer={layer.data}
+                  projectId={projectId}
+                  back={from ? () => from.focus() : undefined}
+                />
+              ) : null}
             </div>
           </div>
         </>
@@ -110,7 +129,7 @@ export function LayerSheet({ projectId, layerName }: { projectId: string; layerN
             checks={checks}
             layerName={layerName}
             chosen={shown?.id ?? null}
-            choose={setChosen}
+            choose={chooseInTable}
             more={{ has: hasNextPage, busy: list.isFetchingNextPage, read: fetchNextPage }}
           />
         ) : null}

@@ -1,4 +1,5 @@
 import Link from 'next/link';
+import type { Ref } from 'react';
 import type * as z from 'zod';
 import { CheckSection } from '@/app/ui/draw/CheckSection';
 import type { GradeShot } from '@/app/ui/draw/deviation';
@@ -13,10 +14,15 @@ export function OneCheck({
   check,
   layer,
   projectId,
+  panel,
+  back,
 }: {
   check: GradeShot;
   layer: z.output<typeof Layer>;
   projectId: string;
+  panel: Ref<HTMLElement>;
+  /** To the row of the table that it was chosen in. */
+  back?: () => void;
 }) {
   const unit = unitSign(check.units.length);
   const height = (name: string, value: number | null): Entry[] =>
@@ -25,7 +31,13 @@ export function OneCheck({
       : [{ name, value: <Figure label={name} value={fixed(value, COORDINATE)} unit={unit} />, beside: unit }];
   const project = `/projects/${projectId}`;
   return (
-    <section aria-live="polite">
+    <section
+      ref={panel}
+      tabIndex={-1}
+      aria-label={`Check ${check.clientId}`}
+      aria-live="polite"
+      className="scroll-mt-6 outline-none"
+    >
       <CheckSection check={check} surface={surfaceWord(layer)} layer={layer.name} />
       <Ledger
         title={check.clientId}
@@ -71,6 +83,15 @@ export function OneCheck({
           </Link>
         </li>
       </ul>
+      {back ? (
+        <button
+          type="button"
+          onClick={back}
+          className="mt-2 cursor-pointer text-[13.5px] font-semibold underline print:hidden"
+        >
+          Back to the table
+        </button>
+      ) : null}
     </section>
   );
 }

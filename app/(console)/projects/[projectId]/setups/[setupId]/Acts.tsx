@@ -4,7 +4,7 @@ import { useState } from 'react';
 import { Caution } from '@/app/ui/Caution';
 import { useCan } from '@/app/ui/data/whoami';
 import { Button } from '@/app/ui/form/Button';
-import { moment, signed, unitSign } from '@/app/ui/numbers';
+import { InForce } from './InForce';
 import { RefitDialog } from './RefitDialog';
 import { ReleaseDialog } from './ReleaseDialog';
 import type { ShownSetup } from './SetupSheet';
@@ -16,7 +16,7 @@ export function Acts({ setup, projectId }: { setup: ShownSetup; projectId: strin
   const mayRelease = useCan('setups:release');
   const mayWithdraw = useCan('setups:withdraw');
   const mayRefit = useCan('setups:write');
-  const { release, status, verdict, units } = setup;
+  const { release, status, verdict } = setup;
   const releasable = verdict !== 'fail' && status !== 'withdrawn' && status !== 'superseded';
   const withdrawable = release !== null && status !== 'withdrawn';
   const close = () => setOpen(null);
@@ -24,15 +24,7 @@ export function Acts({ setup, projectId }: { setup: ShownSetup; projectId: strin
     <section>
       <h2 className="mb-3 font-head text-[19px]">Release to a machine</h2>
       <Caution sentences={setup.cautions} />
-      {release ? (
-        <p className="mt-3 text-ink-second">
-          Released {moment(release.releasedAt)} by {release.releasedBy}
-          {release.machine ? ` to ${release.machine}` : ''}
-          {release.layer ? `, ${release.layer}` : ''}
-          {release.offset === null ? '' : ` with ${signed(release.offset, 2)} ${unitSign(units.length)}`},
-          until {moment(release.validUntil)}.
-        </p>
-      ) : null}
+      <InForce setup={setup} projectId={projectId} />
       <div className="mt-4 flex flex-wrap gap-3">
         {mayRelease ? (
           <Button disabled={!releasable} onClick={() => setOpen('release')}>

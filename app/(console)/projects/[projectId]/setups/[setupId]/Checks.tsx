@@ -12,7 +12,12 @@ export function Checks({ setup }: { setup: ShownSetup }) {
   const rows = setup.checks.flatMap((check) => check.targets.map((target) => ({ check, target })));
   return (
     <section>
-      <h2 className="mb-3 font-head text-[19px]">Checks</h2>
+      <h2 className="mb-3 font-head text-[19px]">
+        Checks{' '}
+        <span className="font-text text-[13.5px] font-normal text-ink-second">
+          as shot minus as published, in {unit}, ± one standard deviation
+        </span>
+      </h2>
       {rows.length === 0 ? (
         <p className="text-ink-second">No mark outside the fit was shot, and nothing since the setup.</p>
       ) : (

@@ -1,6 +1,6 @@
 import { Figure } from '@/app/ui/Figure';
 import { type Entry, Ledger } from '@/app/ui/Ledger';
-import { COORDINATE, fixed, sexagesimal, unitSign } from '@/app/ui/numbers';
+import { COORDINATE, fixed, sexagesimal, stated, unitSign } from '@/app/ui/numbers';
 import { State } from '@/app/ui/State';
 import type { ShownSetup } from './SetupSheet';
 
@@ -15,7 +15,7 @@ export function Standing({ setup }: { setup: ShownSetup }) {
   return (
     <Ledger
       title="Where it stands"
-      note="± one standard deviation"
+      note={`in ${unit}, ± one standard deviation`}
       entries={[
         length('Easting', position.easting, sd.easting),
         length('Northing', position.northing, sd.northing),
@@ -34,8 +34,13 @@ export function Standing({ setup }: { setup: ShownSetup }) {
 export function Fit({ setup }: { setup: ShownSetup }) {
   const { fit, geometry, accuracyAtWork: work, errorEllipse, units, faceErrors } = setup;
   const unit = unitSign(units.length);
-  const within = (value: number | null, limit: number) =>
-    value === null ? 'none' : `${fixed(value, COORDINATE)} of ${fixed(limit, COORDINATE)}`;
+  const within = (name: string, value: number | null, limit: number): Entry => {
+    if (value === null) return { name, value: 'none', beside: unit };
+    const text = `${fixed(value, COORDINATE)} of ${stated(limit, units.length)}`;
+    return value > limit
+      ? { name, value: <State tone="hold">{text}</State>, beside: `${unit}, over` }
+      : { name, value: text, beside: unit };
+  };
   const entries: Entry[] = [
     { name: 'Spread of the fit, σ₀', value: fixed(fit.sigma0, 2), beside: 'of 1' },
     { name: 'Spare observations', value: fit.degreesOfFreedom },
@@ -54,16 +59,8 @@ export function Fit({ setup }: { setup: ShownSetup }) {
       value: `${fixed(errorEllipse.semiMajor, COORDINATE)} × ${fixed(errorEllipse.semiMinor, COORDINATE)}`,
       beside: unit,
     },
-    {
-      name: `At ${fixed(work.radius, 0)} ${unit}, in plan`,
-      value: within(work.horizontal, work.limits.horizontal),
-      beside: unit,
-    },
-    {
-      name: `At ${fixed(work.radius, 0)} ${unit}, in height`,
-      value: within(work.vertical, work.limits.vertical),
-      beside: unit,
-    },
+    within(`At ${fixed(work.radius, 0)} ${unit}, in plan`, work.horizontal, work.limits.horizontal),
+    within(`At ${fixed(work.radius, 0)} ${unit}, in height`, work.vertical, work.limits.vertical),
   ];
   if (faceErrors) {
     entries.push({ name: 'Collimation, 2c', value: `${fixed(faceErrors.twoCollimationArcsec, 1)}″` });

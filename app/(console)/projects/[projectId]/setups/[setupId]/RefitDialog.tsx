@@ -9,7 +9,7 @@ import { Button } from '@/app/ui/form/Button';
 import { Dialog } from '@/app/ui/form/Dialog';
 import { Field } from '@/app/ui/form/Field';
 import { Failure } from '@/app/ui/Notice';
-import { COORDINATE, fixed, unitSign } from '@/app/ui/numbers';
+import { COORDINATE, fixed, signed, unitSign } from '@/app/ui/numbers';
 import type * as contracts from '@/openapi/contracts/setups';
 import type { ShownSetup } from './SetupSheet';
 
@@ -45,7 +45,7 @@ export function RefitDialog({
     refit.mutate({ exclude, reason: String(form.get('reason')) });
   }
   return (
-    <Dialog title={`Refit ${setup.station}`} close={close}>
+    <Dialog title={`Refit ${setup.station}`} close={close} held={refit.isPending}>
       <form onSubmit={submit} className="space-y-4">
         <fieldset>
           <legend className="mb-1 font-head text-[13px] text-ink-second">Leave out</legend>
@@ -56,10 +56,7 @@ export function RefitDialog({
             >
               <input type="checkbox" name="target" value={target ?? ''} className="size-4 accent-mark" />
               <span className="font-semibold">{target}</span>
-              <span className="text-ink-second">
-                off by {fixed(Math.hypot(residual.easting ?? 0, residual.northing ?? 0), COORDINATE)}{' '}
-                {unitSign(setup.units.length)} in plan
-              </span>
+              <span className="text-ink-second">{offBy(residual, unitSign(setup.units.length))}</span>
             </label>
           ))}
         </fieldset>
@@ -69,11 +66,24 @@ export function RefitDialog({
           <Button type="submit" disabled={refit.isPending}>
             Refit without them
           </Button>
-          <Button look="plain" onClick={close}>
+          <Button look="plain" disabled={refit.isPending} onClick={close}>
             Keep it
           </Button>
         </div>
       </form>
     </Dialog>
   );
+}
+
+type Residual = ShownSetup['targets'][number]['residual'];
+
+/** How far a target is from its control, as far as its shots tell. */
+function offBy({ easting, northing, elevation }: Residual, unit: string): string {
+  const plan =
+    easting === null || northing === null
+      ? null
+      : `${fixed(Math.hypot(easting, northing), COORDINATE)} ${unit} in plan`;
+  const height = elevation === null ? null : `${signed(elevation, COORDINATE)} ${unit} in height`;
+  const told = [plan, height].filter((part) => part !== null);
+  return told.length > 0 ? `off by ${told.join(', ')}` : 'its shots fix no place to compare';
 }

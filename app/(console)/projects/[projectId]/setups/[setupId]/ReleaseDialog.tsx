@@ -9,6 +9,7 @@ import { Button } from '@/app/ui/form/Button';
 import { Dialog } from '@/app/ui/form/Dialog';
 import { Field } from '@/app/ui/form/Field';
 import { Select } from '@/app/ui/form/Select';
+import { liesAt } from '@/app/ui/layerWords';
 import { Failure } from '@/app/ui/Notice';
 import type { SentOf } from '@/openapi/contract';
 import type * as design from '@/openapi/contracts/design';
@@ -58,7 +59,7 @@ export function ReleaseDialog({
     });
   }
   return (
-    <Dialog title={`Release ${setup.station}`} close={close}>
+    <Dialog title={`Release ${setup.station}`} close={close} held={release.isPending}>
       <form onSubmit={submit} className="space-y-4">
         <div className="grid gap-4 sm:grid-cols-2">
           <Field
@@ -77,7 +78,7 @@ export function ReleaseDialog({
             <option value="">none</option>
             {layers.map((layer) => (
               <option key={layer.name} value={layer.name}>
-                {layer.name}: {layer.offsetText}
+                {layer.name}: {liesAt(layer)}
               </option>
             ))}
           </Select>
@@ -103,7 +104,7 @@ export function ReleaseDialog({
           <Button type="submit" disabled={release.isPending}>
             Release
           </Button>
-          <Button look="plain" onClick={close}>
+          <Button look="plain" disabled={release.isPending} onClick={close}>
             Not now
           </Button>
         </div>

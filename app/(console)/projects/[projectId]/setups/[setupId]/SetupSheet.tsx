@@ -8,13 +8,14 @@ import { Failure, Skeleton } from '@/app/ui/Notice';
 import { moment, unitName } from '@/app/ui/numbers';
 import { Radio } from '@/app/ui/Radio';
 import { ReasonList } from '@/app/ui/ReasonList';
-import { Stamp } from '@/app/ui/Stamp';
 import type * as contracts from '@/openapi/contracts/setups';
 import type { Setup } from '@/openapi/schemas/setup';
 import { Acts } from './Acts';
 import { Checks } from './Checks';
+import { Explanations } from './Explanations';
 import { Fit, Standing } from './Ledgers';
 import { Provenance } from './Provenance';
+import { SetupStamp } from './SetupStamp';
 import { Targets } from './Targets';
 
 export type ShownSetup = z.output<typeof Setup>;
@@ -43,10 +44,9 @@ export function SetupSheet({ projectId, setupId }: { projectId: string; setupId:
             {data.method === 'resection' ? 'Resection' : data.method} on {marks} targets with{' '}
             {data.instrument}, {moment(data.observedAt)}, posted by{' '}
             <code className="font-code text-[13px]">{data.submittedBy}</code>
-            {data.status === 'computed' ? null : `, ${data.status}`}
           </>
         }
-        aside={<Stamp verdict={data.verdict} reason={stampReason(data)} />}
+        aside={<SetupStamp setup={data} projectId={projectId} />}
       >
         <Radio>{data.radio}</Radio>
       </PageHead>
@@ -61,6 +61,7 @@ export function SetupSheet({ projectId, setupId }: { projectId: string; setupId:
         <Targets setup={data} />
         <div className="grid gap-9 lg:grid-cols-[minmax(0,1.55fr)_minmax(280px,1fr)]">
           <div className="space-y-9">
+            <Explanations setup={data} />
             <ReasonList reasons={data.reasons} notes={data.notes} />
             <Checks setup={data} />
             <Provenance setup={data} projectId={projectId} />
@@ -70,12 +71,4 @@ export function SetupSheet({ projectId, setupId }: { projectId: string; setupId:
       </div>
     </>
   );
-}
-
-/** The first reason, short enough for a stamp. */
-function stampReason({ verdict, toleranceClass, reasons }: ShownSetup): string {
-  if (verdict === 'pass') return `for ${toleranceClass}`;
-  const [first] = reasons;
-  const sentence = first?.text.split(/[;:.](?:\s|$)/)[0] ?? '';
-  return sentence.length > 64 ? `${sentence.slice(0, 62)}…` : sentence;
 }

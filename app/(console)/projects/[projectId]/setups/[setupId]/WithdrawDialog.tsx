@@ -1,6 +1,7 @@
 'use client';
 
 import { useMutation, useQueryClient } from '@tanstack/react-query';
+import Link from 'next/link';
 import type { FormEvent } from 'react';
 import { call } from '@/app/ui/data/call';
 import { refresh } from '@/app/ui/data/queries';
@@ -28,22 +29,41 @@ export function WithdrawDialog({
         body: { note },
       }),
     onSuccess: () =>
-      refresh(client, '/projects/{projectId}/setups/{setupId}', '/projects/{projectId}/setups'),
+      refresh(
+        client,
+        '/projects/{projectId}/setups/{setupId}',
+        '/projects/{projectId}/setups',
+        '/projects/{projectId}/acknowledgements',
+        '/audit-entries',
+      ),
   });
   function submit(event: FormEvent<HTMLFormElement>) {
     event.preventDefault();
     withdraw.mutate(String(new FormData(event.currentTarget).get('note') ?? '').trim() || undefined);
   }
   return (
-    <Dialog title={`Withdraw ${setup.station}`} close={close}>
+    <Dialog title={`Withdraw ${setup.station}`} close={close} held={withdraw.isPending}>
       {withdraw.data ? (
         <div className="space-y-4">
           <p className="font-semibold text-fail">{withdraw.data.caution}</p>
-          <ul className="list-disc pl-5">
-            {withdraw.data.acknowledgements.map(({ id, text }) => (
-              <li key={id}>{text}</li>
-            ))}
-          </ul>
+          {withdraw.data.acknowledgements.length > 0 ? (
+            <>
+              <ul className="list-disc pl-5">
+                {withdraw.data.acknowledgements.map(({ id, text }) => (
+                  <li key={id}>{text}</li>
+                ))}
+              </ul>
+              <p>
+                Each crew’s answer is kept under{' '}
+                <Link href={`/projects/${projectId}/withdrawals`} className="underline">
+                  Withdrawals
+                </Link>
+                .
+              </p>
+            </>
+          ) : (
+            <p>It was released to no machine: no crew has to answer.</p>
+          )}
           <Button onClick={close}>Done</Button>
         </div>
       ) : (
@@ -55,7 +75,7 @@ export function WithdrawDialog({
             <Button type="submit" look="danger" disabled={withdraw.isPending}>
               Withdraw
             </Button>
-            <Button look="plain" onClick={close}>
+            <Button look="plain" disabled={withdraw.isPending} onClick={close}>
               Keep it
             </Button>
           </div>

@@ -9,7 +9,7 @@ import { Button } from '@/app/ui/form/Button';
 import { Failure } from '@/app/ui/Notice';
 import type * as contracts from '@/openapi/contracts/uploads';
 import type { ProblemItem } from '@/openapi/schemas/problem';
-import { leftOver } from './mended';
+import { isAmbiguous, leftOver } from './mended';
 
 interface Props {
   projectId: string;
@@ -49,6 +49,12 @@ export function Mend({ projectId, clientId, text, refused, close }: Props) {
             Only what was refused is sent, under an id of its own; what was accepted stands. Correct what was
             written wrongly, never what was observed.
           </p>
+          {isAmbiguous(refused) ? (
+            <p className="mb-3 max-w-[62ch] font-medium">
+              A key stands twice, and only you can tell which value is true: take the other one out. Both are
+              still in the text.
+            </p>
+          ) : null}
           <textarea
             id={id}
             name="document"

@@ -1,4 +1,6 @@
+import { applyEdits, format, type Node } from 'jsonc-parser';
 import type { ProblemItem } from '@/openapi/schemas/problem';
+import { treeOf } from './places';
 
 /** An id for another try: st-7, st-7.2, st-7.3. */
 export function nextClientId(clientId: string): string {
@@ -7,26 +9,40 @@ export function nextClientId(clientId: string): string {
 }
 
 /**
- * What is left to be sent: the document with its refused items alone, under an id of its own. A body that is no JSON
- * is given back as it is.
+ * What is left to be sent: the document with its refused items alone, under an id of its own. Every item is written as
+ * it came: of a key that stands twice both are left in, and a number keeps its digits. A body that is no JSON is given
+ * back as it is.
  */
 export function leftOver(text: string, clientId: string | null, refused: readonly ProblemItem[]): string {
-  let document: Record<string, unknown>;
-  try {
-    document = JSON.parse(text);
-  } catch {
-    return text;
-  }
-  if (typeof document !== 'object' || document === null || Array.isArray(document)) return text;
+  const tree = isJson(text) ? treeOf(text) : undefined;
+  if (tree?.type !== 'object') return text;
   const wanted = new Set(refused.map(({ pointer }) => pointer.split('/').slice(0, 3).join('/')));
   const ofItems = [...wanted].every((pointer) => /^\/\w+\/\d+$/.test(pointer));
-  const entries = Object.entries(document).map(([name, value]) => [
-    name,
-    ofItems && Array.isArray(value) ? value.filter((_, i) => wanted.has(`/${name}/${i}`)) : value,
-  ]);
-  const left = Object.fromEntries(
-    entries.filter(([, value]) => !(Array.isArray(value) && value.length === 0)),
-  );
-  if (clientId !== null) left.clientId = nextClientId(clientId);
-  return JSON.stringify(left, null, 2);
+  const raw = ({ offset, length }: Node) => text.slice(offset, offset + length);
+  const written = (tree.children ?? []).flatMap(({ children }) => {
+    const [key, value] = children ?? [];
+    if (!key || !value) return [];
+    if (key.value === 'clientId' && clientId !== null)
+      return [`${raw(key)}: ${JSON.stringify(nextClientId(clientId))}`];
+    if (value.type !== 'array') return [`${raw(key)}: ${raw(value)}`];
+    const items = (value.children ?? []).filter((_, i) => !ofItems || wanted.has(`/${key.value}/${i}`));
+    return items.length === 0 ? [] : [`${raw(key)}: [${items.map(raw).join()}]`];
+  });
+  const left = `{${written.join()}}`;
+  return applyEdits(left, format(left, undefined, { tabSize: 2, insertSpaces: true, eol: '\n' }));
+}
+
+/** The tree alone would pass over what is broken. */
+function isJson(text: string): boolean {
+  try {
+    JSON.parse(text);
+    return true;
+  } catch {
+    return false;
+  }
+}
+
+/** Whether somebody has to choose between values of one key before the hub can take what is left. */
+export function isAmbiguous(refused: readonly ProblemItem[]): boolean {
+  return refused.some(({ code }) => code === 'duplicate_key');
 }
