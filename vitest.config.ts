@@ -8,7 +8,7 @@ export default defineConfig({
     globalSetup: ['tests/setup/global.ts'],
     pool: 'forks',
     maxWorkers: 2,
-    testTimeout: 20_000,
-    hookTimeout: 30_000,
+    testTimeout: 60_000,
+    hookTimeout: 60_000,
   },
 });

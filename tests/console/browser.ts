@@ -41,7 +41,7 @@ export async function openDesk(
     if (!answer.ok()) throw new Error(await answer.text());
   }
   const page = await context.newPage();
-  page.setDefaultTimeout(8_000);
+  page.setDefaultTimeout(20_000);
   const complaints: string[] = [];
   page.on('pageerror', (error) => complaints.push(`${page.url()}: ${error.message}`));
   page.on('console', (message) => {

@@ -123,7 +123,7 @@ function Subject({
   projectId: string | null;
 }) {
   const text = UUID.test(subject) ? (
-    <code title={subject} className="font-code text-[13px]">
+    <code title={subject} className="font-code text-[13px] whitespace-nowrap">
       …{subject.slice(-8)}
     </code>
   ) : (
