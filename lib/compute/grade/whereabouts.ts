@@ -53,11 +53,16 @@ export function whereabouts(lot: readonly PlanPlace[], some: readonly number[]):
     ['west side', ({ east }) => east < 0],
     ['middle', ({ east, north }) => east === 0 && north === 0],
   ];
-  for (const [part, isIn] of parts) {
-    const strays = at.filter((place) => !isIn(place)).map(({ index }) => index);
-    if (some.length - strays.length >= SHARE * some.length) return { part, strays };
-  }
-  return { part: null, strays: [...some] };
+  const fitting = parts
+    .map(([part, isIn]) => ({ part, strays: at.filter((place) => !isIn(place)).map(({ index }) => index) }))
+    .filter(({ strays }) => some.length - strays.length >= SHARE * some.length);
+  const [first] = fitting;
+  if (!first) return { part: null, strays: [...some] };
+  // A corner lies on two sides and says more than either; of two sides the fuller, and neither where they are equal.
+  if (first.part.endsWith('corner')) return first;
+  const [fullest, second] = fitting.sort((a, b) => a.strays.length - b.strays.length);
+  const undecided = second?.strays.length === fullest.strays.length;
+  return undecided ? { part: null, strays: [...some] } : fullest;
 }
 
 /** On which side of the middle of a lot a place lies along an axis: −1, 0 near the middle, 1; null without a reach. */
