@@ -1,3 +1,4 @@
+import { setTimeout as pause } from 'node:timers/promises';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { withClient } from './fixtures/database';
 import { expectProblem } from './fixtures/problems';
@@ -31,8 +32,8 @@ describe('events', () => {
     const { body } = await query(parameters).expect(200);
     return body as { data: Event[]; nextCursor: string };
   };
-  /** Everything after a cursor, page by page. */
-  const follow = async (after?: string, limit = 50, further: Record<string, string> = {}) => {
+  /** Everything that is told by now after a cursor, page by page. */
+  const told = async (after?: string, limit = 50, further: Record<string, string> = {}) => {
     const found: Event[] = [];
     let cursor = after;
     for (;;) {
@@ -41,6 +42,18 @@ describe('events', () => {
       found.push(...data);
       cursor = nextCursor;
     }
+  };
+  /** Waits until what was written so far is told: until then a transaction of any suite on this server is older. */
+  const settled = () =>
+    withClient(site.hub.superuserUrl, async (client) => {
+      const written = await client.query('select pg_current_xact_id()::text as xid');
+      const passed = 'select pg_snapshot_xmin(pg_current_snapshot()) > $1::xid8 as passed';
+      while (!(await client.query(passed, [written.rows[0].xid])).rows[0].passed) await pause(5);
+    });
+  /** Everything that was written so far after a cursor. */
+  const follow = async (...asked: Parameters<typeof told>) => {
+    await settled();
+    return told(...asked);
   };
   const types = (events: Event[]) => events.map(({ type }) => type);
 
@@ -113,6 +126,7 @@ describe('events', () => {
   it('are only those of the projects that a key is bound to', async () => {
     const other = await newSite(site.admin, 'Bound');
     const bound = site.as(await site.newKey(['events:read'], [other.projectId]));
+    await settled();
     const { body } = await bound.get('/events?limit=200').expect(200);
     expect(new Set(body.data.map((e: Event) => e.projectId))).toEqual(new Set([other.projectId]));
     expectProblem(await bound.get(`/events?projectId=${site.projectId}`), 'not_found');
@@ -142,7 +156,7 @@ describe('events', () => {
         }
         await late.query('commit');
         // While the first is still open the second is not told yet: a cursor behind it would skip the first.
-        const during = await follow(cursor);
+        const during = await told(cursor);
         expect(during.found).toEqual([]);
         await early.query(insert('third'));
         await early.query('commit');

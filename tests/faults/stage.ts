@@ -32,6 +32,7 @@ export async function setStage(name: string, { quiet = false } = {}) {
   return {
     database,
     hub,
+    key,
     projectId,
     sender: new Sender(projectId, key),
     sql,

@@ -35,6 +35,14 @@ describe('a transaction that is broken off', () => {
   const standing = () => reckon(stage.sender.ledger, stage.projectId, stage.sql);
   const close = (statement?: string) => closeBarrier(stage.database.superuserUrl, statement);
 
+  async function endSessions(): Promise<void> {
+    await stage.sql(
+      `select pg_terminate_backend(pid) from pg_stat_activity
+        where datname = current_database() and usename = 'hubtack_app'`,
+    );
+    await stage.untilLeft();
+  }
+
   function expectUnavailable(answer: Sent): void {
     expectProblem(answer, 'unavailable');
     expect(Number(answer.headers['retry-after'])).toBeGreaterThan(0);
@@ -121,11 +129,14 @@ describe('a transaction that is broken off', () => {
 
   it('is none where a session ends between transactions: the next request has another', async () => {
     expect((await read()).status).toBe(200);
-    await stage.sql(
-      `select pg_terminate_backend(pid) from pg_stat_activity
-        where datname = current_database() and usename = 'hubtack_app'`,
-    );
-    await stage.untilLeft();
+    await endSessions();
     for (const { status } of await Promise.all([read(), read(), read()])) expect(status).toBe(200);
+  });
+
+  it('is not promised where the server no longer keeps what it acknowledges: the hub is not ready', async () => {
+    await stage.sql('alter database fault_transactions set synchronous_commit = off');
+    await endSessions();
+    const answer = await fetch(`${stage.hub.url}/api/health/ready`);
+    expect([answer.status, await answer.json()]).toEqual([503, { status: 'unavailable' }]);
   });
 });
