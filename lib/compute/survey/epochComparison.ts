@@ -1,0 +1,37 @@
+import type { Ellipse } from '@/lib/compute/adjustment/ellipse';
+
+/** How one common point fared between two epochs. */
+export interface PointDisplacement {
+  name: string;
+  /** Later minus earlier, m, in the datum of the points that stayed; null where either epoch lacks it. */
+  easting: number | null;
+  northing: number | null;
+  elevation: number | null;
+  /** Of the displacement, 3 × 3 row by row, m²; zero where null. */
+  covariance: Float64Array;
+  ellipse95: Ellipse;
+  /** dᵀQ⁻¹d of the point alone, with its degrees of freedom and the critical value at 95 %. */
+  value: number;
+  degreesOfFreedom: number;
+  critical: number;
+  /** Probability that so large a displacement comes about by the errors of the observations alone. */
+  probability: number;
+  /** `moved` in the order found by the congruence test; else it is part of the datum of the comparison. */
+  moved: boolean;
+}
+
+/** Two epochs of a network compared by the congruence of their common points. */
+export interface EpochComparison {
+  /** All common points at once: dᵀQ⁺d/h against F(h, ν) or χ²(h)/h. */
+  congruence: { value: number; critical: number; degreesOfFreedom: number; passed: boolean };
+  /** The same for those that stayed, after the moved ones were taken out of the datum. */
+  remaining: { value: number; critical: number; degreesOfFreedom: number; passed: boolean };
+  /** Pooled σ₀ of both epochs where either global test failed high, else 1: in the covariances. */
+  scale: number;
+  points: readonly PointDisplacement[];
+  /** In the order in which they were found. */
+  moved: readonly string[];
+  /** Points of only one epoch. */
+  onlyBefore: readonly string[];
+  onlyAfter: readonly string[];
+}
