@@ -219,7 +219,7 @@ export const REQUEST_PROBLEMS = {
   nothing_accepted: problem(
     422,
     'Nothing in it could be accepted',
-    'Every item was refused; the errors list says why. What arrived is kept.',
+    'Every item was refused; the errors list says why. The bytes of an upload are kept, whatever becomes of them.',
     'Mend the places listed, then send it again.',
   ),
   idempotency_mismatch: problem(
