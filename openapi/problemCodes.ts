@@ -478,6 +478,18 @@ export const ITEM_PROBLEMS = {
     'A blade is checked against a known elevation.',
     'Bring in the benchmark’s elevation.',
   ),
+  forecast_too_large: problem(
+    422,
+    'A forecast of too many places or sights',
+    'A forecast is computed while its sender waits.',
+    'Widen the spacing, narrow the extent, shorten maximumRange or name the targets.',
+  ),
+  candidate_on_mark: problem(
+    422,
+    'A candidate place on a mark',
+    'A sight shorter than 2 m cannot be measured, and the place is the mark’s own.',
+    'Move the candidate by some metres, or leave that mark out of the targets.',
+  ),
   surface_unknown: problem(
     422,
     'No such surface',

@@ -9,6 +9,7 @@ import * as people from './people';
 import * as projects from './projects';
 import * as record from './record';
 import * as sessions from './sessions';
+import * as setupForecasts from './setupForecasts';
 import * as setups from './setups';
 import * as uploads from './uploads';
 
@@ -22,6 +23,7 @@ const modules = [
   control,
   uploads,
   setups,
+  setupForecasts,
   design,
   grade,
   record,

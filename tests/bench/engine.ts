@@ -1,3 +1,4 @@
+import { type ForecastTask, forecastSetup } from '@/lib/compute/survey/forecast';
 import { DEFAULT_ACCURACY } from '@/lib/compute/survey/instrument';
 import type { ControlMark, Shot } from '@/lib/compute/survey/shots';
 import { fitStation } from '@/lib/compute/survey/stationFit';
@@ -55,20 +56,52 @@ export const tasks: SetupTask[] = Array.from({ length: VARIANTS }, (_, seed) => 
   notes: [],
 }));
 
-/** Runs `work` on one task after the other for a while; how many a second. */
-function perSecond(seconds: number, work: (task: SetupTask) => void): number {
+/** Eight marks around a field of cells 6 m apart, as a forecast of 2,500 cells has them. */
+const forecast: ForecastTask = {
+  targets: Array.from({ length: 8 }, (_, i): ControlMark => {
+    const azimuth = (i * Math.PI) / 4;
+    return {
+      name: `HT-${i + 1}`,
+      version: 1,
+      easting: 150 + 180 * Math.sin(azimuth),
+      northing: 150 + 180 * Math.cos(azimuth),
+      elevation: 100 + i,
+      horizontalSigma: MARK_SIGMA,
+      verticalSigma: MARK_SIGMA,
+      status: 'trusted',
+    };
+  }),
+  plan: { faces: ['left', 'right'], sets: 1, kinds: ['direction', 'zenith', 'distance'], targetHeight: 0 },
+  sight: { shortest: 2, longest: 1000 },
+  accuracy,
+  surroundings: DEFAULT_SURROUNDINGS,
+  atmosphereKnown: true,
+  limits,
+};
+const CELLS_A_SIDE = 50;
+
+/** Runs `work` on one number after the other for a while; how many a second. */
+function perSecond(seconds: number, work: (number: number) => void): number {
   const began = performance.now();
   let done = 0;
-  while (performance.now() - began < seconds * 1000) work(tasks[done++ % VARIANTS]);
+  while (performance.now() - began < seconds * 1000) work(done++);
   return done / ((performance.now() - began) / 1000);
 }
 
 /** Station, statistics, every mark left out in turn, and the verdict. */
 export function setupsPerSecond(seconds: number): number {
-  return perSecond(seconds, computeSetup);
+  return perSecond(seconds, (i) => computeSetup(tasks[i % VARIANTS]));
 }
 
 /** The same without the verdict. */
 export function fitsPerSecond(seconds: number): number {
-  return perSecond(seconds, fitStation);
+  return perSecond(seconds, (i) => fitStation(tasks[i % VARIANTS]));
+}
+
+/** Cells of a forecast's map, eight targets in both faces. */
+export function forecastCellsPerSecond(seconds: number): number {
+  return perSecond(seconds, (i) => {
+    const [column, row] = [i % CELLS_A_SIDE, Math.floor(i / CELLS_A_SIDE) % CELLS_A_SIDE];
+    forecastSetup({ easting: 6 * column, northing: 6 * row, axis: 101.6 }, forecast);
+  });
 }

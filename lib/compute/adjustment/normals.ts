@@ -1,4 +1,4 @@
-import { factor, solveLower, solveUpper } from './cholesky';
+import { factor, inverseFromFactor, solveLower, solveUpper } from './cholesky';
 import type { AdjustmentModel } from './model';
 
 /**
@@ -112,19 +112,33 @@ export class NormalEquations {
    * @throws SingularError where the rest does not determine the shared unknowns
    */
   stepWithout(block: number, fixed = -1): Float64Array {
+    const dx = new Float64Array(this.g);
+    const s = this.factoredWithout(block, fixed, dx);
+    solveLower(s, this.g, dx);
+    solveUpper(s, this.g, dx);
+    return dx;
+  }
+
+  /**
+   * Cofactors of the shared unknowns when the rows of `block` are not there, (S − Sᵦ)⁻¹ (shared × shared). Needs
+   * `build` at the present point; parameters and errors as of `stepWithout`.
+   */
+  cofactorsWithout(block: number, fixed = -1): Float64Array {
+    return inverseFromFactor(this.factoredWithout(block, fixed, new Float64Array(this.g)), this.g);
+  }
+
+  /** Cholesky factor of S − Sᵦ; `t` receives t − tᵦ. */
+  private factoredWithout(block: number, fixed: number, t: Float64Array): Float64Array {
     const { g } = this;
     const s = new Float64Array(g * g);
-    const dx = new Float64Array(g);
-    this.reduce(s, dx, block);
+    this.reduce(s, t, block);
     if (fixed >= 0) {
       for (let i = 0; i < g; i++) s[i * g + fixed] = s[fixed * g + i] = 0;
       s[fixed * g + fixed] = this.gDiagonal[fixed] = 1;
-      dx[fixed] = 0;
+      t[fixed] = 0;
     }
     factor(s, g, 0, this.gDiagonal);
-    solveLower(s, g, dx);
-    solveUpper(s, g, dx);
-    return dx;
+    return s;
   }
 
   /** L of a block's D = LLᵀ (after `build`). */

@@ -42,7 +42,8 @@ function shift(model: StationModel, solution: Solution, block: number, step: Flo
   return { horizontal: Math.hypot(moved(EASTING), moved(NORTHING)), vertical: moved(AXIS) };
 }
 
-function orSingular<T>(attempt: () => T): T | SingularError {
+/** What an attempt gives, or which unknown it leaves undetermined. */
+export function orSingular<T>(attempt: () => T): T | SingularError {
   try {
     return attempt();
   } catch (error) {

@@ -10,7 +10,7 @@ import { type SightGeometry, sightGeometry } from './geometry';
 import { type MarkShift, shiftsWithout } from './leaveOneOut';
 import { type Point, polarPoint, polarPointAtElevation, STATION_UNKNOWNS, type Station } from './polarPoint';
 import type { ControlMark } from './shots';
-import { adjustStation, type StationInput } from './stationAdjustment';
+import { type AdjustedStation, adjustStation, type StationInput } from './stationAdjustment';
 import { AXIS, EASTING, NORTHING, ORIENTATION, REFRACTION, type StationModel } from './stationModel';
 import type { Surroundings } from './surroundings';
 
@@ -73,9 +73,13 @@ export interface StationFit {
  * @throws StationError where the shots do not determine a station
  */
 export function fitStation(input: StationInput): StationFit {
+  return describeStation(adjustStation(input));
+}
+
+/** Statistics of an adjusted station, with every mark left out in turn. */
+export function describeStation(adjusted: AdjustedStation): StationFit {
+  const { input, model, solution, erections, readings } = adjusted;
   const { control, surroundings } = input;
-  const adjusted = adjustStation(input);
-  const { model, solution, erections, readings } = adjusted;
   const cofactors = new Cofactors(solution);
   const statistics = reliability(solution, cofactors);
   const test = globalTest(solution.weightedSquares, solution.degreesOfFreedom);

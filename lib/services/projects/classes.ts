@@ -1,7 +1,8 @@
-import { and, asc, eq, inArray } from 'drizzle-orm';
+import { and, asc, eq, type InferSelectModel, inArray } from 'drizzle-orm';
 import type * as z from 'zod';
 import { toleranceClasses } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
+import type { SetupLimits } from '@/lib/compute/survey/verdict';
 import type { LengthUnit } from '@/lib/compute/units/table';
 import { invalid } from '@/lib/problem';
 import { Lengths } from '@/lib/services/lengths';
@@ -63,6 +64,17 @@ export function classRows(
       citation: c.citation ?? null,
     };
   });
+}
+
+/** What a class asks of a setup, as the engine takes it. */
+export function classLimits(
+  row: Omit<InferSelectModel<typeof toleranceClasses>, 'organizationId' | 'projectId' | 'name' | 'position'>,
+): SetupLimits {
+  return {
+    residual: { horizontal: row.residualHorizontal, vertical: row.residualVertical },
+    work: { radius: row.workRadius, horizontal: row.workHorizontal, vertical: row.workVertical },
+    checkRequired: row.checkRequired,
+  };
 }
 
 /** The classes of several projects, each project's in its own order. */

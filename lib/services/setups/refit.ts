@@ -8,6 +8,7 @@ import { invalid, invalidItems, Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { asMark, byNames, currentControl } from '@/lib/services/control/load';
 import { Lengths } from '@/lib/services/lengths';
+import { classLimits } from '@/lib/services/projects/classes';
 import { loadProject } from '@/lib/services/projects/load';
 import { record } from '@/lib/services/record';
 import type { JsonOf, ParamsOf, QueryOf } from '@/openapi/contract';
@@ -109,12 +110,7 @@ async function currentLimits({ tenant, caller }: VerbContext, { setup, result }:
         eq(toleranceClasses.name, setup.toleranceClass),
       ),
     );
-  if (!row) return result.result.limits;
-  return {
-    residual: { horizontal: row.residualHorizontal, vertical: row.residualVertical },
-    work: { radius: row.workRadius, horizontal: row.workHorizontal, vertical: row.workVertical },
-    checkRequired: row.checkRequired,
-  };
+  return row ? classLimits(row) : result.result.limits;
 }
 
 async function write(
