@@ -1,4 +1,4 @@
-import { meanFaces, type Reading, type ReadingKind } from './faces';
+import { type MeanReading, meanFaces, meanOf } from './faces';
 import type { InstrumentAccuracy } from './instrument';
 import { polarCovariance, polarJacobian, polarPoint, STATION_UNKNOWNS, type Station } from './polarPoint';
 import type { ControlMark, Shot } from './shots';
@@ -113,33 +113,6 @@ export function outcome(difference: number, uncertainty: number, tolerance: numb
   if (Math.abs(difference) > tolerance) return 'over';
   if (2 * uncertainty > tolerance) return 'notCapable';
   return Math.abs(difference) <= 2 * uncertainty ? 'agreed' : 'disagrees';
-}
-
-interface MeanReading {
-  value: number;
-  sigma: number;
-  /** Some of it was read in one face only. */
-  single: boolean;
-}
-
-/** Weighted mean of the sets of one kind. */
-function meanOf(readings: readonly Reading[], kind: ReadingKind): MeanReading | null {
-  const own = readings.filter((reading) => reading.kind === kind);
-  if (own.length === 0) return null;
-  let weights = 0;
-  let shift = 0;
-  for (const { value, sigma } of own) {
-    const weight = 1 / (sigma * sigma);
-    weights += weight;
-    const difference = value - own[0].value;
-    shift +=
-      weight * (kind === 'distance' ? difference : Math.atan2(Math.sin(difference), Math.cos(difference)));
-  }
-  return {
-    value: own[0].value + shift / weights,
-    sigma: 1 / Math.sqrt(weights),
-    single: own.some((reading) => reading.face !== 0),
-  };
 }
 
 /** Adds the mark's own variance and takes off twice its covariance with the polar point. */

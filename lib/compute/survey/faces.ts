@@ -95,7 +95,7 @@ export function meanFaces(shots: readonly Shot[], accuracy: InstrumentAccuracy, 
   return { erections, readings, faceErrors };
 }
 
-type MeanReading = Pick<Reading, 'value' | 'sigma' | 'face'>;
+type SetMean = Pick<Reading, 'value' | 'sigma' | 'face'>;
 
 function meanDirection(left: Shot[], right: Shot[], accuracy: InstrumentAccuracy) {
   const l = left.flatMap((shot) => shot.direction ?? []);
@@ -117,7 +117,7 @@ function meanCircle(left: number[], right: number[], stated: number) {
   const r = mean(right.map((value) => wrapDifference(value - origin)));
   const both = left.length > 0 && right.length > 0;
   const fromOrigin = both ? (l + r) / 2 : left.length > 0 ? l : r;
-  const reading: MeanReading = {
+  const reading: SetMean = {
     value: wrapTurn(origin + fromOrigin),
     sigma: circleSigma(stated, left.length, right.length),
     face: both ? 0 : left.length > 0 ? 1 : -1,
@@ -125,11 +125,38 @@ function meanCircle(left: number[], right: number[], stated: number) {
   return { reading, difference: both ? l - r : null };
 }
 
-function meanDistance(shots: Shot[], accuracy: InstrumentAccuracy, ppm: number | null): MeanReading | null {
+function meanDistance(shots: Shot[], accuracy: InstrumentAccuracy, ppm: number | null): SetMean | null {
   const values = shots.flatMap((shot) => (shot.distance ? trueSlopeDistance(shot.distance, ppm) : []));
   if (values.length === 0) return null;
   const value = mean(values);
   return { value, sigma: distanceSigma(accuracy, value) / Math.sqrt(values.length), face: 0 };
+}
+
+/** The readings of one kind to one reflector, meaned. */
+export interface MeanReading {
+  value: number;
+  sigma: number;
+  /** Some of it was read in one face only. */
+  single: boolean;
+}
+
+/** Weighted mean of the sets of one kind. */
+export function meanOf(readings: readonly Reading[], kind: ReadingKind): MeanReading | null {
+  const own = readings.filter((reading) => reading.kind === kind);
+  if (own.length === 0) return null;
+  let weights = 0;
+  let shift = 0;
+  for (const { value, sigma } of own) {
+    const weight = 1 / (sigma * sigma);
+    weights += weight;
+    const difference = value - own[0].value;
+    shift += weight * (kind === 'distance' ? difference : wrapDifference(difference));
+  }
+  return {
+    value: own[0].value + shift / weights,
+    sigma: 1 / Math.sqrt(weights),
+    single: own.some((reading) => reading.face !== 0),
+  };
 }
 
 function mean(values: readonly number[]): number {
