@@ -35,3 +35,6 @@ export const ARCSECOND = Math.PI / 648000;
 
 /** Metres in one millimetre, for the constants that instruments state in millimetres. */
 export const MILLIMETRE = 0.001;
+
+/** Metres in a statute mile of 5280 international feet, for limits that are stated per mile. */
+export const MILE = 5280 * LENGTH.ft;
