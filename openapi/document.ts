@@ -20,6 +20,7 @@ const TAGS: Record<string, string> = {
   Setups: 'Computed setups: verdict, release, withdrawal.',
   'Surfaces and layers': 'The design that ground is checked against.',
   Grade: 'Checks of ground and of blades.',
+  Levelling: 'Level runs, their closure, and tests of the levels.',
   Record: 'What happened and who did it.',
 };
 

@@ -475,7 +475,7 @@ export const ITEM_PROBLEMS = {
   benchmark_without_elevation: problem(
     422,
     'The benchmark has no elevation',
-    'A blade is checked against a known elevation.',
+    'A blade is checked against a known elevation, and a level run starts from one.',
     'Bring in the benchmark’s elevation.',
   ),
   forecast_too_large: problem(
@@ -489,6 +489,48 @@ export const ITEM_PROBLEMS = {
     'A candidate place on a mark',
     'A sight shorter than 2 m cannot be measured, and the place is the mark’s own.',
     'Move the candidate by some metres, or leave that mark out of the targets.',
+  ),
+  level_book_incomplete: problem(
+    422,
+    'A reading is missing in the level book',
+    'A run begins with a backsight, turns on points with a foresight and a backsight, and ends with a foresight.',
+    'Send the reading; a point read between has an intermediate sight.',
+  ),
+  level_book_conflict: problem(
+    422,
+    'A reading too many in the level book',
+    'The first line has a backsight alone, the last a foresight alone, a point read between its intermediate sight alone.',
+    'Take the reading out, or write the point on a line of its own.',
+  ),
+  sight_distance_missing: problem(
+    422,
+    'A sight’s distance is missing',
+    'Distances stand with every backsight and foresight of a run, or with none: on one side only they say nothing of the balance.',
+    'Send the distance, or leave all of them out.',
+  ),
+  sight_distance_alone: problem(
+    422,
+    'A distance without its reading',
+    'It belongs to a sight that the line does not have.',
+    'Send the reading, or take the distance out.',
+  ),
+  level_run_ends: problem(
+    422,
+    'The run starts or ends elsewhere',
+    'from is the point of the first line, to that of the last.',
+    'Correct the name, or complete the book.',
+  ),
+  instrument_not_level: problem(
+    422,
+    'The instrument is no level',
+    'Levelling and two-peg tests belong to instruments of kind level.',
+    'Name a level, or register it as one.',
+  ),
+  peg_test_geometry: problem(
+    422,
+    'The standings tell no collimation',
+    'Every standing has its two pegs at the same difference of distances.',
+    'Stand once in the middle and once beside one peg, 40 to 50 m from the other.',
   ),
   surface_unknown: problem(
     422,

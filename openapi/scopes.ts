@@ -1,8 +1,8 @@
 /** What an actor may do, in words: one list for roles and keys. */
 export const SCOPES = {
-  'projects:read': 'see projects, their units, tolerance classes and instruments',
+  'projects:read': 'see projects, their units, tolerance classes, instruments and their tests',
   'projects:write': 'make and change projects, tolerance classes and instruments',
-  'control:read': 'see control points and their history',
+  'control:read': 'see control points, their history and the levelling between them',
   'control:write': 'bring in control, make new versions, mark points suspect or quarantined',
   'uploads:read': 'see what was sent in, byte for byte',
   'uploads:write': 'post observations',

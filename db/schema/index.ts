@@ -2,6 +2,7 @@ export * from './access';
 export * from './control';
 export * from './design';
 export * from './grade';
+export * from './levelling';
 export * from './projects';
 export * from './record';
 export * from './setups';

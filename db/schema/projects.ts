@@ -33,6 +33,10 @@ export const projects = pgTable(
     positionSigmaVertical: doublePrecision('position_sigma_vertical'),
     setupValidMinutes: integer('setup_valid_minutes').notNull(),
     displayDecimals: integer('display_decimals').notNull(),
+    /** What level runs may fail to close by: m per √m or m per √setup; null for third order. */
+    levelLimitPer: text('level_limit_per').$type<'length' | 'setup'>(),
+    levelLimitFactor: doublePrecision('level_limit_factor'),
+    levelLimitCitation: text('level_limit_citation'),
     createdAt: instant('created_at').notNull(),
     updatedAt: instant('updated_at').notNull(),
   },
@@ -41,6 +45,7 @@ export const projects = pgTable(
     unique('projects_name').on(t.organizationId, t.name),
     foreignKey({ columns: [t.organizationId], foreignColumns: [organizations.id] }),
     check('projects_length_unit', sql`${t.lengthUnit} in ('m', 'ft', 'ftUS')`),
+    check('projects_level_limit', sql`${t.levelLimitPer} in ('length', 'setup')`),
     tenantPolicy(t.organizationId),
   ],
 );
@@ -113,6 +118,8 @@ export const instrumentCalibrations = pgTable(
     targetHeight: doublePrecision('target_height').notNull(),
     carrierWavelength: doublePrecision('carrier_wavelength').notNull(),
     referenceRefractivity: doublePrecision('reference_refractivity').notNull(),
+    /** Of a level: 1 km there and back (ISO 17123-2), as m per √m; null where nothing is stated. */
+    levelSigma: doublePrecision('level_sigma'),
     note: text('note'),
     createdAt: instant('created_at').notNull(),
   },

@@ -5,6 +5,7 @@ import * as design from './design';
 import * as grade from './grade';
 import * as hub from './hub';
 import * as instruments from './instruments';
+import * as levelling from './levelling';
 import * as people from './people';
 import * as projects from './projects';
 import * as record from './record';
@@ -26,6 +27,7 @@ const modules = [
   setupForecasts,
   design,
   grade,
+  levelling,
   record,
 ];
 

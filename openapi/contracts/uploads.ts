@@ -14,7 +14,7 @@ export const createUpload = contract({
   tag: 'Uploads',
   summary: 'Post observations',
   description:
-    'Setups, checks, grade shots and bench checks as they were observed. The bytes are kept as they came, whatever becomes of them; each item is accepted or refused on its own, and the answer says which. Posting the same document again is harmless, compressed anew or not at all.',
+    'Setups, checks, grade shots, bench checks, level runs and two-peg tests as they were observed. The bytes are kept as they came, whatever becomes of them; each item is accepted or refused on its own, and the answer says which. Posting the same document again is harmless, compressed anew or not at all.',
   access: 'uploads:write',
   params: ProjectParams,
   query: LengthQuery,

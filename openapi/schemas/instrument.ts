@@ -26,6 +26,10 @@ const stated = {
   instrumentCentringSigmaMm: millimetres.optional(),
   targetCentringSigmaMm: millimetres.optional(),
   targetHeightSigmaMm: millimetres.optional(),
+  levelSigmaMmPerKm: z.number().gt(0).max(100).optional().meta({
+    description:
+      'Of a level: one kilometre there and back after ISO 17123-2; 2 where nothing is stated (common practice).',
+  }),
   carrierWavelengthNm: z.number().min(400).max(1100).optional().meta({ description: '658 by default.' }),
   referenceRefractivity: z.number().min(200).max(400).optional().meta({
     description:
@@ -63,6 +67,7 @@ export const Calibration = z
     instrumentCentringSigmaMm: z.number(),
     targetCentringSigmaMm: z.number(),
     targetHeightSigmaMm: z.number(),
+    levelSigmaMmPerKm: z.number(),
     carrierWavelengthNm: z.number(),
     referenceRefractivity: z.number(),
     note: z.string().nullable(),

@@ -1,4 +1,5 @@
 import * as z from 'zod';
+import { LevelLimit, StatedLevelLimit } from './levelLimit';
 import { Coordinate, Id, Moment, PositiveLength, page, Sigma, Text, Title } from './primitives';
 import { AnswerUnits, LengthUnit } from './units';
 
@@ -59,6 +60,9 @@ const settings = {
   positionSigma: Sigma.nullable().optional().meta({
     description: 'For grade shots by coordinates that state none; null judges them as read.',
   }),
+  levelLimit: LevelLimit.nullable().optional().meta({
+    description: 'What level runs may fail to close by; third order, 12 mm√km, where it is null.',
+  }),
   setupValidMinutes: z
     .int()
     .min(5)
@@ -96,6 +100,7 @@ export const Project = z
     refraction: z.object({ coefficient: z.number(), sigma: z.number() }),
     controlSigma: Sigma,
     positionSigma: Sigma.nullable(),
+    levelLimit: StatedLevelLimit,
     setupValidMinutes: z.int(),
     displayDecimals: z.int(),
     units: AnswerUnits,

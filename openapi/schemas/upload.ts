@@ -1,6 +1,8 @@
 import * as z from 'zod';
 import { BenchCheck, BenchCheckInput } from './benchCheck';
 import { GradeCheck, GradeShotInput } from './gradeCheck';
+import { LevelRun, LevelRunInput } from './levelRun';
+import { PegTest, PegTestInput } from './pegTest';
 import { ClientId, Id, Instant, Moment, Name, page } from './primitives';
 import { ProblemItem } from './problem';
 import { Setup, SetupCheck } from './setup';
@@ -54,7 +56,8 @@ export const UploadDocument = z
     gradeShots: z.array(GradeShotInput).max(10_000).default([]),
     benchChecks: z.array(BenchCheckInput).max(1000).default([]),
     roverPoints: z.array(Uncomputed).max(10_000).default([]),
-    levelRuns: z.array(Uncomputed).max(1000).default([]),
+    levelRuns: z.array(LevelRunInput).max(1000).default([]),
+    pegTests: z.array(PegTestInput).max(1000).default([]),
   })
   .meta({ id: 'UploadDocument' });
 
@@ -65,6 +68,7 @@ export const UPLOAD_KINDS = [
   'benchChecks',
   'roverPoints',
   'levelRuns',
+  'pegTests',
 ] as const;
 export type UploadKind = (typeof UPLOAD_KINDS)[number];
 
@@ -94,6 +98,7 @@ export const Receipt = z
     gradeChecks: z.array(GradeCheck),
     benchChecks: z.array(BenchCheck),
     roverPoints: z.array(z.looseObject({})),
-    levelRuns: z.array(z.looseObject({})),
+    levelRuns: z.array(LevelRun),
+    pegTests: z.array(PegTest),
   })
   .meta({ id: 'Receipt', description: 'What became of an upload, item by item.' });

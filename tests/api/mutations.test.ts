@@ -8,6 +8,7 @@ import { REQUEST_PROBLEMS } from '@/openapi/problemCodes';
 import { Problem } from '@/openapi/schemas/problem';
 import { withClient } from './fixtures/database';
 import { BODIES, type FullOrganization, newFullOrganization, pathOf } from './fixtures/everything';
+import { levelRun, pegTest } from './fixtures/levels';
 import { minutesAgo } from './fixtures/moments';
 import { mutate, mutations } from './fixtures/mutations';
 import { type Sent, send } from './fixtures/send';
@@ -81,7 +82,8 @@ describe('a body that was mutated', () => {
         ],
         benchChecks: [{ clientId: `${id}-b`, ...bench, setup: `${id}-s`, layer: 'subgrade', observedAt }],
         roverPoints: [],
-        levelRuns: [],
+        levelRuns: [levelRun(`${id}-l`)],
+        pegTests: [pegTest(`${id}-p`)],
       }),
       units: UNITS,
       confirmUnits: false,

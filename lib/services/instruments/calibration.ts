@@ -3,6 +3,7 @@ import type * as z from 'zod';
 import type { instrumentCalibrations } from '@/db/schema';
 import { DEFAULT_WAVELENGTH, REFERENCE_ATMOSPHERE, refractivity } from '@/lib/compute/survey/atmosphere';
 import { DEFAULT_ACCURACY } from '@/lib/compute/survey/instrument';
+import { perRootMetre } from '@/lib/compute/survey/levelling/accuracy';
 import { ARCSECOND, MILLIMETRE } from '@/lib/compute/units/table';
 import type { CalibrationCreate } from '@/openapi/schemas/instrument';
 
@@ -31,6 +32,7 @@ export function calibrationRow(
     targetHeight: metres(stated.targetHeightSigmaMm, DEFAULT_ACCURACY.targetHeight),
     carrierWavelength: wavelength,
     referenceRefractivity: stated.referenceRefractivity ?? refractivity(REFERENCE_ATMOSPHERE, wavelength),
+    levelSigma: stated.levelSigmaMmPerKm === undefined ? null : perRootMetre(stated.levelSigmaMmPerKm),
     note: stated.note ?? null,
   };
 }

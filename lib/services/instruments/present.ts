@@ -1,6 +1,7 @@
 import type { InferSelectModel } from 'drizzle-orm';
 import type * as z from 'zod';
 import type { instrumentCalibrations, instruments } from '@/db/schema';
+import { DEFAULT_LEVEL_SIGMA, mmPerRootKm } from '@/lib/compute/survey/levelling/accuracy';
 import { toArcseconds } from '@/lib/compute/units/convert';
 import { MILLIMETRE } from '@/lib/compute/units/table';
 import { asMoment } from '@/lib/services/moments';
@@ -36,6 +37,7 @@ export function presentInstrument({
       instrumentCentringSigmaMm: millimetres(c.instrumentCentring),
       targetCentringSigmaMm: millimetres(c.targetCentring),
       targetHeightSigmaMm: millimetres(c.targetHeight),
+      levelSigmaMmPerKm: Number(mmPerRootKm(c.levelSigma ?? DEFAULT_LEVEL_SIGMA).toPrecision(12)),
       carrierWavelengthNm: clean(c.carrierWavelength * 1e9),
       referenceRefractivity: c.referenceRefractivity,
       note: c.note,

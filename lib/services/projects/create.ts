@@ -4,6 +4,7 @@ import { DEFAULT_SURROUNDINGS } from '@/lib/compute/survey/surroundings';
 import { invalid, Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { Lengths } from '@/lib/services/lengths';
+import { limitColumns } from '@/lib/services/levelRuns/limit';
 import { record } from '@/lib/services/record';
 import type { JsonOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/projects';
@@ -47,6 +48,7 @@ export async function createProject(
     positionSigmaVertical: body.positionSigma ? length.in(body.positionSigma.vertical) : null,
     setupValidMinutes: body.setupValidMinutes ?? VALID_MINUTES,
     displayDecimals: body.displayDecimals ?? (body.lengthUnit === 'm' ? 3 : 2),
+    ...limitColumns(body.levelLimit ?? null),
     createdAt: now,
     updatedAt: now,
   };

@@ -2,6 +2,7 @@ import type { InferSelectModel } from 'drizzle-orm';
 import type * as z from 'zod';
 import type { toleranceClasses } from '@/db/schema';
 import { Lengths } from '@/lib/services/lengths';
+import { presentLimit, projectLimit } from '@/lib/services/levelRuns/limit';
 import { asMoment } from '@/lib/services/moments';
 import type { Project } from '@/openapi/schemas/project';
 import type { ProjectRow } from './load';
@@ -39,6 +40,7 @@ export function presentProject(row: ProjectRow, classes: readonly ClassRow[]): z
       positionSigmaHorizontal === null || positionSigmaVertical === null
         ? null
         : { horizontal: length.out(positionSigmaHorizontal), vertical: length.out(positionSigmaVertical) },
+    levelLimit: presentLimit(projectLimit(row)),
     setupValidMinutes: row.setupValidMinutes,
     displayDecimals: row.displayDecimals,
     units: { length: row.lengthUnit },

@@ -4,6 +4,7 @@ import { projects, toleranceClasses } from '@/db/schema';
 import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { Lengths } from '@/lib/services/lengths';
+import { limitColumns } from '@/lib/services/levelRuns/limit';
 import { record } from '@/lib/services/record';
 import type { JsonOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/projects';
@@ -34,6 +35,7 @@ export async function updateProject(
     refractionSigma: body.refraction?.sigma ?? before.refractionSigma,
     setupValidMinutes: body.setupValidMinutes ?? before.setupValidMinutes,
     displayDecimals: body.displayDecimals ?? before.displayDecimals,
+    ...(body.levelLimit === undefined ? {} : limitColumns(body.levelLimit)),
     updatedAt: runtime.now().toISOString(),
   };
   if (body.controlSigma) {

@@ -16,6 +16,8 @@ import { type Document, needsOf, type ReadDocument, readDocument } from './docum
 import { type Draft, pointerOf } from './draft';
 import { draftGradeShots } from './gradeShots';
 import { keepRefused, rawAndUpload } from './keep';
+import { draftLevelRuns } from './levelRuns';
+import { draftPegTests } from './pegTests';
 import { loadReceipt, presentReceipt } from './receipt';
 import { draftSetupChecks } from './setupChecks';
 import { draftSetups } from './setups';
@@ -112,9 +114,12 @@ async function process(
   draftSetupChecks(draft, context);
   draftGradeShots(draft, context, await openLayers(context, site, document));
   draftBenchChecks(draft, context);
+  draftPegTests(draft, context);
+  draftLevelRuns(draft, context);
   refuseUncomputed(draft);
-  const { setups, checks, gradeRows, benchRows, refused } = draft;
-  const accepted = setups.length + checks.length + gradeRows.length + benchRows.length;
+  const { setups, checks, gradeRows, benchRows, levelRows, pegRows, refused } = draft;
+  const kinds = [setups, checks, gradeRows, benchRows, levelRows, pegRows];
+  const accepted = kinds.reduce((count, items) => count + items.length, 0);
   if (accepted === 0) {
     const empty = problemItem('', 'required', 'The document holds no item.');
     throw new Problem('nothing_accepted', undefined, { errors: refused.length > 0 ? refused : [empty] });
@@ -136,6 +141,8 @@ async function process(
     checks,
     grade: gradeRows,
     bench: benchRows,
+    levelRuns: levelRows,
+    pegTests: pegRows,
   };
   const layerOf = (row: { layerName: string }) => site.layers.get(row.layerName)!;
   return { status: 201, receipt: presentReceipt(parts, layerOf, length, site.project.displayDecimals) };
@@ -167,6 +174,8 @@ function newDraft(
     checks: [],
     gradeRows: [],
     benchRows: [],
+    levelRows: [],
+    pegRows: [],
     rows: {
       setups: [],
       setupResults: [],
@@ -174,6 +183,9 @@ function newDraft(
       setupChecks: [],
       gradeChecks: [],
       benchChecks: [],
+      pegTests: [],
+      levelRuns: [],
+      levelDifferences: [],
     },
     rejudged: new Map(),
     happenings: [],
@@ -190,9 +202,7 @@ async function openLayers({ tenant, caller }: VerbContext, site: Site, document:
 }
 
 function refuseUncomputed(draft: Draft): void {
-  for (const kind of ['roverPoints', 'levelRuns'] as const) {
-    draft.document[kind].forEach((_, index) => {
-      draft.refused.push(problemItem(pointerOf(draft, kind, index), 'kind_not_supported'));
-    });
-  }
+  draft.document.roverPoints.forEach((_, index) => {
+    draft.refused.push(problemItem(pointerOf(draft, 'roverPoints', index), 'kind_not_supported'));
+  });
 }

@@ -49,6 +49,8 @@ export function needsOf(document: Document): Needs {
     checkClientIds: document.setupChecks.map((item) => item.clientId),
     gradeClientIds: document.gradeShots.map((item) => item.clientId),
     benchClientIds: document.benchChecks.map((item) => item.clientId),
+    levelClientIds: document.levelRuns.map((item) => item.clientId),
+    pegClientIds: document.pegTests.map((item) => item.clientId),
   };
   for (const setup of document.setups) {
     needs.instruments.add(setup.instrument);
@@ -67,5 +69,11 @@ export function needsOf(document: Document): Needs {
     if (bench.layer !== undefined) needs.layers.add(bench.layer);
     if (bench.setup !== undefined) needs.setups.add(bench.setup);
   }
+  for (const run of document.levelRuns) {
+    needs.control.add(run.from);
+    if (run.instrument !== undefined) needs.instruments.add(run.instrument);
+    for (const { point } of run.sights) needs.control.add(point);
+  }
+  for (const { instrument } of document.pegTests) needs.instruments.add(instrument);
   return needs;
 }

@@ -1,6 +1,18 @@
 import type { InferInsertModel } from 'drizzle-orm';
-import type { benchChecks, gradeChecks, observations, setupChecks, setupResults, setups } from '@/db/schema';
+import type {
+  benchChecks,
+  gradeChecks,
+  levelDifferences,
+  levelRuns,
+  observations,
+  pegTests,
+  setupChecks,
+  setupResults,
+  setups,
+} from '@/db/schema';
 import type { BenchCheckRow } from '@/lib/services/benchChecks/load';
+import type { LevelRunRow } from '@/lib/services/levelRuns/load';
+import type { PegTestRow } from '@/lib/services/pegTests/result';
 import type { Happening } from '@/lib/services/record';
 import type { CheckRow, LoadedSetup, SetupRow } from '@/lib/services/setups/load';
 import type { ProblemItem } from '@/openapi/schemas/problem';
@@ -21,6 +33,8 @@ export interface Draft {
   checks: CheckRow[];
   gradeRows: GradeRow[];
   benchRows: BenchCheckRow[];
+  levelRows: LevelRunRow[];
+  pegRows: PegTestRow[];
   rows: {
     setups: InferInsertModel<typeof setups>[];
     setupResults: InferInsertModel<typeof setupResults>[];
@@ -28,6 +42,9 @@ export interface Draft {
     setupChecks: InferInsertModel<typeof setupChecks>[];
     gradeChecks: InferInsertModel<typeof gradeChecks>[];
     benchChecks: InferInsertModel<typeof benchChecks>[];
+    pegTests: InferInsertModel<typeof pegTests>[];
+    levelRuns: InferInsertModel<typeof levelRuns>[];
+    levelDifferences: InferInsertModel<typeof levelDifferences>[];
   };
   /** Setups that stood before and have a new result. */
   rejudged: Map<string, SetupRow>;

@@ -3,6 +3,8 @@ import type * as z from 'zod';
 import {
   benchChecks,
   gradeChecks,
+  levelRuns,
+  pegTests,
   rawBodies,
   setupChecks,
   setups,
@@ -16,6 +18,11 @@ import { presentBenchCheck } from '@/lib/services/benchChecks/present';
 import { type GradeRow, presentGradeCheck } from '@/lib/services/gradeChecks/present';
 import { type LayerFacts, layerFacts } from '@/lib/services/layers/facts';
 import type { Lengths } from '@/lib/services/lengths';
+import type { LevelRunRow } from '@/lib/services/levelRuns/load';
+import { presentLevelRun } from '@/lib/services/levelRuns/present';
+import { selectPegTests } from '@/lib/services/pegTests/load';
+import { presentPegTest } from '@/lib/services/pegTests/present';
+import type { PegTestRow } from '@/lib/services/pegTests/result';
 import type { ProjectRow } from '@/lib/services/projects/load';
 import { type CheckRow, completeSetups, type LoadedSetup } from '@/lib/services/setups/load';
 import { presentCheck, presentSetup } from '@/lib/services/setups/present';
@@ -33,6 +40,8 @@ export interface ReceiptParts {
   checks: readonly CheckRow[];
   grade: readonly GradeRow[];
   bench: readonly BenchCheckRow[];
+  levelRuns: readonly LevelRunRow[];
+  pegTests: readonly PegTestRow[];
 }
 
 export function presentReceipt(
@@ -56,7 +65,8 @@ export function presentReceipt(
     gradeChecks: parts.grade.map((row) => presentGradeCheck(row, layerOf(row), length, decimals)),
     benchChecks: parts.bench.map((row) => presentBenchCheck(row, length)),
     roverPoints: [],
-    levelRuns: [],
+    levelRuns: parts.levelRuns.map((row) => presentLevelRun(row, length)),
+    pegTests: parts.pegTests.map((row) => presentPegTest(row, length)),
   };
 }
 
@@ -86,7 +96,7 @@ export async function loadReceipt(
       ),
     );
   if (!found) throw new Problem('not_found', 'There is no such upload in this project.');
-  const [refusals, setupRows, checks, grade, bench] = await Promise.all([
+  const [refusals, setupRows, checks, grade, bench, levels, pegs] = await Promise.all([
     tenant.db
       .select()
       .from(uploadRefusals)
@@ -130,6 +140,15 @@ export async function loadReceipt(
     )
       .orderBy(asc(benchChecks.id))
       .execute(),
+    tenant.db
+      .select()
+      .from(levelRuns)
+      .where(and(eq(levelRuns.organizationId, organizationId), eq(levelRuns.uploadId, uploadId)))
+      .orderBy(asc(levelRuns.id))
+      .execute(),
+    selectPegTests(tenant, and(eq(pegTests.organizationId, organizationId), eq(pegTests.uploadId, uploadId)))
+      .orderBy(asc(pegTests.id))
+      .execute(),
   ]);
   const made: LoadedSetup[] = [];
   for (const row of setupRows) {
@@ -146,6 +165,8 @@ export async function loadReceipt(
     checks: checks as CheckRow[],
     grade,
     bench,
+    levelRuns: levels as LevelRunRow[],
+    pegTests: pegs as PegTestRow[],
   };
   return presentReceipt(parts, layerOf, length, project.displayDecimals);
 }

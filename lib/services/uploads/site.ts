@@ -4,6 +4,7 @@ import type { NamedStatement, Tenant } from '@/db/tenant';
 import type { InstrumentAccuracy } from '@/lib/compute/survey/instrument';
 import type { ControlMark } from '@/lib/compute/survey/shots';
 import type { SetupLimits } from '@/lib/compute/survey/verdict';
+import type { LastPegTest } from '@/lib/services/levelRuns/compute';
 import type { CheckRow, SetupRow } from '@/lib/services/setups/load';
 import type { SetupResult } from '@/lib/services/setups/result';
 
@@ -19,14 +20,19 @@ export interface Needs {
   checkClientIds: string[];
   gradeClientIds: string[];
   benchClientIds: string[];
+  levelClientIds: string[];
+  pegClientIds: string[];
 }
 
 export interface SiteInstrument {
   id: string;
   name: string;
+  kind: 'totalStation' | 'rover' | 'level' | 'machine';
   version: number;
   accuracyStated: boolean;
   accuracy: InstrumentAccuracy;
+  /** Of a level, there and back, m per √m; null where nothing is stated. */
+  levelSigma: number | null;
   carrierWavelength: number;
   referenceRefractivity: number;
 }
@@ -56,6 +62,10 @@ export interface SiteSetup {
   releases: SiteRelease[];
 }
 
+export interface SitePegTest extends LastPegTest {
+  instrumentId: string;
+}
+
 export interface SiteClass extends SetupLimits {
   name: string;
 }
@@ -70,7 +80,9 @@ export interface Site {
   instruments: Map<string, SiteInstrument>;
   layers: Map<string, SiteLayer>;
   setups: SiteSetup[];
-  taken: { setups: Set<string>; checks: Set<string>; grade: Set<string>; bench: Set<string> };
+  /** Tests of the levels that are named, the newest last. */
+  pegTests: SitePegTest[];
+  taken: Record<'setups' | 'checks' | 'grade' | 'bench' | 'levels' | 'pegs', Set<string>>;
 }
 
 /** The transaction's own organization: an upload is looked up before its sender is known by name. */
@@ -84,7 +96,8 @@ const PROJECT = `select organization_id as "organizationId", id, name, length_un
     refraction_sigma as "refractionSigma", control_sigma_horizontal as "controlSigmaHorizontal",
     control_sigma_vertical as "controlSigmaVertical", position_sigma_horizontal as "positionSigmaHorizontal",
     position_sigma_vertical as "positionSigmaVertical", setup_valid_minutes as "setupValidMinutes",
-    display_decimals as "displayDecimals"
+    display_decimals as "displayDecimals", level_limit_per as "levelLimitPer",
+    level_limit_factor as "levelLimitFactor", level_limit_citation as "levelLimitCitation"
   from projects where organization_id = ${TENANT} and id = $1`;
 
 const CLASSES = `select name, json_build_object('horizontal', residual_horizontal, 'vertical', residual_vertical) as residual,
@@ -102,14 +115,20 @@ const CONTROL = `select p.name, v.version, v.easting, v.northing, v.elevation, v
     and v.project_id = p.project_id and v.name = p.name and v.version = p.current_version
   where p.organization_id = ${TENANT} and p.project_id = $1 and p.name = any($3::text[])`;
 
-const INSTRUMENTS = `select i.id, i.name, c.version, c.accuracy_stated as "accuracyStated",
+const INSTRUMENTS = `select i.id, i.name, i.kind, c.version, c.accuracy_stated as "accuracyStated",
     json_build_object('direction', c.direction, 'zenith', c.zenith, 'distance', c.distance,
       'distancePpm', c.distance_ppm, 'collimation', c.collimation, 'instrumentCentring', c.instrument_centring,
       'targetCentring', c.target_centring, 'targetHeight', c.target_height) as accuracy,
-    c.carrier_wavelength as "carrierWavelength", c.reference_refractivity as "referenceRefractivity"
+    c.level_sigma as "levelSigma", c.carrier_wavelength as "carrierWavelength", c.reference_refractivity as "referenceRefractivity"
   from instruments i join instrument_calibrations c on c.organization_id = i.organization_id
     and c.instrument_id = i.id and c.version = i.calibration_version
   where i.organization_id = ${TENANT} and i.project_id = $1 and i.name = any($4::text[])`;
+
+const PEG_TESTS = `select t.id, t.instrument_id as "instrumentId", t.collimation, t.collimation_sigma as "collimationSigma",
+    t.verdict, t.observed_at as "observedAt"
+  from instruments i join peg_tests t on t.organization_id = i.organization_id and t.instrument_id = i.id
+  where i.organization_id = ${TENANT} and i.project_id = $1 and i.name = any($4::text[])
+  order by t.observed_at, t.id`;
 
 const LAYERS = `select distinct on (l.name) l.name, l.version, l.surface_id as "surfaceId", l."offset", l.below, l.above,
     s.represents, encode(s.sha256, 'hex') as "surfaceSha256"
@@ -194,8 +213,10 @@ const SITE: NamedStatement = {
   name: 'upload_site',
   text: `select ${one(PROJECT)} as project, ${list(CLASSES)} as classes, ${one(BEFORE)} as before,
     ${list(CONTROL)} as control, ${list(INSTRUMENTS)} as instruments, ${list(LAYERS)} as layers, ${list(SETUPS)} as setups,
+    ${list(PEG_TESTS)} as peg_tests,
     ${taken('setups', 8)} as taken_setups, ${taken('setup_checks', 9)} as taken_checks,
-    ${taken('grade_checks', 10)} as taken_grade, ${taken('bench_checks', 11)} as taken_bench`,
+    ${taken('grade_checks', 10)} as taken_grade, ${taken('bench_checks', 11)} as taken_bench,
+    ${taken('level_runs', 12)} as taken_levels, ${taken('peg_tests', 13)} as taken_pegs`,
 };
 
 const UUID = /^[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}$/i;
@@ -208,10 +229,13 @@ interface SiteRow {
   instruments: SiteInstrument[];
   layers: SiteLayer[];
   setups: SiteSetup[];
+  peg_tests: SitePegTest[];
   taken_setups: string[];
   taken_checks: string[];
   taken_grade: string[];
   taken_bench: string[];
+  taken_levels: string[];
+  taken_pegs: string[];
 }
 
 /** Reads, in one round trip, all that an upload names; null where the project does not exist. */
@@ -229,6 +253,8 @@ export async function loadSite(tenant: Tenant, projectId: string, needs: Needs):
     needs.checkClientIds,
     needs.gradeClientIds,
     needs.benchClientIds,
+    needs.levelClientIds,
+    needs.pegClientIds,
   ]);
   const [row] = rows;
   if (!row.project) return null;
@@ -241,11 +267,14 @@ export async function loadSite(tenant: Tenant, projectId: string, needs: Needs):
     instruments: byName(row.instruments),
     layers: byName(row.layers),
     setups: row.setups,
+    pegTests: row.peg_tests,
     taken: {
       setups: new Set(row.taken_setups),
       checks: new Set(row.taken_checks),
       grade: new Set(row.taken_grade),
       bench: new Set(row.taken_bench),
+      levels: new Set(row.taken_levels),
+      pegs: new Set(row.taken_pegs),
     },
   };
 }

@@ -11,9 +11,10 @@ type Receipt = AnswerOf<typeof contracts.getUpload>;
 /** What became of the accepted items, each with the way to it. */
 export function Became({ receipt, projectId }: { receipt: Receipt; projectId: string }) {
   const project = `/projects/${projectId}`;
-  const { setups, setupChecks, benchChecks, gradeChecks } = receipt;
+  const { setups, setupChecks, benchChecks, gradeChecks, levelRuns, pegTests } = receipt;
   const layers = [...new Set(gradeChecks.map(({ layer }) => layer))];
-  if (setups.length + setupChecks.length + benchChecks.length + gradeChecks.length === 0) return null;
+  const became = [setups, setupChecks, benchChecks, gradeChecks, levelRuns, pegTests];
+  if (became.every((items) => items.length === 0)) return null;
   return (
     <section>
       <h2 className="mb-2 font-head text-[19px]">What became of the rest</h2>
@@ -46,6 +47,22 @@ export function Became({ receipt, projectId }: { receipt: Receipt; projectId: st
               {unitSign(check.units.length)}
             </span>
             <span className="block text-ink-second">{check.instruction}</span>
+          </Item>
+        ))}
+        {pegTests.map((test) => (
+          <Item key={test.id} tone={test.verdict} word={test.verdict}>
+            <span className="font-semibold">
+              Two-peg test of {test.instrument}: {signed(test.collimation.arcsec, 1)}″
+            </span>
+            <span className="block text-ink-second">{test.reasons[0]?.text}</span>
+          </Item>
+        ))}
+        {levelRuns.map((run) => (
+          <Item key={run.id} tone={run.verdict} word={run.verdict}>
+            <span className="font-semibold">
+              Level run {run.from} to {run.to}
+            </span>
+            <span className="block text-ink-second">{run.radio}</span>
           </Item>
         ))}
         {layers.map((layer) => {

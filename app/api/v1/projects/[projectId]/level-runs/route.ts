@@ -1,0 +1,8 @@
+import { endpoint } from '@/lib/http/endpoint';
+import { route } from '@/lib/http/route';
+import { listLevelRuns } from '@/lib/services/levelRuns/list';
+import * as contracts from '@/openapi/contracts/levelling';
+
+export const { GET, HEAD, POST, PUT, PATCH, DELETE, OPTIONS } = route({
+  get: endpoint(contracts.listLevelRuns, listLevelRuns),
+});
