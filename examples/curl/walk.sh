@@ -79,6 +79,14 @@ say_bench() {
   echo "  $(word instruction <<<"$check")"
 }
 
+say_level() {
+  local run
+  run="$(after levelRuns <<<"$1")"
+  echo
+  echo "Level run $(word from <<<"$run") to $(word to <<<"$run"): $(word verdict <<<"$run"), misclosure $(feet misclosure <<<"$run")"
+  echo "  $(word radio <<<"$run")"
+}
+
 # What the office brings in. The control comes as a table: its unit stands in the address.
 project="$(send /projects project <<<"{\"name\":\"Thistledown Yard by curl, $started\",\"lengthUnit\":\"ft\",\"frame\":{\"kind\":\"local\"}}")"
 site="/projects/$(word id <<<"$project")"
@@ -97,6 +105,11 @@ echo "Surface: $(word name <<<"$surface"), $(number points <<<"$surface") points
 
 layer="$(file layer | sed "s/SURFACE_ID/$(word id <<<"$surface")/" | send "$site/layers" layer)"
 echo "Layer: $(word name <<<"$layer"), $(word offsetText <<<"$layer")"
+
+# Both benchmarks are levelled through before anybody leans on them, with a level that was tested that morning.
+file level | send "$site/instruments" level >/dev/null
+receipt="$(upload level-run)"
+say_level "$receipt"
 
 # A setup on four targets in both faces, with a check shot on a benchmark outside the fit.
 receipt="$(upload setup-good)"

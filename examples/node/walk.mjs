@@ -86,6 +86,16 @@ function sayCheck({ targets }) {
   }
 }
 
+function sayLevel({ instrument, from, to, verdict, radio, closure, reasons }, test) {
+  say();
+  say(
+    `Level ${instrument}: ${test.verdict.toUpperCase()}, line of sight ${test.collimation.arcsec.toFixed(1)}″`,
+  );
+  say(`Level run ${from} to ${to}: ${verdict.toUpperCase()}, misclosure ${ft(closure.misclosure, 3)}`);
+  say(`  ${radio}`);
+  for (const { text } of reasons) say(`  - ${text}`);
+}
+
 function sayBench({ machine, edge, benchmark, difference, verdict, instruction }) {
   say();
   say(`Bench check ${machine}, ${edge} edge on ${benchmark}: ${verdict.toUpperCase()}, ${ft(difference)}`);
@@ -119,6 +129,11 @@ say(`Surface: ${surface.name}, ${surface.points} points, ${surface.triangles} tr
 const layer = await post(`${site}/layers`, { ...(await data('layer')), surfaceId: surface.id });
 const { below, above } = layer.tolerance;
 say(`Layer: ${layer.name}, ${layer.offsetText}, ${ft(below)} low to ${ft(above)} high`);
+
+// Both benchmarks are levelled through before anybody leans on them, with a level that was tested that morning.
+await post(`${site}/instruments`, await data('level'), 'level');
+const { pegTests, levelRuns } = await upload('level-run');
+sayLevel(levelRuns[0], pegTests[0]);
 
 // A setup on four targets in both faces, with a check shot on a benchmark outside the fit.
 const [good] = (await upload('setup-good')).setups;

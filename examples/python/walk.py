@@ -116,6 +116,16 @@ def say_check(check):
         )
 
 
+def say_level(run, test):
+    arcsec = test["collimation"]["arcsec"]
+    misclosure = run["closure"]["misclosure"]
+    print(f"\nLevel {run['instrument']}: {test['verdict'].upper()}, line of sight {arcsec:.1f}\u2033")
+    print(f"Level run {run['from']} to {run['to']}: {run['verdict'].upper()}, misclosure {misclosure:.3f} ft")
+    print(f"  {run['radio']}")
+    for reason in run["reasons"]:
+        print(f"  - {reason['text']}")
+
+
 def say_bench(check):
     print(
         f"\nBench check {check['machine']}, {check['edge']} edge on {check['benchmark']}:"
@@ -146,6 +156,11 @@ print(f"Surface: {surface['name']}, {surface['points']} points, {surface['triang
 
 layer = call("POST", f"{site}/layers", {**data("layer"), "surfaceId": surface["id"]})
 print(f"Layer: {layer['name']}, {layer['offsetText']}")
+
+# Both benchmarks are levelled through before anybody leans on them, with a level that was tested that morning.
+call("POST", f"{site}/instruments", data("level"), "level")
+levelled = upload("level-run")
+say_level(levelled["levelRuns"][0], levelled["pegTests"][0])
 
 # A setup on four targets in both faces, with a check shot on a benchmark outside the fit.
 good = upload("setup-good")["setups"][0]

@@ -3,6 +3,7 @@ import { beforeAll, describe, expect, it } from 'vitest';
 import type * as z from 'zod';
 import type { BenchCheck } from '@/openapi/schemas/benchCheck';
 import type { GradeCheck, LayerSummary } from '@/openapi/schemas/gradeCheck';
+import type { LevelRun } from '@/openapi/schemas/levelRun';
 import type { Setup } from '@/openapi/schemas/setup';
 import { api } from '@/tests/setup/api';
 import { newOrganization } from '@/tests/setup/organization';
@@ -16,6 +17,7 @@ interface Left {
   setups: Record<string, z.output<typeof Setup>>;
   bench: Record<string, z.output<typeof BenchCheck>>;
   grade: z.output<typeof GradeCheck>[];
+  levelRuns: z.output<typeof LevelRun>[];
   summary: z.output<typeof LayerSummary>;
 }
 
@@ -39,6 +41,7 @@ beforeAll(async () => {
       setups: byClientId({ data: setups.data.filter(({ supersedes }) => supersedes === null) }),
       bench: byClientId(await of('/bench-checks')),
       grade: (await of('/grade-checks?layer=subgrade&limit=200')).data,
+      levelRuns: (await of('/level-runs')).data,
       summary: await of('/layers/subgrade/summary'),
     };
   }
@@ -72,6 +75,18 @@ describe.each(LANGUAGES)('the walk in %s', (language) => {
     expect(position.elevation).toBeCloseTo(instrumentElevation! - GOOD.instrumentHeight!, 9);
     expect(Math.abs(orientation - GOOD.orientation) * 3600).toBeLessThan(15);
     expect(3 * standardDeviations.easting).toBeLessThan(0.02);
+  });
+
+  // The simulated line of sight rises by 0.04 mm per metre; 12 mm√km over 415 ft are 0.014 ft.
+  it('levels from one benchmark to the other, and closes', () => {
+    const { levelRuns, walked } = left[language];
+    expect(levelRuns.map(({ from, to, verdict }) => [from, to, verdict])).toEqual([['BM-1', 'BM-2', 'pass']]);
+    const [{ collimation, closure, points }] = levelRuns;
+    expect(collimation.source).toBe('pegTest');
+    expect(Math.abs(collimation.mmPerM - 0.04)).toBeLessThan(0.02);
+    expect(closure.allowed).toBeCloseTo(0.014, 3);
+    expect(Math.abs(points[1].elevation - 1236.952)).toBeLessThan(0.01);
+    expect(walked.out).toMatch(/^ {2}Level run BM-1 to BM-2 is good, it closes to 0\.\d{3} ft/m);
   });
 
   it('gets a fail for the forgotten prism constant: every distance is out by the same sign', () => {

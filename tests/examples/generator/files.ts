@@ -1,4 +1,5 @@
 import { control, controlCsv, finish, instrument, layer } from './design';
+import { level, levelRun } from './levelling';
 import { bumpedTargetSetup, goodSetup, laterCheck, wrongPrismSetup } from './setups';
 import { benchAfter, benchBefore, gradeShots, machine, release } from './work';
 
@@ -10,6 +11,8 @@ export function dataFiles(): Record<string, string> {
     control: control(),
     instrument: instrument(),
     machine: machine(),
+    level: level(),
+    'level-run': levelRun(),
     finish: finish(),
     layer: layer(),
     'setup-good': goodSetup(),
