@@ -4,7 +4,7 @@ import { SingularError } from './model';
  * A pivot this small beside the diagonal element that it began as means that the other unknowns reproduce this
  * one. Relative, so that the units of an unknown do not matter.
  */
-const SINGULAR_PIVOT = 1e-12;
+export const SINGULAR_PIVOT = 1e-12;
 
 /**
  * Cholesky factor of a symmetric positive definite matrix in place: a (n × n, row by row) becomes L below and

@@ -1,60 +1,29 @@
-import { inverseFromFactor, solveUpper } from './cholesky';
+import { DatumTransform } from './freeDatum';
+import type { CofactorSource } from './normals';
 import type { Solution } from './solve';
 
-/**
- * Cofactors (a-priori covariances) of a solution's unknowns, from its factored normal equations: with
- * Z = D⁻¹B of a block, Q_gg = S⁻¹, Q_bg = −Z Q_gg and Q_bc = δ_bc D⁻¹ + Z_b Q_gg Z_cᵀ.
- */
+/** Cofactors (a-priori covariances) of a solution's unknowns, from its factored normal equations. */
 export class Cofactors {
-  /** Q of the shared unknowns (shared × shared). */
-  readonly shared: Float64Array;
-  private readonly z: Float64Array[] = [];
-  private readonly inverse: Float64Array[] = [];
-  private readonly border: Float64Array[] = [];
+  private readonly source: CofactorSource;
+  private readonly placed: DatumTransform | null;
 
-  constructor(private readonly solution: Solution) {
-    const { model, normals, without } = solution;
-    const g = model.shared;
-    this.shared = inverseFromFactor(normals.s, g);
-    for (let b = 0; b < model.blocks.length - 1; b++) {
-      const size = model.blocks[b + 1] - model.blocks[b];
-      if (b === without) {
-        this.z.push(new Float64Array(0));
-        this.border.push(new Float64Array(0));
-        this.inverse.push(new Float64Array(0));
-        continue;
-      }
-      const l = normals.blockFactor(b);
-      const z = normals.blockBorder(b).slice();
-      solveUpper(l, size, z, g);
-      const border = new Float64Array(size * g);
-      for (let i = 0; i < size; i++) {
-        for (let j = 0; j < g; j++) {
-          let sum = 0;
-          for (let k = 0; k < g; k++) sum -= z[i * g + k] * this.shared[k * g + j];
-          border[i * g + j] = sum;
-        }
-      }
-      this.z.push(z);
-      this.border.push(border);
-      this.inverse.push(inverseFromFactor(l, size));
-    }
+  constructor({ normals, without, model, unknowns }: Solution) {
+    this.source = normals.cofactors(without);
+    const times = (vector: Float64Array) => this.source.times(vector);
+    this.placed = model.datum ? new DatumTransform(model.datum, unknowns, times) : null;
   }
 
   /** Covariance of unknowns i and j with the a-priori variance factor 1. */
   of(i: number, j: number): number {
-    const { model, normals } = this.solution;
-    const g = model.shared;
-    if (i < g && j < g) return this.shared[i * g + j];
-    if (i < g) return this.of(j, i);
-    const b = normals.blockOf(i);
-    const row = i - model.blocks[b];
-    if (j < g) return this.border[b][row * g + j];
-    const c = normals.blockOf(j);
-    const column = j - model.blocks[c];
-    let sum = 0;
-    for (let k = 0; k < g; k++) sum -= this.border[b][row * g + k] * this.z[c][column * g + k];
-    return b === c ? sum + this.inverse[b][row * (model.blocks[b + 1] - model.blocks[b]) + column] : sum;
+    const own = this.source.of(i, j);
+    return this.placed ? own + this.placed.of(i, j) : own;
+  }
+
+  /** Q·vector: covariances of all unknowns with a function of them. */
+  times(vector: Float64Array): Float64Array {
+    const image = this.source.times(vector);
+    this.placed?.addTimes(vector, image);
+    return image;
   }
 
   /** aᵀQa of a function of the unknowns, a given by its non-zero entries [from, to) of two lists. */

@@ -18,18 +18,35 @@ export interface AdjustmentModel {
   /** Row i has its entries at [rowStart[i], rowStart[i+1]) of `columns` and of the coefficients. */
   readonly rowStart: Int32Array;
   readonly columns: Int32Array;
-  /** pᵢ = 1/σᵢ² with a-priori standard deviations. */
+  /** pᵢ = 1/σᵢ² with a-priori standard deviations; 0 where a row is left out. */
   readonly weights: Float64Array;
   /**
    * Writes ∂fᵢ/∂x into `coefficients` (aligned with `columns`) and ℓᵢ − fᵢ(x) into `misclosures`, angles
    * wrapped into (−π, π].
    */
   linearise(x: Float64Array, coefficients: Float64Array, misclosures: Float64Array): void;
+  /** Where the rows leave the unknowns free to move together: how they are placed all the same. */
+  readonly datum?: FreeDatum;
+}
+
+/**
+ * A free datum: among all solutions, which differ by movements that no row sees, the one in which the corrections of
+ * the chosen unknowns to their start values have the least sum of squares.
+ */
+export interface FreeDatum {
+  /** The movements at x, independent of each other: how much each unknown moves (`unknowns` long). */
+  movements(x: Float64Array): Float64Array[];
+  readonly chosen: Int32Array;
 }
 
 /** The solution does not exist: some unknown is not determined by the observations. */
 export class SingularError extends Error {
-  constructor(readonly unknown: number) {
+  constructor(
+    /** The first that was found. */
+    readonly unknown: number,
+    /** All that can move unseen, as far as they were looked for. */
+    readonly movable: readonly number[] = [unknown],
+  ) {
     super(`Unknown ${unknown} is not determined by the observations.`);
     this.name = 'SingularError';
   }

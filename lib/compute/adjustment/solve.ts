@@ -1,5 +1,6 @@
+import { PinnedModel } from './freeDatum';
 import { type AdjustmentModel, SingularError } from './model';
-import { NormalEquations } from './normals';
+import { type NormalEquations, normalEquations } from './normals';
 
 /** The squared step, in its own standard deviations, that no longer matters. */
 const CONVERGED = 1e-12;
@@ -19,7 +20,7 @@ export interface Solution {
   readonly residuals: Float64Array;
   /** vᵀPv of the rows that took part. */
   readonly weightedSquares: number;
-  /** Rows minus unknowns, of those that took part. */
+  /** Rows minus unknowns, of those that took part, plus movements that a free datum settles. */
   readonly degreesOfFreedom: number;
   readonly normals: NormalEquations;
 }
@@ -42,13 +43,15 @@ export function solve(
   start: Float64Array,
   { without = -1, maxIterations = MAX_ITERATIONS } = {},
 ): Solution {
-  const normals = new NormalEquations(model);
-  const coefficients = new Float64Array(model.columns.length);
-  const residuals = new Float64Array(model.weights.length);
+  const pinned = model.datum ? new PinnedModel(model, model.datum, start) : null;
+  const system = pinned?.system ?? model;
+  const normals = normalEquations(system);
+  const coefficients = new Float64Array(system.columns.length);
+  const residuals = new Float64Array(system.weights.length);
   const step = new Float64Array(model.unknowns);
   const squaresAt = (point: Float64Array): number => {
-    model.linearise(point, coefficients, residuals);
-    return weightedSquares(model, residuals, normals, without);
+    system.linearise(point, coefficients, residuals);
+    return weightedSquares(system, residuals, normals, without);
   };
 
   let x = start.slice();
@@ -68,12 +71,13 @@ export function solve(
       break;
     }
     const decrement = normals.solve(step, without);
-    converged = decrement <= CONVERGED;
+    const placed = pinned ? pinned.place(x, step) : 0;
+    converged = decrement + placed <= CONVERGED;
     const before = squares;
     for (let halving = 0, length = 1; halving <= MAX_HALVINGS; halving++, length /= 2) {
       for (let i = 0; i < trial.length; i++) trial[i] = x[i] + length * step[i];
       squares = squaresAt(trial);
-      if (converged || squares <= before + CONVERGED) break;
+      if (converged || squares <= before + CONVERGED * Math.max(1, before)) break;
     }
     [x, trial] = [trial, x];
   }
@@ -83,10 +87,10 @@ export function solve(
     unknowns: x,
     converged,
     iterations,
-    coefficients,
-    residuals,
+    coefficients: coefficients.subarray(0, model.columns.length),
+    residuals: residuals.subarray(0, model.weights.length),
     weightedSquares: squares,
-    degreesOfFreedom: freedom(model, normals, without),
+    degreesOfFreedom: freedom(system, normals, without),
     normals,
   };
 }
@@ -105,8 +109,9 @@ function weightedSquares(
 }
 
 function freedom({ weights, unknowns, blocks }: AdjustmentModel, normals: NormalEquations, without: number) {
-  if (without < 0) return weights.length - unknowns;
   let rows = 0;
-  for (let i = 0; i < weights.length; i++) if (normals.rowBlock(i) !== without) rows++;
-  return rows - (unknowns - (blocks[without + 1] - blocks[without]));
+  for (let i = 0; i < weights.length; i++) {
+    if (weights[i] > 0 && (without < 0 || normals.rowBlock(i) !== without)) rows++;
+  }
+  return without < 0 ? rows - unknowns : rows - (unknowns - (blocks[without + 1] - blocks[without]));
 }

@@ -39,8 +39,11 @@ export interface NetworkObservation {
   /** Where from and where to; null where there is none. A free station goes by its setup's id in `source`. */
   from: string | null;
   to: string | null;
-  /** Coordinate of a position, baseline, control or centring; null for scalars. */
-  component: 'easting' | 'northing' | 'elevation' | null;
+  /**
+   * Coordinate of a position, baseline or control; of a centring, along and across the ray (the zero of the circle, for
+   * an instrument); null for scalars.
+   */
+  component: 'easting' | 'northing' | 'elevation' | 'along' | 'across' | null;
   /** Number of the set; null where it has none. */
   set: number | null;
   /** Ids of the shots that it was meaned from, within the setup; empty elsewhere. */
@@ -56,8 +59,8 @@ export interface NetworkObservation {
   /** Smallest error found with power 0.80 at α₀ = 0.001; null like `standardised`. */
   minimalDetectable: number | null;
   /**
-   * What an error of that size would do to the points that it touches, the one that moves most; null where
-   * `minimalDetectable` is.
+   * What an error of that size would do to the points that it touches, the one that moves most (of a levelled
+   * difference: to their elevations); null where `minimalDetectable` is.
    */
   effect: PointEffect | null;
   /**
@@ -78,6 +81,8 @@ export interface RemovedObservation {
   /** Estimate of its error from the others, with its standard deviation; in its own unit. */
   error: number;
   errorSigma: number;
+  /** Observations whose error would have shown in the same way: it may be one of them instead. */
+  alternatives: readonly number[];
 }
 
 export interface AdjustedPoint {
@@ -149,11 +154,10 @@ export interface NetworkResult {
   /** In the order of removal; empty where snooping was not asked for. */
   removed: readonly RemovedObservation[];
   /**
-   * Why snooping ended: `clean` (nothing above 3.29 is left), `not_separable` (what is left above it is not
-   * controlled by enough others to be taken out), `too_many` (a tenth of the observations is out: the model or the
-   * stated accuracies are wrong, not the observations), null where it was not asked for.
+   * Why snooping ended: `clean` (nothing above 3.29 is left), `too_many` (a tenth of the observations is out: the model
+   * or the stated accuracies are wrong, not the observations), null where it was not asked for.
    */
-  snoopingEnded: 'clean' | 'not_separable' | 'too_many' | null;
+  snoopingEnded: 'clean' | 'too_many' | null;
   leftOut: readonly LeftOut[];
 }
 
