@@ -76,7 +76,11 @@ describe('level runs', () => {
     expect(run.radio).toMatch(
       /^Level run BM-1 to HT-2 is good, it closes to 0\.000 ft of 0\.019 ft allowed\.$/,
     );
-    expect(codes(run.notes)).toEqual(['intermediate_unchecked', 'limit_default']);
+    expect(codes(run.notes)).toEqual(['limit_default']);
+    const stake = book().map((line) => (line.point === 'HT-3' ? { ...line, point: 'STAKE-9' } : line));
+    const [unchecked] = (await one({ sights: stake })).notes;
+    expect(unchecked.code).toBe('intermediate_unchecked');
+    expect(unchecked.text).toMatch(/STAKE-9\.$/);
     const read = await site.admin.get(site.at(`/level-runs/${run.id}`)).expect(200);
     expect(read.body).toEqual(run);
   });
@@ -265,7 +269,7 @@ describe('level runs', () => {
       source: 'project',
       citation: 'special provision 12',
     });
-    const run = await one({ sights: book({ 'HT-2': 0.012 }) });
+    const run = await one({ sights: book({ 'HT-2': 0.03 }) });
     expect(run.verdict).toBe('fail');
     expect(run.closure.allowed).toBeCloseTo(0.02 * Math.sqrt(800 / 5280), 9);
     const back = await site.admin.patch(`/projects/${site.projectId}`, { levelLimit: null }).expect(200);

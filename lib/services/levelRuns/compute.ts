@@ -87,7 +87,7 @@ export function computeLevelRun(parts: LevelRunParts): {
     result: {
       ...run,
       reasons,
-      notes: [...bookNotes(run, sights), ...assumptions(parts, met, line)],
+      notes: [...bookNotes(run, sights, passed), ...assumptions(parts, met, line)],
       passed,
       differences: heightDifferences(sights, reduction, (name) => control.has(name)),
       line,

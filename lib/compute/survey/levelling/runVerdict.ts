@@ -176,14 +176,19 @@ function doubts(run: LevelRun, around: RunCircumstances): LevelReason[] {
 }
 
 /** What the book itself tells beside its figures. */
-export function bookNotes(run: LevelRun, sights: readonly LevelSight[]): LevelNote[] {
+export function bookNotes(
+  run: LevelRun,
+  sights: readonly LevelSight[],
+  passed: readonly PassedMark[],
+): LevelNote[] {
   const { lines, closure } = run;
   const notes: LevelNote[] = [];
   const named = (isMeant: (sight: LevelSight) => boolean) => [
     ...new Set(sights.filter(isMeant).map(({ point }) => point)),
   ];
   if (closure.kind === 'loop') notes.push({ code: 'loop_proves_no_mark', point: lines[0].point });
-  const between = named(({ intermediate }) => intermediate !== null);
+  const marks = new Set(passed.map(({ point }) => point));
+  const between = named(({ point, intermediate }) => intermediate !== null && !marks.has(point));
   if (between.length > 0) notes.push({ code: 'intermediate_unchecked', points: between });
   const long = named((sight) =>
     [sight.backsightDistance, sight.intermediateDistance, sight.foresightDistance].some(
