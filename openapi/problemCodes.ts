@@ -159,7 +159,7 @@ export const REQUEST_PROBLEMS = {
   setup_not_releasable: problem(
     409,
     'The setup cannot be released',
-    'A failed, withdrawn or superseded setup is not released.',
+    'A failed, withdrawn or superseded setup is not released, nor one without orientation or with two possible stations.',
     'Shoot again or refit; then release the new setup.',
   ),
   second_person_wanted: problem(
@@ -424,6 +424,24 @@ export const ITEM_PROBLEMS = {
     'A quarantined mark confirms no setup and contradicts none.',
     'Check on another mark, or trust the point again once it is proven.',
   ),
+  target_is_station: problem(
+    422,
+    'The target is the occupied mark',
+    'An instrument cannot sight the mark that it stands on.',
+    'Name the mark that was shot, or another stationPoint.',
+  ),
+  station_point_required: problem(
+    422,
+    'The occupied mark is missing',
+    'A setup by backsight stands on a control point, whose coordinates it starts from.',
+    'Name it in stationPoint; where no mark is occupied, send the setup as a resection.',
+  ),
+  instrument_height_required: problem(
+    422,
+    'The instrument height is missing',
+    'Over a mark the height of the tilting axis above it carries the elevation.',
+    'Send instrumentHeight.',
+  ),
   target_repeated: problem(
     422,
     'The same reading twice',
@@ -459,6 +477,12 @@ export const ITEM_PROBLEMS = {
     'No such setup',
     'Neither a clientId nor an id of a setup in this project.',
     'Correct it; a setup of the same upload must itself be accepted.',
+  ),
+  setup_without_orientation: problem(
+    422,
+    'The setup has no orientation',
+    'No direction was read in it: its place is known, the azimuth of its circle is not.',
+    'Post a setup with a direction to one mark at least.',
   ),
   setup_without_height: problem(
     422,
@@ -565,8 +589,8 @@ export const ITEM_PROBLEMS = {
   setup_not_computable: problem(
     422,
     'The setup cannot be computed',
-    'The shots do not determine a station: two marks with direction and distance are the least.',
-    'Shoot more marks, with distances.',
+    'The shots do not determine a station: two marks with distances, three with directions, or a mixture of them are the least.',
+    'Shoot more marks, with directions and distances.',
   ),
   method_not_supported: problem(
     422,

@@ -30,7 +30,7 @@ export const setups = pgTable(
     /** The setup whose observations these are: itself, or the first of a chain of refits. */
     rootId: uuid('root_id').notNull(),
     station: text('station').notNull(),
-    method: text('method').$type<'resection'>().notNull(),
+    method: text('method').$type<'resection' | 'identify' | 'backsight'>().notNull(),
     instrumentId: uuid('instrument_id').notNull(),
     instrumentName: text('instrument_name').notNull(),
     calibrationVersion: integer('calibration_version').notNull(),

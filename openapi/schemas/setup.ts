@@ -1,15 +1,18 @@
 import * as z from 'zod';
 import { Id, Moment, Name, Note, page, Sha256, Text, Verdict } from './primitives';
+import {
+  Backsight,
+  CheckOutcome,
+  DirectionSets,
+  FaceErrors,
+  Geometry,
+  Occupied,
+  Reductions,
+} from './setupDetail';
 import { AnswerUnits } from './units';
 
 const figure = z.number();
 const maybe = z.number().nullable();
-
-const Outcome = z.enum(['agreed', 'over', 'disagrees', 'notCapable']).meta({
-  id: 'CheckOutcome',
-  description:
-    'agreed: within the tolerance and within 2u, and 2u within the tolerance. over: beyond the tolerance. disagrees: more than the uncertainty explains. notCapable: 2u exceeds the tolerance.',
-});
 
 export const SetupCheckTarget = z
   .object({
@@ -27,8 +30,8 @@ export const SetupCheckTarget = z
       .object({ horizontal: figure, vertical: maybe })
       .meta({ description: 'One standard deviation, u.' }),
     tolerance: z.object({ horizontal: figure, vertical: figure }),
-    horizontal: Outcome,
-    vertical: Outcome.nullable(),
+    horizontal: CheckOutcome,
+    vertical: CheckOutcome.nullable(),
   })
   .meta({ id: 'SetupCheckTarget' });
 
@@ -65,6 +68,10 @@ export const SetupTarget = z
     residual: z.object({ easting: maybe, northing: maybe, elevation: maybe }).meta({
       description: 'Polar position from the fitted station minus published control.',
     }),
+    miss: z.object({ across: maybe, along: maybe, up: maybe }).meta({
+      description:
+        'What the readings miss by as lengths at the mark, observed minus fitted: sideways (right is plus), along the sight, up.',
+    }),
     without: z.object({ horizontal: figure, vertical: maybe }).nullable().meta({
       description: 'How the station moves without this mark; null where the rest does not determine it.',
     }),
@@ -95,6 +102,8 @@ export const Explanation = z
       'targetMoved',
       'heightOfTargetOrMark',
       'singleFace',
+      'stationMoved',
+      'instrumentHeight',
       'wrongFoot',
       'unexplained',
     ]),
@@ -156,12 +165,14 @@ export const Setup = z
     }),
     instrumentElevation: maybe.meta({ description: 'The tilting axis.' }),
     instrumentHeight: maybe,
-    orientation: figure.meta({ description: 'Azimuth of the circle’s zero, degrees.' }),
+    orientation: maybe.meta({
+      description: 'Azimuth of the circle’s zero, degrees; null where no direction was read.',
+    }),
     standardDeviations: z.object({
       easting: figure,
       northing: figure,
       elevation: maybe,
-      orientationArcsec: figure,
+      orientationArcsec: maybe,
     }),
     errorEllipse: z
       .object({ semiMajor: figure, semiMinor: figure, azimuth: figure, confidence: z.literal(0.95) })
@@ -172,7 +183,7 @@ export const Setup = z
     accuracyAtWork: z
       .object({
         radius: figure,
-        horizontal: figure,
+        horizontal: maybe,
         vertical: maybe,
         confidence: z.literal(0.95),
         limits: z.object({ horizontal: figure, vertical: figure }),
@@ -185,19 +196,21 @@ export const Setup = z
       degreesOfFreedom: z.int(),
       chiSquare: z.object({ value: figure, lower: figure, upper: figure, passed: z.boolean() }),
       scaled: z.boolean().meta({ description: 'Standard deviations were multiplied by sigma0.' }),
+      dataSnooping: z.object({ criticalW: figure, delta0: figure, alpha: figure, power: figure }).meta({
+        description:
+          'Beyond |w| = criticalW a reading is an outlier (α, two-sided); minimalDetectable is found with that power (Baarda).',
+      }),
       converged: z.boolean(),
       iterations: z.int(),
     }),
-    geometry: z.object({
-      targets: z.int(),
-      spreadDegrees: figure.meta({ description: '360 minus the largest gap.' }),
-      insideControl: z.boolean(),
-      weakestWithout: z.object({ target: z.string(), shift: figure }).nullable(),
+    geometry: Geometry,
+    occupied: Occupied.nullable(),
+    backsights: z.array(Backsight),
+    reductions: Reductions,
+    faceErrors: FaceErrors.nullable().meta({ description: 'Null where no set has both faces.' }),
+    directionSets: DirectionSets.nullable().meta({
+      description: 'Null of fewer than two sets with two reflectors in common.',
     }),
-    faceErrors: z
-      .object({ twoCollimationArcsec: figure, verticalIndexArcsec: figure })
-      .nullable()
-      .meta({ description: 'Null where no set has both faces.' }),
     targets: z.array(SetupTarget),
     checks: z.array(SetupCheck),
     explanations: z.array(Explanation),
@@ -264,7 +277,9 @@ export const Pointing = z
     target: z.string(),
     kind: z.enum(['control', 'benchmark', 'target']),
     status: z.enum(['trusted', 'suspect', 'quarantined']),
-    horizontal: figure.meta({ description: 'Face left, degrees.' }),
+    horizontal: maybe.meta({
+      description: 'Face left, degrees; null where the setup has no orientation.',
+    }),
     zenith: maybe.meta({ description: 'Face left, degrees; null where the point has no elevation.' }),
     slopeDistance: maybe.meta({ description: 'True slope distance.' }),
     horizontalDistance: figure.meta({ description: 'Ground distance.' }),

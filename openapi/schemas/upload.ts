@@ -18,17 +18,31 @@ export const SetupInput = z
     instrumentHeight: z.number().min(0).max(100).nullable().meta({
       description: 'Axis above the mark; null where no mark is occupied.',
     }),
-    stationPoint: Name.optional().meta({ description: 'The occupied mark of a setup by backsight.' }),
+    stationPoint: Name.optional().meta({
+      description: 'The occupied mark of a setup by backsight, required there and nowhere else.',
+    }),
     toleranceClass: z.string().max(120).optional().meta({ description: 'The project’s first by default.' }),
     observedAt: Instant,
     atmosphere: z
       .strictObject({
         temperature: z.number().min(-80).max(150),
         pressure: z.number().gt(0).max(1200),
-        humidityPercent: z.number().min(0).max(100).optional().meta({ description: '60 by default.' }),
+        humidityPercent: z
+          .number()
+          .min(0)
+          .max(100)
+          .optional()
+          .meta({ description: 'Relative humidity; 60 where neither it nor wetBulb is sent.' }),
+        wetBulb: z.number().min(-80).max(150).optional().meta({
+          description: 'Of an aspirated psychrometer, in units.temperature, not below freezing.',
+        }),
       })
       .optional()
       .meta({ description: 'Pressure at the station, not reduced to sea level.' }),
+    refraction: z
+      .strictObject({ coefficient: z.number().min(-5).max(5), sigma: z.number().min(0).max(5) })
+      .optional()
+      .meta({ description: 'Coefficient of refraction k of this setup; the project’s by default.' }),
     shots: z.array(Shot).min(1).max(500),
   })
   .meta({ id: 'SetupInput' });

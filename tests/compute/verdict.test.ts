@@ -36,10 +36,15 @@ function mark(name: string, change: Partial<FittedMark> = {}): FittedMark {
       { ...reading, kind: 'zenith', standardised: -1 },
       { ...reading, kind: 'distance', standardised: 0.5 },
     ],
-    without: { horizontal: 0.002, vertical: -0.002 },
+    miss: { across: 0.001, along: 0.001, up: 0.001 },
+    without: shift(0.002, -0.002),
     stationCovariance: new Float64Array(15),
     ...change,
   };
+}
+
+function shift(horizontal: number, vertical: number | null): NonNullable<FittedMark['without']> {
+  return { easting: horizontal, northing: 0, horizontal, vertical, orientation: 0 };
 }
 
 /** A good fit of three trusted marks, changed where a test wants it. */
@@ -54,6 +59,13 @@ function goodFit(change: Partial<StationFit> = {}): StationFit {
       covariance: new Float64Array(25),
     },
     heightDetermined: true,
+    orientationDetermined: true,
+    occupied: null,
+    backsights: [],
+    danger: null,
+    others: [],
+    unusedDistances: [],
+    directionSets: null,
     converged: true,
     iterations: 3,
     test: { sigma0: 1, degreesOfFreedom: 5, value: 5, lower: 1.1, upper: 11.1, passed: true, low: false },
@@ -260,8 +272,8 @@ describe('trusted marks', () => {
 
 describe('the solution with a mark removed', () => {
   it.each([
-    ['horizontal', { horizontal: 0.01, vertical: 0 }],
-    ['vertical', { horizontal: 0, vertical: -0.008 }],
+    ['horizontal', { ...shift(0.01, 0), vertical: 0 }],
+    ['vertical', { ...shift(0, -0.008), vertical: -0.008 }],
   ] as const)('passes where it moves by the %s limit, and holds beyond', (axis, without) => {
     expect(judge(withMark({ without })).verdict).toBe('pass');
     const more = { ...without, [axis]: without[axis] * (1 + 1e-6) };
@@ -273,14 +285,14 @@ describe('the solution with a mark removed', () => {
 
   it('holds where the others do not determine the station, or its height', () => {
     expect(judge(withMark({ without: null })).verdicts).toEqual({ horizontal: 'hold', vertical: 'hold' });
-    const flat = judge(withMark({ without: { horizontal: 0, vertical: null } }));
+    const flat = judge(withMark({ without: shift(0, null) }));
     expect(flat.verdicts).toEqual({ horizontal: 'pass', vertical: 'hold' });
     expect(flat.of('single_mark_needed')).toMatchObject({ axis: 'vertical', target: 'A' });
   });
 
   it('names the mark that moves it most', () => {
     const marks = [0.011, 0.03, 0.02].map((horizontal, i) =>
-      mark('ABC'[i], { without: { horizontal, vertical: 0 } }),
+      mark('ABC'[i], { without: shift(horizontal, 0) }),
     );
     expect(judge({ marks }).of('single_mark_dominates')).toMatchObject({ target: 'B', value: 0.03 });
   });

@@ -73,7 +73,7 @@ describe.each(LANGUAGES)('the walk in %s', (language) => {
     expect(Math.abs(position.northing - GOOD.axis.northing)).toBeLessThan(0.02);
     expect(Math.abs(instrumentElevation! - GOOD.axis.elevation)).toBeLessThan(0.02);
     expect(position.elevation).toBeCloseTo(instrumentElevation! - GOOD.instrumentHeight!, 9);
-    expect(Math.abs(orientation - GOOD.orientation) * 3600).toBeLessThan(15);
+    expect(Math.abs(orientation! - GOOD.orientation) * 3600).toBeLessThan(15);
     expect(3 * standardDeviations.easting).toBeLessThan(0.02);
   });
 
@@ -155,7 +155,7 @@ describe('the three walks', () => {
       expect(setup.position.easting).toBeCloseTo(same.position.easting, 9);
       expect(setup.position.northing).toBeCloseTo(same.position.northing, 9);
       expect(setup.instrumentElevation!).toBeCloseTo(same.instrumentElevation!, 9);
-      expect(setup.orientation).toBeCloseTo(same.orientation, 9);
+      expect(setup.orientation!).toBeCloseTo(same.orientation!, 9);
       expect(setup.reasons).toEqual(same.reasons);
     }
     expect(Object.keys(left[language].setups).sort()).toEqual(['st-1', 'st-2', 'st-3']);

@@ -25,10 +25,32 @@ export function groupRefractivity(wavelength: number): number {
   return 287.6155 + 4.8866 * inverseSquare + 0.068 * inverseSquare * inverseSquare;
 }
 
-/** Partial pressure of water vapour in Pa (Magnus formula over water with 6.1078, 7.5 and 237.3). */
+/** Partial pressure of water vapour in Pa. */
 export function vapourPressure({ temperature, humidity }: Atmosphere): number {
+  return humidity * saturation(temperature);
+}
+
+/** Saturation pressure over water in Pa (Magnus formula with 6.1078, 7.5 and 237.3). */
+function saturation(temperature: number): number {
   const celsius = temperature - 273.15;
-  return humidity * 610.78 * 10 ** ((7.5 * celsius) / (237.3 + celsius));
+  return 610.78 * 10 ** ((7.5 * celsius) / (237.3 + celsius));
+}
+
+/** Constant of the aspirated psychrometer over water, 1/K (Sprung 1888). */
+const PSYCHROMETER = 0.000662;
+
+/**
+ * Relative humidity, 0–1, by an aspirated psychrometer: e = E(t′) − 0.000662·p·(t − t′). Negative where the wet bulb
+ * is colder than the driest air makes it.
+ *
+ * @param wetBulb not below freezing, K
+ */
+export function humidityFromWetBulb(
+  { temperature, pressure }: Pick<Atmosphere, 'temperature' | 'pressure'>,
+  wetBulb: number,
+): number {
+  const vapour = saturation(wetBulb) - PSYCHROMETER * pressure * (temperature - wetBulb);
+  return vapour / saturation(temperature);
 }
 
 /** Refractivity N = (n−1)·10⁶ of ambient air: (273.15/1013.25)·Ngr·p/T − 11.27·e/T with p and e in hPa. */

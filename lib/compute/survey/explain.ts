@@ -38,10 +38,22 @@ const ODDS: Record<Fault, number> = {
   distanceScale: 0.005,
   wrongFoot: 0.005,
   singleFace: 0.005,
+  stationMoved: 0.02,
+  instrumentHeight: 0.03,
   unexplained: 0.005,
 };
 /** Lighter explanations are not named; what they weigh goes to `unexplained`. */
 const WORTH_NAMING = 0.01;
+
+/** Above this share one explanation is worth acting on before any other. */
+export const SURE = 0.9;
+/** Faults that sit in one mark and pull the others off with it. */
+const OF_ONE_MARK: ReadonlySet<Fault> = new Set(['targetMoved', 'heightOfTargetOrMark', 'wrongFoot']);
+
+/** The one mark behind everything that does not fit; null where no explanation stands out, or it is no mark's. */
+export function markToBlame([first]: readonly Explanation[]): string | null {
+  return first && first.weight >= SURE && OF_ONE_MARK.has(first.fault) ? first.subject[0] : null;
+}
 
 interface Candidate {
   fault: Fault;
@@ -86,9 +98,13 @@ export function explain(adjusted: AdjustedStation, standardised: Float64Array): 
 function tried({ model, solution }: AdjustedStation, suspicion: Suspicion): Candidate | null {
   const { fault, subject, entries, usual, sizeOf } = suspicion;
   const suspicious = withSuspicions(model, usual.length, entries);
-  const start = suspiciousStart(model, solution.converged ? solution.unknowns : model.start, usual.length);
-  const attempt = orNull(() => solve(suspicious, start));
-  if (!attempt?.converged) return null;
+  // A wrong mark drags the solution far off; the start is free of it.
+  const attempts = [solution.unknowns, model.start].flatMap((from) => {
+    const attempt = orNull(() => solve(suspicious, suspiciousStart(model, from, usual.length)));
+    return attempt?.converged ? attempt : [];
+  });
+  if (attempts.length === 0) return null;
+  const attempt = attempts.reduce((a, b) => (b.weightedSquares < a.weightedSquares ? b : a));
   const estimate = usual.map((_, i) => attempt.unknowns[model.shared + i]);
   const covariance = covarianceOfFaults(attempt, model.shared, usual.length);
   const evidence = orNull(() =>

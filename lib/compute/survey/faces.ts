@@ -25,11 +25,21 @@ export interface Erection {
   heightSigma: number;
 }
 
+/** Errors of the instrument that two faces show and their mean is free of; null where no set has both. */
 export interface FaceErrors {
   /** 2c: face left minus face right, at the horizon, rad. */
-  twoCollimation: number;
+  twoCollimation: number | null;
   /** (left + right − 2π)/2, rad. */
-  verticalIndex: number;
+  verticalIndex: number | null;
+  /** Standard deviations as the stated accuracy makes them, rad. */
+  twoCollimationSigma: number | null;
+  verticalIndexSigma: number | null;
+  /** Standard deviations of one pair as the pairs show it themselves, rad; null of fewer than two. */
+  twoCollimationSpread: number | null;
+  verticalIndexSpread: number | null;
+  /** Pairs of faces that they come from. */
+  collimationPairs: number;
+  indexPairs: number;
 }
 
 export interface Means {
@@ -73,8 +83,8 @@ export function meanFaces(shots: readonly Shot[], accuracy: InstrumentAccuracy, 
   }
 
   const readings: Reading[] = [];
-  const collimations: number[] = [];
-  const indices: number[] = [];
+  const collimations: Pair[] = [];
+  const indices: Pair[] = [];
   for (const { erection, set, left, right } of groups.values()) {
     const place = { erection, set };
     const zenith = meanZenith(left, right, accuracy);
@@ -83,16 +93,51 @@ export function meanFaces(shots: readonly Shot[], accuracy: InstrumentAccuracy, 
     if (direction) readings.push({ kind: 'direction', ...place, ...direction.reading });
     if (zenith) readings.push({ kind: 'zenith', ...place, ...zenith.reading });
     if (distance) readings.push({ kind: 'distance', ...place, ...distance });
-    if (zenith?.difference != null) indices.push(zenith.difference / 2);
+    // The difference of two faces has twice the standard deviation of their mean.
+    if (zenith?.difference != null) {
+      indices.push({ value: zenith.difference / 2, sigma: zenith.reading.sigma });
+    }
     if (direction?.difference != null) {
-      collimations.push(direction.difference * (zenith ? Math.sin(zenith.reading.value) : 1));
+      const atHorizon = zenith ? Math.sin(zenith.reading.value) : 1;
+      const sigma = 2 * direction.reading.sigma * atHorizon;
+      collimations.push({ value: direction.difference * atHorizon, sigma });
     }
   }
-  const faceErrors =
-    collimations.length > 0 || indices.length > 0
-      ? { twoCollimation: mean(collimations), verticalIndex: mean(indices) }
-      : null;
-  return { erections, readings, faceErrors };
+  return { erections, readings, faceErrors: faceErrors(collimations, indices) };
+}
+
+/** What one pair of faces shows of an error. */
+interface Pair {
+  value: number;
+  sigma: number;
+}
+
+function faceErrors(collimations: readonly Pair[], indices: readonly Pair[]): FaceErrors | null {
+  if (collimations.length === 0 && indices.length === 0) return null;
+  const [collimation, index] = [collimations, indices].map(meanPair);
+  return {
+    twoCollimation: collimation.mean,
+    verticalIndex: index.mean,
+    twoCollimationSigma: collimation.sigma,
+    verticalIndexSigma: index.sigma,
+    twoCollimationSpread: collimation.spread,
+    verticalIndexSpread: index.spread,
+    collimationPairs: collimations.length,
+    indexPairs: indices.length,
+  };
+}
+
+function meanPair(pairs: readonly Pair[]) {
+  const n = pairs.length;
+  if (n === 0) return { mean: null, sigma: null, spread: null };
+  const middle = mean(pairs.map(({ value }) => value));
+  const squares = pairs.reduce((sum, { value }) => sum + (value - middle) ** 2, 0);
+  const variances = pairs.reduce((sum, { sigma }) => sum + sigma ** 2, 0);
+  return {
+    mean: middle,
+    sigma: Math.sqrt(variances) / n,
+    spread: n < 2 ? null : Math.sqrt(squares / (n - 1)),
+  };
 }
 
 type SetMean = Pick<Reading, 'value' | 'sigma' | 'face'>;

@@ -7,5 +7,7 @@ export type Fault =
   | 'targetMoved'
   | 'heightOfTargetOrMark'
   | 'singleFace'
+  | 'stationMoved'
+  | 'instrumentHeight'
   | 'wrongFoot'
   | 'unexplained';

@@ -1,12 +1,18 @@
 import { SingularError } from '@/lib/compute/adjustment/model';
 import { type Solution, solve } from '@/lib/compute/adjustment/solve';
-import { AXIS, EASTING, NORTHING, type StationModel } from './stationModel';
+import { wrapDifference } from '@/lib/compute/units/angles';
+import { AXIS, EASTING, NORTHING, ORIENTATION, type StationModel } from './stationModel';
 
+/** How the station moves without a mark: its place without the mark minus its place with it. */
 export interface MarkShift {
-  /** Horizontal distance and signed height by which the station moves, m. */
+  easting: number;
+  northing: number;
+  /** Their length, m. */
   horizontal: number;
-  /** Null where this mark alone carries the height. */
+  /** Signed, m; null where this mark alone carries the height. */
   vertical: number | null;
+  /** Turn of the orientation, rad. */
+  orientation: number;
 }
 
 /** Above this the linear answer is not good enough and the rest is adjusted anew, m. */
@@ -18,28 +24,39 @@ const NONLINEAR = 1e-5;
  * adjustment is repeated without the mark.
  */
 export function shiftsWithout(model: StationModel, solution: Solution): (MarkShift | null)[] {
-  if (model.marks.length < 2) return model.marks.map(() => null);
+  if (model.marks.length < 2 && !model.occupied) return model.marks.map(() => null);
   return model.marks.map((_, block) => {
     const full = orSingular(() => solution.normals.stepWithout(block));
     if (!(full instanceof SingularError)) return shift(model, solution, block, full);
     if (full.unknown !== AXIS) return null;
     const flat = orSingular(() => solution.normals.stepWithout(block, AXIS));
     if (flat instanceof SingularError) return null;
-    return { horizontal: Math.hypot(flat[EASTING], flat[NORTHING]), vertical: null };
+    return { ...shiftOf((unknown) => flat[unknown]), vertical: null };
   });
 }
 
 function shift(model: StationModel, solution: Solution, block: number, step: Float64Array): MarkShift | null {
   const { unknowns } = solution;
-  const linear = { horizontal: Math.hypot(step[EASTING], step[NORTHING]), vertical: step[AXIS] };
+  const linear = shiftOf((unknown) => step[unknown]);
   const length = Math.hypot(linear.horizontal, linear.vertical);
   if (length * length < NONLINEAR * nearestOther(model, unknowns, block)) return linear;
   const repeated = orSingular(() => solve(model, unknowns, { without: block }));
   if (repeated instanceof SingularError) return null;
   // The rest contradicts itself grossly: then the first step says well enough that the shift is large.
   if (!repeated.converged) return linear;
-  const moved = (unknown: number) => repeated.unknowns[unknown] - unknowns[unknown];
-  return { horizontal: Math.hypot(moved(EASTING), moved(NORTHING)), vertical: moved(AXIS) };
+  return shiftOf((unknown) => repeated.unknowns[unknown] - unknowns[unknown]);
+}
+
+/** @param moved how far an unknown of the station moves */
+export function shiftOf(moved: (unknown: number) => number) {
+  const [easting, northing] = [moved(EASTING), moved(NORTHING)];
+  return {
+    easting,
+    northing,
+    horizontal: Math.hypot(easting, northing),
+    vertical: moved(AXIS),
+    orientation: wrapDifference(moved(ORIENTATION)),
+  };
 }
 
 /** What an attempt gives, or which unknown it leaves undetermined. */

@@ -1,6 +1,7 @@
-import type { Erection, Reading, ReadingKind } from './faces';
-import { offsetFromHeight, offsetFromZenith } from './ray';
-import type { ControlMark } from './shots';
+import { wrapDifference } from '@/lib/compute/units/angles';
+import type { Place } from './loci';
+import { median, type Sight } from './sights';
+import { type Candidate, isWhole, rigidMotion, startCandidates, weighed } from './startCandidates';
 import type { Surroundings } from './surroundings';
 
 export interface StartValues {
@@ -11,65 +12,75 @@ export interface StartValues {
   orientation: number;
 }
 
-/**
- * Start values of a resection from two or more marks with direction and distance, for any orientation: the rigid
- * motion that lays the polar picture of the marks onto their coordinates (closed form, two-dimensional case of
- * Umeyama 1991). Null where fewer than two distinct marks carry both.
- */
-export function startValues(
-  erections: readonly Erection[],
-  readings: readonly Reading[],
-  control: ReadonlyMap<string, ControlMark>,
-  surroundings: Surroundings,
-): StartValues | null {
-  const first = (erection: number, kind: ReadingKind) =>
-    readings.find((reading) => reading.erection === erection && reading.kind === kind)?.value ?? null;
-  const seen: { east: number; north: number; mark: ControlMark; axis: number | null }[] = [];
-  erections.forEach((erection, index) => {
-    const mark = control.get(erection.target);
-    const direction = first(index, 'direction');
-    const slope = first(index, 'distance');
-    const zenith = first(index, 'zenith');
-    if (!mark || direction === null || slope === null) return;
-    const offset =
-      zenith === null
-        ? offsetFromHeight(0, slope, surroundings)
-        : offsetFromZenith(zenith, slope, surroundings.refraction, surroundings);
-    const reflector = mark.elevation === null ? null : mark.elevation + erection.targetHeight;
-    seen.push({
-      east: offset.grid * Math.sin(direction),
-      north: offset.grid * Math.cos(direction),
-      mark,
-      axis: reflector === null || zenith === null ? null : reflector - offset.height,
-    });
-  });
-  if (new Set(seen.map(({ mark }) => mark.name)).size < 2) return null;
+/** What the marks may miss the first picture by before single marks are doubted, m. */
+const AGREED = 0.5;
+/** Candidates nearer to each other than this come of the same solution, m. */
+const SAME_PLACE = 0.05;
+/** Candidates that all sights vote for so much less are no solutions: what the misses of a weak figure may cost. */
+const AS_GOOD = 10;
+/** Other solutions that are followed: two loci meet twice. */
+const MOST_OTHERS = 5;
 
-  const centre = { east: mean(seen.map((s) => s.east)), north: mean(seen.map((s) => s.north)) };
-  const target = {
-    east: mean(seen.map((s) => s.mark.easting)),
-    north: mean(seen.map((s) => s.mark.northing)),
-  };
-  let sine = 0;
-  let cosine = 0;
-  for (const { east, north, mark } of seen) {
-    const [pe, pn] = [east - centre.east, north - centre.north];
-    const [qe, qn] = [mark.easting - target.east, mark.northing - target.north];
-    sine += qe * pn - qn * pe;
-    cosine += qe * pe + qn * pn;
+/**
+ * Start values of a station for any orientation, best first; more than one where the sights may fit more than one
+ * place. Empty where they fit none.
+ */
+export function startValues(sights: readonly Sight[], surroundings: Surroundings): StartValues[] {
+  const whole = sights.filter(isWhole);
+  if (new Set(whole.map(({ mark }) => mark.name)).size > 1) {
+    const all = rigidMotion(whole);
+    if (all && agrees(all, sights)) return [completed(all, sights, surroundings)];
   }
-  if (sine === 0 && cosine === 0) return null;
-  const orientation = Math.atan2(sine, cosine);
-  const [s, c] = [Math.sin(orientation), Math.cos(orientation)];
-  const axes = seen.flatMap(({ axis }) => axis ?? []);
+  const candidates = startCandidates(sights);
+  const apart: Candidate[] = [];
+  for (const candidate of candidates) {
+    if (candidate.misfit > candidates[0].misfit + AS_GOOD || apart.length > MOST_OTHERS) break;
+    if (apart.every((other) => between(candidate, other) > SAME_PLACE)) apart.push(candidate);
+  }
+  return apart.map((candidate) => completed(candidate, sights, surroundings));
+}
+
+/** Start values of a station whose place is known: its orientation by the votes of its sights. */
+export function occupiedStart(
+  place: Place & { axis: number | null },
+  sights: readonly Sight[],
+  surroundings: Surroundings,
+): StartValues {
+  const start = completed(weighed(place, sights), sights, surroundings);
+  return { ...start, elevation: place.axis ?? start.elevation };
+}
+
+function agrees(station: Place & { orientation: number }, sights: readonly Sight[]): boolean {
+  return sights.every(({ mark, direction, grid }) => {
+    const [east, north] = [mark.easting - station.easting, mark.northing - station.northing];
+    const distance = Math.hypot(east, north);
+    const turn = direction === null ? 0 : Math.atan2(east, north) - station.orientation - direction;
+    return Math.hypot(wrapDifference(turn) * distance, (grid ?? distance) - distance) < AGREED;
+  });
+}
+
+/** With the elevation of the axis: by zenith angle and distance, or else by zenith angle and the marks' distances. */
+function completed(
+  { easting, northing, orientation }: Place & { orientation: number | null },
+  sights: readonly Sight[],
+  { refraction, earthRadius, combinedFactor }: Surroundings,
+): StartValues {
+  const measured = sights.flatMap(({ axis }) => axis ?? []);
+  const fromMap = () =>
+    sights.flatMap(({ mark, zenith, reflector }) => {
+      if (zenith === null || reflector === null) return [];
+      const ground = between(mark, { easting, northing }) / combinedFactor;
+      const bend = ground / (2 * earthRadius);
+      return reflector - (ground / Math.tan(zenith + refraction * bend) + ground * bend);
+    });
   return {
-    easting: target.east - (c * centre.east + s * centre.north),
-    northing: target.north - (c * centre.north - s * centre.east),
-    elevation: axes.length > 0 ? mean(axes) : 0,
-    orientation,
+    easting,
+    northing,
+    elevation: median(measured.length > 0 ? measured : fromMap()) ?? 0,
+    orientation: orientation ?? 0,
   };
 }
 
-function mean(values: readonly number[]): number {
-  return values.reduce((sum, value) => sum + value, 0) / values.length;
+function between(one: Place, other: Place): number {
+  return Math.hypot(one.easting - other.easting, one.northing - other.northing);
 }

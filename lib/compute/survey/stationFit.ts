@@ -4,13 +4,24 @@ import { type GlobalTest, globalTest } from '@/lib/compute/adjustment/globalTest
 import { type Reliability, reliability } from '@/lib/compute/adjustment/reliability';
 import type { Solution } from '@/lib/compute/adjustment/solve';
 import { wrapTurn } from '@/lib/compute/units/angles';
+import { type BacksightCheck, backsightChecks } from './backsights';
+import { type DangerCircle, dangerCircle, isLost } from './dangerCircle';
+import { type DirectionSets, directionSets } from './directionSets';
 import { type Explanation, explain } from './explain';
 import type { FaceErrors, ReadingKind } from './faces';
 import { type SightGeometry, sightGeometry } from './geometry';
-import { type MarkShift, shiftsWithout } from './leaveOneOut';
+import { type MarkShift, shiftOf, shiftsWithout } from './leaveOneOut';
+import { type OtherStation, otherStations } from './otherStations';
 import { type Point, polarPoint, polarPointAtElevation, STATION_UNKNOWNS, type Station } from './polarPoint';
 import type { ControlMark } from './shots';
-import { type AdjustedStation, adjustStation, type StationInput } from './stationAdjustment';
+import {
+  type AdjustedStation,
+  adjustStation,
+  marksOfKind,
+  type Occupied,
+  StationError,
+  type StationInput,
+} from './stationAdjustment';
 import { AXIS, EASTING, NORTHING, ORIENTATION, REFRACTION, type StationModel } from './stationModel';
 import type { Surroundings } from './surroundings';
 
@@ -42,15 +53,47 @@ export interface FittedMark {
   /** Polar position from the fitted station minus published control; null where it was not fully read. */
   residual: { easting: number | null; northing: number | null; elevation: number | null };
   readings: FittedReading[];
+  /** What its readings miss by at the mark, observed minus fitted, m: sideways (right is plus), along the sight, up. */
+  miss: { across: number | null; along: number | null; up: number | null };
   /** How the station moves without this mark; null where the others do not determine it. */
   without: MarkShift | null;
   /** Covariance of (station's five unknowns) with the error of the published coordinates, 5 × 3 row by row. */
   stationCovariance: Float64Array;
 }
 
+/** The mark under the instrument, as the fit leaves it. */
+export interface FittedOccupation {
+  name: string;
+  version: number;
+  status: ControlMark['status'];
+  published: Pick<ControlMark, 'easting' | 'northing' | 'elevation'>;
+  instrumentHeight: number;
+  /** Station from the fit minus published coordinates, m. */
+  residual: { easting: number; northing: number; elevation: number | null };
+  /** w of the coordinates that hold the axis; null where nothing else controls them. */
+  standardised: { easting: number | null; northing: number | null; elevation: number | null };
+  /** How the station moves when it is free of its mark; null where the backsights do not determine it. */
+  without: MarkShift | null;
+  /** How the axis moves without the elevation of its mark, m; null where the backsights have no height. */
+  heightWithout: number | null;
+}
+
 export interface StationFit {
   station: Station;
   heightDetermined: boolean;
+  /** Without it, only the place is known: no direction was read. */
+  orientationDetermined: boolean;
+  /** Of a setup over a mark; null of a free station. */
+  occupied: FittedOccupation | null;
+  /** Distances and heights to the backsights of a setup over a mark, against published coordinates. */
+  backsights: BacksightCheck[];
+  /** Of a free station without distances. */
+  danger: DangerCircle | null;
+  /** Other stations that fit the shots as well. */
+  others: OtherStation[];
+  /** Marks to which a distance was read that could not be brought to the horizontal. */
+  unusedDistances: string[];
+  directionSets: DirectionSets | null;
   converged: boolean;
   iterations: number;
   test: GlobalTest;
@@ -65,8 +108,8 @@ export interface StationFit {
 }
 
 /**
- * Free station from shots to known marks: directions, zenith angles and slope distances in one weighted
- * adjustment, with statistics and every mark left out in turn.
+ * Station from shots to known marks, free or over a mark: directions, zenith angles and slope distances in one
+ * weighted adjustment, with statistics and every mark left out in turn.
  *
  * @param shots orientation shots only, to marks of `control`
  * @param ppm atmospheric correction wanted, null where the atmosphere is unknown
@@ -86,6 +129,7 @@ export function describeStation(adjusted: AdjustedStation): StationFit {
   const scale = test.passed ? 1 : test.sigma0;
   const station = fittedStation(model, solution, cofactors, scale);
   const axes = standardEllipse(station.covariance[0], station.covariance[6], station.covariance[1]);
+  const danger = dangerOf(adjusted, station, axes.semiMajor);
   const factor = ellipseFactor95(test.passed ? null : test.degreesOfFreedom);
   const shifts = shiftsWithout(model, solution);
 
@@ -102,6 +146,7 @@ export function describeStation(adjusted: AdjustedStation): StationFit {
       horizontal: kinds.has('direction') || kinds.has('distance'),
       vertical: kinds.has('zenith') && mark.elevation !== null,
       residual: markResidual(mark, station, model, erections, surroundings),
+      miss: missOf(mark, own, adjusted, station),
       readings: own.map((row) => fittedReading(row, model, solution, statistics)),
       without: shifts[block],
       stationCovariance: stationCovariance(model, cofactors, mark, erections, scale),
@@ -110,6 +155,13 @@ export function describeStation(adjusted: AdjustedStation): StationFit {
   return {
     station,
     heightDetermined: model.heightDetermined,
+    orientationDetermined: model.orientationDetermined,
+    occupied: occupation(adjusted, station, statistics),
+    backsights: backsightChecks(adjusted),
+    danger,
+    others: otherStations(adjusted),
+    unusedDistances: adjusted.unusedDistances,
+    directionSets: directionSets(readings, erections),
     converged: solution.converged,
     iterations: solution.iterations,
     test,
@@ -126,8 +178,105 @@ export function describeStation(adjusted: AdjustedStation): StationFit {
         return horizontal ? Math.atan2(mark.easting - station.easting, mark.northing - station.northing) : [];
       }),
     ),
-    faceErrors: adjusted.faceErrors,
+    faceErrors: adjusted.means.faceErrors,
     explanations: explain(adjusted, statistics.standardised),
+  };
+}
+
+/** @throws StationError where the station is as good as on the circle through its marks */
+function dangerOf(
+  { angleOnly, readings, erections, input }: AdjustedStation,
+  station: Station,
+  semiMajor: number,
+): DangerCircle | null {
+  if (!angleOnly) return null;
+  const marks = marksOfKind('direction', readings, erections, input.control);
+  const danger = dangerCircle(marks, station);
+  if (danger && isLost(danger, semiMajor)) throw new StationError('danger_circle', danger.marks);
+  return danger;
+}
+
+function occupation(
+  { input, model, solution }: AdjustedStation,
+  station: Station,
+  { standardised }: Reliability,
+): FittedOccupation | null {
+  if (!input.occupied) return null;
+  const { mark, instrumentHeight } = input.occupied;
+  const hasElevation = mark.elevation !== null;
+  const w = (unknown: number) => {
+    const value = standardised[model.heldRow(unknown)];
+    return Number.isFinite(value) ? value : null;
+  };
+  return {
+    name: mark.name,
+    version: mark.version,
+    status: mark.status,
+    published: { easting: mark.easting, northing: mark.northing, elevation: mark.elevation },
+    instrumentHeight,
+    residual: {
+      easting: station.easting - mark.easting,
+      northing: station.northing - mark.northing,
+      elevation: hasElevation ? station.axis - instrumentHeight - mark.elevation! : null,
+    },
+    standardised: {
+      easting: w(EASTING),
+      northing: w(NORTHING),
+      elevation: hasElevation ? w(AXIS) : null,
+    },
+    without: withoutMark(input, model, solution),
+    heightWithout: withoutElevation(input, input.occupied, solution),
+  };
+}
+
+/** The same shots as those of a free station. */
+function withoutMark(input: StationInput, model: StationModel, { unknowns }: Solution): MarkShift | null {
+  const free = adjustedOrNull({ ...input, occupied: null });
+  if (!free || otherStations(free).length > 0) return null;
+  const origins = [model.origin, free.model.origin];
+  const [east, north] = [origins[1].easting - origins[0].easting, origins[1].northing - origins[0].northing];
+  const moved = shiftOf((unknown) => {
+    const origin = unknown === EASTING ? east : unknown === NORTHING ? north : 0;
+    return free.solution.unknowns[unknown] - unknowns[unknown] + origin;
+  });
+  return { ...moved, vertical: free.model.heightDetermined ? moved.vertical : null };
+}
+
+/** The same over a mark whose elevation nobody knows. */
+function withoutElevation(input: StationInput, occupied: Occupied, { unknowns }: Solution): number | null {
+  const mark = { ...occupied.mark, elevation: null };
+  const flat = adjustedOrNull({ ...input, occupied: { ...occupied, mark } });
+  return flat?.model.heightDetermined ? flat.solution.unknowns[AXIS] - unknowns[AXIS] : null;
+}
+
+function adjustedOrNull(input: StationInput): AdjustedStation | null {
+  try {
+    const adjusted = adjustStation(input);
+    return adjusted.solution.converged ? adjusted : null;
+  } catch (error) {
+    if (error instanceof StationError) return null;
+    throw error;
+  }
+}
+
+/** What the readings of a mark miss by, as lengths at the mark: means over sets and erections. */
+function missOf(
+  mark: ControlMark,
+  rows: readonly number[],
+  { readings, solution }: AdjustedStation,
+  station: Station,
+): FittedMark['miss'] {
+  const distance = Math.hypot(mark.easting - station.easting, mark.northing - station.northing);
+  const meanOf = (kind: ReadingKind) => {
+    const own = rows.filter((row) => readings[row].kind === kind);
+    return own.length === 0 ? null : own.reduce((sum, row) => sum + solution.residuals[row], 0) / own.length;
+  };
+  const [direction, along, zenith] = [meanOf('direction'), meanOf('distance'), meanOf('zenith')];
+  return {
+    across: direction === null ? null : direction * distance,
+    along,
+    // A zenith angle counts downwards.
+    up: zenith === null || mark.elevation === null ? null : -zenith * distance,
   };
 }
 

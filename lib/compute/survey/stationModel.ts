@@ -20,6 +20,8 @@ export const REFRACTION = 4;
  * whatever the figure.
  */
 const UNDETERMINED_SIGMA = 0.1;
+/** The same for the orientation of a circle that was not read, rad. */
+const UNDETERMINED_TURN = 1;
 /** An error that is stated to be zero, m or rad: small beside everything, and still a weight. */
 const NEGLIGIBLE_SIGMA = 1e-9;
 
@@ -39,8 +41,22 @@ export interface StationModel extends AdjustmentModel {
   markUnknown(mark: string): number;
   /** Row of the pseudo-observation that holds an unknown, −1 where none does. */
   heldRow(unknown: number): number;
-  /** Whether any mark with an elevation was seen with a zenith angle. */
+  /** Whether the occupied mark has an elevation, or any mark with one was seen with a zenith angle. */
   readonly heightDetermined: boolean;
+  /** The mark that holds the axis; null of a free station. */
+  readonly occupied: OccupiedAxis | null;
+  /** Whether any direction was read. */
+  readonly orientationDetermined: boolean;
+}
+
+/** A mark that the instrument stands over: where its axis should be, and how well that is known, m. */
+export interface OccupiedAxis {
+  easting: number;
+  northing: number;
+  /** Elevation of the tilting axis; null where the mark has none. */
+  axis: number | null;
+  horizontalSigma: number;
+  verticalSigma: number;
 }
 
 /**
@@ -48,6 +64,8 @@ export interface StationModel extends AdjustmentModel {
  * coefficient of refraction, and, where single faces or an unknown atmosphere leave them in, collimation,
  * vertical index and the scale of all distances. A block for each mark: its coordinates, held by their published
  * standard deviations, and the centring and height errors of each reflector that stood on it.
+ *
+ * Over an occupied mark the axis itself is held by the mark's coordinates and the instrument's height.
  *
  * With one erection on a mark its errors cannot be told from the mark's own, so they share three unknowns with
  * the variances added; only a second erection gets unknowns of its own.
@@ -60,8 +78,9 @@ export function stationModel(input: {
   surroundings: Surroundings;
   atmosphereKnown: boolean;
   start: StartValues;
+  occupied: OccupiedAxis | null;
 }): StationModel {
-  const { erections, readings, control, accuracy, surroundings, start } = input;
+  const { erections, readings, control, accuracy, surroundings, start, occupied } = input;
   const rows = new RowBuilder();
 
   let shared = 5;
@@ -138,8 +157,17 @@ export function stationModel(input: {
     hold(ownStart[e] + 1, 0, erection.centringSigma);
     hold(ownStart[e] + 2, 0, erection.heightSigma);
   });
-  const heightDetermined = [...zenithsTo].some((name) => control.get(name)!.elevation !== null);
+  const occupiedAxis = occupied?.axis ?? null;
+  if (occupied) {
+    hold(EASTING, occupied.easting - start.easting, occupied.horizontalSigma);
+    hold(NORTHING, occupied.northing - start.northing, occupied.horizontalSigma);
+    if (occupiedAxis !== null) hold(AXIS, occupiedAxis, occupied.verticalSigma);
+  }
+  const heightDetermined =
+    occupiedAxis !== null || [...zenithsTo].some((name) => control.get(name)!.elevation !== null);
   if (!heightDetermined) hold(AXIS, start.elevation, UNDETERMINED_SIGMA);
+  const orientationDetermined = readings.some(({ kind }) => kind === 'direction');
+  if (!orientationDetermined) hold(ORIENTATION, 0, UNDETERMINED_TURN);
 
   const structure = rows.build();
   const firstOf = Int32Array.from(readings, ({ erection }) => markStart.get(erections[erection].target)!);
@@ -160,6 +188,8 @@ export function stationModel(input: {
       return index < 0 ? -1 : readings.length + index;
     },
     heightDetermined,
+    orientationDetermined,
+    occupied,
     linearise(point, coefficients, misclosures) {
       for (let i = 0; i < readings.length; i++) {
         const { kind, erection, value, face } = readings[i];

@@ -1,6 +1,7 @@
 import type { SuspectedEntry } from '@/lib/compute/adjustment/suspicions';
 import type { Fault } from './fault';
 import type { AdjustedStation } from './stationAdjustment';
+import { AXIS, EASTING, NORTHING } from './stationModel';
 
 /** A fault that enters the observations linearly: its size is estimated beside the station. */
 export interface Suspicion {
@@ -34,7 +35,7 @@ const length = (estimate: readonly number[]) => Math.hypot(...estimate);
 
 /** Every single fault that the shots of a setup could show. */
 export function suspicionsOf(adjusted: AdjustedStation): Suspicion[] {
-  return [...ofDistances(adjusted), ...ofFaces(adjusted), ...ofMarks(adjusted)];
+  return [...ofDistances(adjusted), ...ofFaces(adjusted), ...ofMarks(adjusted), ...ofOccupation(adjusted)];
 }
 
 /** All distances too long by the same, or by the same ratio; one distance alone cannot tell. */
@@ -100,4 +101,28 @@ function ofMarks({ model }: AdjustedStation): Suspicion[] {
     };
     return [moved, height];
   });
+}
+
+/** An instrument that does not stand over its mark, or over another one, and one whose height was misread. */
+function ofOccupation({ input, model }: AdjustedStation): Suspicion[] {
+  if (!input.occupied) return [];
+  const subject = [input.occupied.mark.name];
+  const held = (unknowns: readonly number[]) =>
+    unknowns.map((unknown, fault) => ({ row: model.heldRow(unknown), fault, coefficient: -1 }));
+  const moved: Suspicion = {
+    fault: 'stationMoved',
+    subject,
+    entries: held([EASTING, NORTHING]),
+    usual: [USUAL.moved, USUAL.moved],
+    sizeOf: length,
+  };
+  if (input.occupied.mark.elevation === null) return [moved];
+  const height: Suspicion = {
+    fault: 'instrumentHeight',
+    subject,
+    entries: held([AXIS]),
+    usual: [USUAL.height],
+    sizeOf: single,
+  };
+  return [moved, height];
 }

@@ -1,6 +1,10 @@
 import { CRITICAL_W } from '@/lib/compute/statistics/distributions';
+import { judgeBacksightProof, judgeBacksights } from './backsightProof';
 import type { CheckDifference, Tolerance } from './checkShots';
+import { isNear } from './dangerCircle';
+import { markToBlame } from './explain';
 import type { ReadingKind } from './faces';
+import type { Place } from './loci';
 import type { FittedMark, StationFit } from './stationFit';
 import type { WorkAccuracy } from './workAccuracy';
 
@@ -23,6 +27,14 @@ export type SetupReason =
   | { code: 'too_few_marks'; axis: Axis; count: number; limit: number }
   | { code: 'single_mark_dominates'; axis: Axis; target: string; value: number; limit: number }
   | { code: 'single_mark_needed'; axis: Axis; target: string }
+  | { code: 'backsight_over'; axis: Axis; target: string; value: number; limit: number }
+  | { code: 'orientation_undetermined' }
+  | { code: 'orientation_unproven'; target: string | null; measured: boolean }
+  | { code: 'backsights_disagree'; target: string; value: number; turn: number; limit: number }
+  | { code: 'occupied_unproven'; target: string }
+  | { code: 'occupied_suspect'; target: string }
+  | { code: 'two_stations'; stations: Place[] }
+  | { code: 'near_danger_circle'; marks: string[]; value: number; radius: number; semiMajor: number }
   | { code: 'spread_too_large'; value: number; limit: number }
   | { code: 'accuracy_short'; axis: Axis; value: number; limit: number; radius: number }
   | { code: 'check_disagrees'; axis: Axis; target: string; value: number; limit: number }
@@ -37,7 +49,8 @@ export interface SetupVerdict {
   reasons: SetupReason[];
 }
 
-const MARKS_WANTED: Record<Axis, number> = { horizontal: 3, vertical: 2 };
+/** Distinct marks that a pass stands on, an occupied one among them. */
+export const MARKS_WANTED: Record<Axis, number> = { horizontal: 3, vertical: 2 };
 const AXES: readonly Axis[] = ['horizontal', 'vertical'];
 const AXIS_OF_KIND: Record<ReadingKind, Axis> = {
   direction: 'horizontal',
@@ -79,7 +92,7 @@ export function judgeSetup(
   }
   const verdict = worst(verdicts);
   if (verdict === 'pass') {
-    const marks = fit.marks.filter((mark) => mark.horizontal).length;
+    const marks = fit.marks.filter((mark) => mark.horizontal).length + Number(fit.occupied !== null);
     reasons.push({ code: 'within_limits', marks, radius: limits.work.radius, ...work });
   }
   const singleFace = fit.marks.some((mark) =>
@@ -89,9 +102,9 @@ export function judgeSetup(
   return { verdict, verdicts, reasons };
 }
 
-type Lower = (axes: readonly Axis[], to: 'hold' | 'fail', reason: SetupReason) => void;
+export type Lower = (axes: readonly Axis[], to: 'hold' | 'fail', reason: SetupReason) => void;
 
-/** What is wrong: no convergence, outliers, residuals or checks beyond the class' limits. */
+/** What is wrong: no convergence, outliers, residuals, backsights or checks beyond the class' limits. */
 function judgeFaults(
   fit: StationFit,
   limits: SetupLimits,
@@ -101,34 +114,15 @@ function judgeFaults(
   if (!fit.converged) {
     lower(AXES, 'fail', { code: 'not_converged' });
   }
-  for (const mark of worstFirst(fit.marks)) {
-    const worstReading = new Map<ReadingKind, number>();
-    for (const { kind, standardised } of mark.readings) {
-      const w = Math.abs(standardised);
-      if (w > CRITICAL_W && w > (worstReading.get(kind) ?? 0)) worstReading.set(kind, w);
-    }
-    for (const [kind, value] of worstReading) {
-      const reason = {
-        code: 'observation_outlier',
-        target: mark.name,
-        kind,
-        value,
-        limit: CRITICAL_W,
-      } as const;
-      lower([AXIS_OF_KIND[kind]], 'fail', reason);
-    }
-    const { easting, northing, elevation } = mark.residual;
-    const sizes = {
-      horizontal: easting === null || northing === null ? 0 : Math.hypot(easting, northing),
-      vertical: Math.abs(elevation ?? 0),
-    };
-    for (const axis of AXES) {
-      const [value, limit] = [sizes[axis], limits.residual[axis]];
-      if (value > limit) {
-        lower([axis], 'fail', { code: 'target_residual_over', axis, target: mark.name, value, limit });
-      }
-    }
+  const findings = worstFirst(fit.marks).flatMap((mark) => findingsOf(mark, limits));
+  // One wrong mark pulls the good ones off; where it is known, they are not to be shot again.
+  const blamed = markToBlame(fit.explanations);
+  const own = findings.filter(({ reason }) => reason.target === blamed);
+  const all = AXES.filter((axis) => findings.some((finding) => finding.axis === axis));
+  for (const [i, { axis, reason }] of (own.length > 0 ? own : findings).entries()) {
+    lower(own.length > 0 && i === 0 ? all : [axis], 'fail', reason);
   }
+  judgeBacksights(fit, limits, lower);
   for (const check of checks) {
     for (const axis of AXES) {
       if (check[axis] !== 'over') continue;
@@ -137,6 +131,41 @@ function judgeFaults(
       lower([axis], 'fail', { code: 'check_over', axis, target, value, limit: limits.residual[axis], inFit });
     }
   }
+}
+
+type Finding = {
+  axis: Axis;
+  reason: Extract<SetupReason, { code: 'observation_outlier' | 'target_residual_over' }>;
+};
+
+/** Readings of a mark that are outliers, and what it misses by beyond the class' limits. */
+function findingsOf(mark: FittedMark, limits: SetupLimits): Finding[] {
+  const findings: Finding[] = [];
+  const target = mark.name;
+  const worstReading = new Map<ReadingKind, number>();
+  for (const { kind, standardised } of mark.readings) {
+    const w = Math.abs(standardised);
+    if (w > CRITICAL_W && w > (worstReading.get(kind) ?? 0)) worstReading.set(kind, w);
+  }
+  for (const [kind, value] of worstReading) {
+    const reason = { code: 'observation_outlier', target, kind, value, limit: CRITICAL_W } as const;
+    findings.push({ axis: AXIS_OF_KIND[kind], reason });
+  }
+  const { easting, northing, elevation } = mark.residual;
+  const { across, along, up } = mark.miss;
+  const sizes = {
+    horizontal:
+      easting === null || northing === null
+        ? Math.max(Math.abs(across ?? 0), Math.abs(along ?? 0))
+        : Math.hypot(easting, northing),
+    vertical: Math.abs(elevation ?? up ?? 0),
+  };
+  for (const axis of AXES) {
+    const [value, limit] = [sizes[axis], limits.residual[axis]];
+    if (value <= limit) continue;
+    findings.push({ axis, reason: { code: 'target_residual_over', axis, target, value, limit } });
+  }
+  return findings;
 }
 
 /**
@@ -157,18 +186,25 @@ function judgeProof(
   work: WorkAccuracy,
   lower: Lower,
 ): void {
-  for (const axis of AXES) {
-    const count = fit.marks.filter((mark) => mark[axis] && mark.status === 'trusted').length;
-    if (count < MARKS_WANTED[axis]) {
-      lower([axis], 'hold', { code: 'too_few_marks', axis, count, limit: MARKS_WANTED[axis] });
-    } else judgeLeaveOneOut(fit, axis, limits.residual[axis], lower);
+  const { occupied, others, danger, station } = fit;
+  if (others.length > 0)
+    lower(['horizontal'], 'hold', { code: 'two_stations', stations: [station, ...others] });
+  if (!fit.orientationDetermined) lower(['horizontal'], 'hold', { code: 'orientation_undetermined' });
+  if (occupied) {
+    judgeBacksightProof({ ...fit, occupied }, limits, (axis) => independent(checks, axis), lower);
+  } else judgeMarks(fit, limits, lower);
+  if (danger && isNear(danger)) {
+    const { marks, circle, distance } = danger;
+    const { semiMajor } = fit.ellipse95;
+    const reason = { marks, value: Math.abs(distance), radius: circle.radius, semiMajor };
+    lower(['horizontal'], 'hold', { code: 'near_danger_circle', ...reason });
   }
   if (!fit.test.passed) {
     lower(AXES, 'hold', { code: 'spread_too_large', value: fit.test.sigma0, limit: 1 });
   }
   for (const axis of AXES) {
     const [value, limit] = [work[axis], limits.work[axis]];
-    const determined = axis === 'horizontal' || fit.heightDetermined;
+    const determined = axis === 'horizontal' ? fit.orientationDetermined : fit.heightDetermined;
     if (determined && value > limit) {
       lower([axis], 'hold', { code: 'accuracy_short', axis, value, limit, radius: limits.work.radius });
     }
@@ -193,6 +229,16 @@ function judgeProof(
         });
       }
     }
+  }
+}
+
+/** A free station stands on enough trusted marks, and on no single one of them. */
+function judgeMarks(fit: StationFit, limits: SetupLimits, lower: Lower): void {
+  for (const axis of AXES) {
+    const count = fit.marks.filter((mark) => mark[axis] && mark.status === 'trusted').length;
+    if (count < MARKS_WANTED[axis]) {
+      lower([axis], 'hold', { code: 'too_few_marks', axis, count, limit: MARKS_WANTED[axis] });
+    } else judgeLeaveOneOut(fit, axis, limits.residual[axis], lower);
   }
 }
 

@@ -52,6 +52,16 @@ export function toKelvin(value: number, unit: TemperatureUnit): number {
   return (value + TEMPERATURE[unit].offset) * TEMPERATURE[unit].factor;
 }
 
+/** Kelvin to temperature in `unit`. */
+export function fromKelvin(kelvin: number, unit: TemperatureUnit): number {
+  return clean(kelvin / TEMPERATURE[unit].factor - TEMPERATURE[unit].offset);
+}
+
+/** Pascal to pressure in `unit`. */
+export function fromPascal(pascal: number, unit: PressureUnit): number {
+  return clean(pascal / PRESSURE[unit]);
+}
+
 /** Pressure in `unit` to pascal. */
 export function toPascal(value: number, unit: PressureUnit): number {
   return value * PRESSURE[unit];

@@ -53,7 +53,8 @@ export function wordsOfForecastReason(reason: SetupReason, length: Lengths): Wor
 }
 
 const NO_STATION: Record<StationError['code'], string> = {
-  too_few_sights: 'Fewer than two marks in range give both a direction and a distance.',
+  too_few_sights: 'Too few marks in range: two with distances or three with directions are the least.',
+  danger_circle: 'The place lies on the circle through its marks, where directions alone do not find it.',
   zenith_wanted: 'Distances without a zenith angle cannot be brought to the horizontal.',
   not_determined: 'What is read leaves the station undetermined.',
 };

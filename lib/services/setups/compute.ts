@@ -1,11 +1,12 @@
 import { type CheckDifference, checkDifferences } from '@/lib/compute/survey/checkShots';
 import type { InstrumentAccuracy } from '@/lib/compute/survey/instrument';
 import type { ControlMark, Shot } from '@/lib/compute/survey/shots';
+import type { Occupied } from '@/lib/compute/survey/stationAdjustment';
 import { fitStation, type StationFit } from '@/lib/compute/survey/stationFit';
 import type { Surroundings } from '@/lib/compute/survey/surroundings';
 import { judgeSetup, type SetupLimits } from '@/lib/compute/survey/verdict';
 import { accuracyAtWork } from '@/lib/compute/survey/workAccuracy';
-import { type CheckResult, fitOf, keepMark, type SetupNote, type SetupResult } from './result';
+import { type Air, type CheckResult, fitOf, keepMark, type SetupNote, type SetupResult } from './result';
 
 export interface SetupTask {
   shots: readonly Shot[];
@@ -16,6 +17,10 @@ export interface SetupTask {
   accuracy: InstrumentAccuracy;
   surroundings: Surroundings;
   ppm: number | null;
+  /** What the correction is made of; null where the atmosphere is unknown. */
+  air?: Air | null;
+  /** The mark under the instrument, of a setup by backsights. */
+  occupied?: Occupied | null;
   limits: SetupLimits;
   /** What the caller knows and the figures do not show. */
   notes: readonly SetupNote[];
@@ -45,7 +50,7 @@ export function computeSetup(task: SetupTask): ComputedSetup {
   const { control, accuracy, surroundings, ppm, limits } = task;
   const orienting = task.shots.filter((shot) => shot.purpose === 'orient');
   const used = orienting.filter((shot) => !isQuarantined(shot, control));
-  const fit = fitStation({ shots: used, control, accuracy, surroundings, ppm });
+  const fit = fitStation({ shots: used, control, accuracy, surroundings, ppm, occupied: task.occupied });
   const work = accuracyAtWork(fit.station, accuracy.zenith, limits.work.radius, surroundings);
   const checks = PURPOSES.flatMap((purpose): OwnCheck[] => {
     const targets = compare(
@@ -64,6 +69,13 @@ export function computeSetup(task: SetupTask): ComputedSetup {
     notes: [...task.notes, ...notesOf(fit, unused, differences, limits)],
     station: { ...fit.station, covariance: Array.from(fit.station.covariance) },
     heightDetermined: fit.heightDetermined,
+    orientationDetermined: fit.orientationDetermined,
+    occupied: fit.occupied,
+    backsights: fit.backsights,
+    danger: fit.danger,
+    others: fit.others,
+    unusedDistances: fit.unusedDistances,
+    directionSets: fit.directionSets,
     converged: fit.converged,
     iterations: fit.iterations,
     test: fit.test,
@@ -83,6 +95,7 @@ export function computeSetup(task: SetupTask): ComputedSetup {
     accuracy,
     surroundings,
     ppm,
+    air: task.air ?? null,
   };
   return { result, checks, later: laterChecks };
 }
@@ -120,8 +133,16 @@ export function judgeWithCheck(
 function compare(
   fit: StationFit,
   shots: readonly Shot[],
-  { control, accuracy, surroundings, ppm, limits }: Omit<SetupTask, 'shots' | 'later' | 'notes'>,
+  {
+    control,
+    accuracy,
+    surroundings,
+    ppm,
+    limits,
+  }: Pick<SetupTask, 'control' | 'accuracy' | 'surroundings' | 'ppm' | 'limits'>,
 ): CheckDifference[] {
+  // Without an orientation nothing can be said of a direction.
+  if (!fit.orientationDetermined) return [];
   return checkDifferences({
     shots: shots.filter((shot) => !isQuarantined(shot, control)),
     control,
@@ -187,7 +208,12 @@ function notesOf(
   for (const target of unused) notes.push({ code: 'mark_quarantined', target });
   if (fit.test.low) notes.push({ code: 'spread_small', value: fit.test.sigma0 });
   if (fit.scale !== 1) notes.push({ code: 'spread_scaled', value: fit.scale });
-  if (!fit.geometry.inside) notes.push({ code: 'outside_control' });
+  if (!fit.geometry.inside && !fit.occupied) notes.push({ code: 'outside_control' });
+  if (fit.unusedDistances.length > 0) notes.push({ code: 'distance_unused', targets: fit.unusedDistances });
+  if (fit.directionSets && !fit.directionSets.asStated) {
+    const { ofOneSet: value, stated: limit } = fit.directionSets;
+    notes.push({ code: 'directions_scatter', value, limit });
+  }
   if (!fit.heightDetermined) notes.push({ code: 'height_undetermined' });
   for (const { target, horizontal, vertical } of checks) {
     const telling = [horizontal, vertical].every(

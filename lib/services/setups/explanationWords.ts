@@ -1,4 +1,4 @@
-import type { Explanation } from '@/lib/compute/survey/explain';
+import { type Explanation, SURE } from '@/lib/compute/survey/explain';
 import { toArcseconds } from '@/lib/compute/units/convert';
 import type { Lengths } from '@/lib/services/lengths';
 
@@ -12,9 +12,6 @@ interface ExplanationWords {
   /** What to do first, for the radio; null where there is nothing in particular. */
   act: string | null;
 }
-
-/** Above this share one explanation is worth acting on before any other. */
-const SURE = 0.9;
 
 /** What would explain the residuals, in plain words. */
 export function wordsOfExplanation(explanation: Explanation, length: Lengths): ExplanationWords {
@@ -89,6 +86,24 @@ export function wordsOfExplanation(explanation: Explanation, length: Lengths): E
         text: `The readings in one face are off by ${seconds}″: collimation or vertical index.`,
         confirm: 'Shoot one mark in both faces.',
         act: `Shoot both faces: one face alone is off by ${seconds}″.`,
+      };
+    }
+    case 'stationMoved':
+      return {
+        size: length.out(amount),
+        unit: length.unit,
+        text: `The instrument stands ${fine(amount)} from the published place of ${mark}: not over the mark, over another one, or the mark was moved.`,
+        confirm: `Look through the plummet, and read the name that stands at ${mark}.`,
+        act: `Check what the instrument stands over: ${fine(amount)} from ${mark}.`,
+      };
+    case 'instrumentHeight': {
+      const high = (size ?? 0) > 0;
+      return {
+        size: length.out(size!),
+        unit: length.unit,
+        text: `The axis stands ${fine(amount)} ${high ? 'higher' : 'lower'} than ${mark} and the instrument height make it: the height was misread, or the mark has moved.`,
+        confirm: 'Measure the instrument height again.',
+        act: `Measure the instrument height again: it comes out ${fine(amount)} too ${high ? 'small' : 'large'}.`,
       };
     }
     case 'wrongFoot':

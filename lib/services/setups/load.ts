@@ -2,7 +2,7 @@ import { and, desc, eq, type InferSelectModel, inArray, or } from 'drizzle-orm';
 import { setupChecks, setupReleases, setupResults, setups } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
 import { Problem } from '@/lib/problem';
-import type { CheckResult, SetupResult } from './result';
+import { type CheckResult, readResult, type SetupResult } from './result';
 
 export type SetupRow = InferSelectModel<typeof setups>;
 export type ResultRow = Omit<InferSelectModel<typeof setupResults>, 'result'> & { result: SetupResult };
@@ -78,7 +78,9 @@ export async function completeSetups(
       .orderBy(setupReleases.setupId, desc(setupReleases.seq))
       .execute(),
   ]);
-  const resultOf = new Map(results.map((row) => [row.setupId, row as ResultRow]));
+  const resultOf = new Map(
+    results.map((row): [string, ResultRow] => [row.setupId, { ...row, result: readResult(row.result) }]),
+  );
   return rows.map((setup) => ({
     setup,
     result: resultOf.get(setup.id)!,

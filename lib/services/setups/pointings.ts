@@ -21,7 +21,7 @@ export async function readPointings(
   const { organizationId } = caller;
   const project = await loadProject(tenant, organizationId, params.projectId);
   const loaded = await loadSetup(tenant, organizationId, project.id, params.setupId);
-  const { station, surroundings, heightDetermined } = loaded.result.result;
+  const { station, surroundings, heightDetermined, orientationDetermined } = loaded.result.result;
   const length = new Lengths(query.length ?? project.lengthUnit);
   const targetHeight = length.in(query.targetHeight);
   const points = await currentControl(
@@ -42,7 +42,7 @@ export async function readPointings(
         target: point.name,
         kind: version.kind,
         status: point.status,
-        horizontal: toAzimuth(wrapTurn(ray.azimuth - station.orientation)),
+        horizontal: orientationDetermined ? toAzimuth(wrapTurn(ray.azimuth - station.orientation)) : null,
         zenith: hasHeight ? toDegrees(ray.zenith) : null,
         slopeDistance: hasHeight ? length.out(ray.slope) : null,
         horizontalDistance: length.out(ray.grid / surroundings.combinedFactor),

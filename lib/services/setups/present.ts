@@ -1,6 +1,7 @@
 import type * as z from 'zod';
+import { CRITICAL_W, DELTA_0 } from '@/lib/compute/statistics/distributions';
 import type { Explanation } from '@/lib/compute/survey/explain';
-import { toArcseconds, toAzimuth, toDegrees } from '@/lib/compute/units/convert';
+import { toArcseconds, toAzimuth } from '@/lib/compute/units/convert';
 import type { Lengths } from '@/lib/services/lengths';
 import { asMoment, asMomentOrNull } from '@/lib/services/moments';
 import type {
@@ -12,6 +13,14 @@ import type {
 } from '@/openapi/schemas/setup';
 import { wordsOfExplanation } from './explanationWords';
 import type { CheckRow, LoadedSetup, ReleaseRow, SetupRow } from './load';
+import {
+  presentBacksight,
+  presentDirectionSets,
+  presentFaceErrors,
+  presentGeometry,
+  presentOccupied,
+  presentReductions,
+} from './presentDetail';
 import type { KeptMark, SetupResult } from './result';
 import { RELEASE_CAUTIONS, radioOfSetup, wordsOfNote, wordsOfReasons } from './words';
 
@@ -31,7 +40,7 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
   const { station } = result;
   const status = statusOf(setup, now);
   const deviation = (i: number) => Math.sqrt(station.covariance[i * 6]);
-  const hasHeight = result.heightDetermined;
+  const { heightDetermined: hasHeight, orientationDetermined: oriented } = result;
   const presentedChecks = checks
     .filter((check) => check.resultVersion <= row.version)
     .map((check) => presentCheck(check, length));
@@ -69,12 +78,12 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
     },
     instrumentElevation: hasHeight ? length.out(station.axis) : null,
     instrumentHeight: length.outOrNull(setup.instrumentHeight),
-    orientation: toAzimuth(station.orientation),
+    orientation: oriented ? toAzimuth(station.orientation) : null,
     standardDeviations: {
       easting: length.out(deviation(0)),
       northing: length.out(deviation(1)),
       elevation: hasHeight ? length.out(deviation(2)) : null,
-      orientationArcsec: toArcseconds(deviation(3)),
+      orientationArcsec: oriented ? toArcseconds(deviation(3)) : null,
     },
     errorEllipse: {
       semiMajor: length.out(result.ellipse95.semiMajor),
@@ -88,7 +97,7 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
     },
     accuracyAtWork: {
       radius: length.out(result.limits.work.radius),
-      horizontal: length.out(result.work.horizontal),
+      horizontal: oriented ? length.out(result.work.horizontal) : null,
       vertical: hasHeight ? length.out(result.work.vertical) : null,
       confidence: 0.95,
       limits: {
@@ -106,19 +115,16 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
         passed: result.test.passed,
       },
       scaled: result.scale !== 1,
+      dataSnooping: { criticalW: CRITICAL_W, delta0: DELTA_0, alpha: 0.001, power: 0.8 },
       converged: result.converged,
       iterations: result.iterations,
     },
-    geometry: {
-      targets: result.marks.filter((mark) => mark.horizontal).length,
-      spreadDegrees: toDegrees(result.geometry.spread),
-      insideControl: result.geometry.inside,
-      weakestWithout: weakest(result, length),
-    },
-    faceErrors: result.faceErrors && {
-      twoCollimationArcsec: toArcseconds(result.faceErrors.twoCollimation),
-      verticalIndexArcsec: toArcseconds(result.faceErrors.verticalIndex),
-    },
+    geometry: presentGeometry(result, length),
+    occupied: result.occupied && presentOccupied(result.occupied, length),
+    backsights: result.backsights.map((backsight) => presentBacksight(backsight, result.limits, length)),
+    reductions: presentReductions(result, length),
+    faceErrors: result.faceErrors && presentFaceErrors(result.faceErrors),
+    directionSets: result.directionSets && presentDirectionSets(result.directionSets),
     targets: [
       ...result.marks.map((mark) => presentMark(mark, length)),
       ...result.leftOut.map((mark) => presentLeftOut(mark, length)),
@@ -159,15 +165,6 @@ function presentExplanation(explanation: Explanation, length: Lengths): z.output
   };
 }
 
-function weakest({ marks }: SetupResult, length: Lengths) {
-  let worst: { target: string; shift: number } | null = null;
-  for (const { name, without } of marks) {
-    if (without && without.horizontal > (worst?.shift ?? -1))
-      worst = { target: name, shift: without.horizontal };
-  }
-  return worst && { target: worst.target, shift: length.out(worst.shift) };
-}
-
 function presentMark(mark: KeptMark, length: Lengths): z.output<typeof SetupTarget> {
   return {
     target: mark.name,
@@ -180,6 +177,11 @@ function presentMark(mark: KeptMark, length: Lengths): z.output<typeof SetupTarg
       easting: length.outOrNull(mark.residual.easting),
       northing: length.outOrNull(mark.residual.northing),
       elevation: length.outOrNull(mark.residual.elevation),
+    },
+    miss: {
+      across: length.outOrNull(mark.miss.across),
+      along: length.outOrNull(mark.miss.along),
+      up: length.outOrNull(mark.miss.up),
     },
     without: mark.without && {
       horizontal: length.out(mark.without.horizontal),
@@ -203,6 +205,8 @@ function presentMark(mark: KeptMark, length: Lengths): z.output<typeof SetupTarg
   };
 }
 
+const NO_MISS = { across: null, along: null, up: null };
+
 function presentPlace(place: KeptMark['published'], length: Lengths) {
   return {
     easting: length.out(place.easting),
@@ -223,6 +227,7 @@ function presentLeftOut(
     status: 'quarantined',
     published: presentPlace(published, length),
     residual: { easting: null, northing: null, elevation: null },
+    miss: NO_MISS,
     without: null,
     observations: [],
   };
@@ -238,6 +243,7 @@ function targetsOfCheck({ purpose, targets }: z.output<typeof SetupCheck>): z.ou
     status,
     published,
     residual: difference,
+    miss: NO_MISS,
     without: null,
     observations: [],
   }));

@@ -3,6 +3,7 @@ import { bulkInsert } from '@/db/bulk';
 import { setupChecks, setupResults, setups, toleranceClasses } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
 import type { CheckDifference } from '@/lib/compute/survey/checkShots';
+import type { ControlMark } from '@/lib/compute/survey/shots';
 import { StationError } from '@/lib/compute/survey/stationAdjustment';
 import { invalid, invalidItems, Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
@@ -18,7 +19,7 @@ import { computeSetup, isAgreed } from './compute';
 import { type CheckRow, type LoadedSetup, loadSetup, type SetupRow } from './load';
 import { type LaterCheck, loadObserved } from './observed';
 import { presentSetup } from './present';
-import { METHOD, METHOD_VERSION } from './result';
+import { METHOD, METHOD_OVER_MARK, METHOD_VERSION } from './result';
 
 type Refit = typeof contract.refitSetup;
 
@@ -56,18 +57,25 @@ export async function refitSetup(
       .map((shot) => ({ shot, reason: body.reason })),
   ];
   const kept = shots.filter((shot) => !excluded.some((out) => out.shot === shot.id));
-  const names = [...new Set([...shots, ...later.flatMap((one) => one.shots)].map((shot) => shot.target))];
-  const marks = await currentControl(tenant, organizationId, project.id, byNames(names));
   const { result: earlier } = before.result;
+  const shot = [...shots, ...later.flatMap((one) => one.shots)].map(({ target }) => target);
+  const names = [...new Set([...shot, ...(earlier.occupied ? [earlier.occupied.name] : [])])];
+  const marks = await currentControl(tenant, organizationId, project.id, byNames(names));
+  const control = new Map(marks.map((row) => [row.point.name, asMark(row)]));
   let computed: ReturnType<typeof computeSetup>;
   try {
     computed = computeSetup({
       shots: kept,
       later: later.map((one) => one.shots),
-      control: new Map(marks.map((row) => [row.point.name, asMark(row)])),
+      control,
+      occupied: earlier.occupied && {
+        mark: occupiedMark(control, earlier.occupied.name),
+        instrumentHeight: earlier.occupied.instrumentHeight,
+      },
       accuracy: earlier.accuracy,
       surroundings: earlier.surroundings,
       ppm: earlier.ppm,
+      air: earlier.air,
       limits: await currentLimits(context, before),
       notes: earlier.notes.filter(({ code }) => ASSUMED.has(code)),
     });
@@ -88,6 +96,13 @@ export async function refitSetup(
     },
   });
   return presentSetup(made, new Lengths(query.length ?? project.lengthUnit), runtime.now());
+}
+
+/** @throws Problem where the mark was quarantined meanwhile: nothing stands on it any more */
+function occupiedMark(control: ReadonlyMap<string, ControlMark>, name: string): ControlMark {
+  const mark = control.get(name)!;
+  if (mark.status !== 'quarantined') return mark;
+  throw new Problem('conflict', `${name} is quarantined: nothing can be set up on it. Set up anew.`);
 }
 
 /** Notes on what was assumed when the setup came in; the others follow from the new fit. */
@@ -144,7 +159,7 @@ async function write(
     organizationId,
     setupId: id,
     version: 1,
-    method: METHOD,
+    method: result.occupied ? METHOD_OVER_MARK : METHOD,
     methodVersion: METHOD_VERSION,
     result,
     computedAt: now,

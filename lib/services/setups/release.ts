@@ -14,7 +14,7 @@ import type { JsonOf, ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/setups';
 import { Instant } from '@/openapi/schemas/primitives';
 import { CLOCK_SLACK_MS } from './force';
-import { loadSetup, type ReleaseRow, type SetupRow } from './load';
+import { type LoadedSetup, loadSetup, type ReleaseRow, type SetupRow } from './load';
 import { presentSetup } from './present';
 
 type Release = typeof contract.releaseSetup;
@@ -34,7 +34,7 @@ export async function releaseSetup(
   const project = await loadProject(tenant, organizationId, params.projectId);
   const loaded = await loadSetup(tenant, organizationId, project.id, params.setupId, true);
   const { setup } = loaded;
-  requireReleasable(setup, caller.personId, body.note);
+  requireReleasable(loaded, caller.personId, body.note);
   const bound = await bind(context, project, body);
   const now = runtime.now();
   const effectiveAt = effectiveFrom(body.releasedAt, setup, now);
@@ -82,11 +82,18 @@ function later(known: string | null, instant: string): string {
   return known !== null && new Date(known) > new Date(instant) ? known : instant;
 }
 
-function requireReleasable(setup: SetupRow, personId: string, note: string | undefined): void {
+function requireReleasable(
+  { setup, result: { result } }: LoadedSetup,
+  personId: string,
+  note: string | undefined,
+): void {
   const refuse = (detail: string) => new Problem('setup_not_releasable', detail);
   if (setup.state === 'withdrawn') throw refuse('The setup was withdrawn: set up anew, or refit it.');
   if (setup.state === 'superseded') throw refuse('The setup is superseded: release its refit.');
   if (setup.verdict === 'fail') throw refuse('The setup fails: shoot again or refit.');
+  if (!result.orientationDetermined)
+    throw refuse('The setup has no orientation: nothing can be shot from it.');
+  if (result.others.length > 0) throw refuse('More than one station fits the shots: shoot a further mark.');
   if (setup.verdict !== 'hold') return;
   if (!note) throw invalid('/note', 'note_required');
   if (setup.submitterPersonId === personId) throw new Problem('second_person_wanted');

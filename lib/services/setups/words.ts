@@ -1,5 +1,6 @@
 import type { Explanation } from '@/lib/compute/survey/explain';
 import type { Axis, SetupReason, Verdict } from '@/lib/compute/survey/verdict';
+import { toArcseconds } from '@/lib/compute/units/convert';
 import type { Lengths } from '@/lib/services/lengths';
 import { firstAct } from './explanationWords';
 import type { SetupNote } from './result';
@@ -44,6 +45,71 @@ function wordsOfReason(reason: SetupReason, length: Lengths): Words {
         code,
         text: `${reason.target} disagrees by ${fine(length, reason.value)} ${PLACE[reason.axis]}, ${fine(length, reason.limit)} allowed.`,
         action: `Shoot ${reason.target} again, or refit without it.`,
+      };
+    case 'backsight_over': {
+      const what = reason.axis === 'horizontal' ? 'distance' : 'difference of heights';
+      return {
+        code,
+        text: `The ${what} to ${reason.target} is ${fine(length, Math.abs(reason.value))} ${reason.value > 0 ? 'more' : 'less'} than the published coordinates make it, ${fine(length, reason.limit)} allowed.`,
+        action:
+          reason.axis === 'horizontal'
+            ? `Check the names of ${reason.target} and of the occupied mark, the prism constant and the centring, then shoot again.`
+            : `Measure the instrument height and the target height at ${reason.target} again.`,
+      };
+    }
+    case 'orientation_undetermined':
+      return {
+        code,
+        text: 'No direction was read: the place is known, the orientation is not. Nothing can be shot from here.',
+        action: 'Read the circle to a mark, better to two, and post the setup again.',
+      };
+    case 'orientation_unproven': {
+      const what = reason.measured
+        ? 'its distance proves the line, not its direction'
+        : 'not even its distance was measured';
+      const text =
+        reason.target === null
+          ? 'No trusted mark orients the circle.'
+          : `${reason.target} alone orients the circle: ${what}. If that mark has moved sideways, nothing shows it.`;
+      return {
+        code,
+        text,
+        action: 'Shoot a second backsight, or a check on another mark that took no part in the fit.',
+      };
+    }
+    case 'backsights_disagree':
+      return {
+        code,
+        text: `Without ${reason.target} the circle turns by ${toArcseconds(Math.abs(reason.turn)).toFixed(0)}″: ${fine(length, reason.value)} at that mark, more than the ${fine(length, reason.limit)} allowed.`,
+        action: 'Shoot a third backsight: it tells which of them is off.',
+      };
+    case 'occupied_unproven':
+      return {
+        code,
+        text: `That the instrument stands over ${reason.target} is proven by nothing: the backsights alone do not find its place.`,
+        action: 'Measure the distances to the backsights, or check on another mark.',
+      };
+    case 'occupied_suspect':
+      return {
+        code,
+        text: `${reason.target}, the occupied mark, is not trusted: what is set up on it proves nothing.`,
+        action: 'Set up over a trusted mark, or check on another mark that took no part in the fit.',
+      };
+    case 'two_stations': {
+      const places = reason.stations.map(
+        ({ easting, northing }) => `E ${length.text(easting)}, N ${length.text(northing)}`,
+      );
+      return {
+        code,
+        text: `${reason.stations.length === 2 ? 'Two' : reason.stations.length} stations fit these shots alike: ${places.join('; ')}. Nothing tells which it is.`,
+        action: 'Shoot a direction or a distance to a further mark, off the line of the others.',
+      };
+    }
+    case 'near_danger_circle':
+      return {
+        code,
+        text: `The station stands ${length.text(reason.value)} from the circle through ${reason.marks.join(', ')}, ${(100 * reason.value) / reason.radius < 1 ? 'less than 1' : ((100 * reason.value) / reason.radius).toFixed(0)} % of its radius. Directions alone fix it badly there: ${fine(length, reason.semiMajor)} at 95 %, and twice that at half the distance from the circle.`,
+        action: 'Measure a distance to one of the marks, or a direction to one well off the circle.',
       };
     case 'check_over':
       return {
@@ -121,6 +187,7 @@ const SYMPTOMS: ReadonlySet<SetupReason['code']> = new Set([
   'not_converged',
   'observation_outlier',
   'target_residual_over',
+  'backsight_over',
   'spread_too_large',
 ]);
 
@@ -183,6 +250,18 @@ export function wordsOfNote(note: SetupNote, length: Lengths): Words {
       return {
         code,
         text: `${note.shots === 1 ? 'One shot was' : `${note.shots} shots were`} read with the compensator off.`,
+      };
+    case 'distance_unused':
+      return {
+        code,
+        text: `${note.targets.join(', ')}: the distance took no part, since neither a zenith angle nor both heights bring it to the horizontal.`,
+        action: 'Read the zenith angle with every distance.',
+      };
+    case 'directions_scatter':
+      return {
+        code,
+        text: `A direction scatters by ${toArcseconds(note.value).toFixed(1)}″ from set to set, more than the ${toArcseconds(note.limit).toFixed(1)}″ stated allows.`,
+        action: 'Look for a loose tribrach, shimmer or a sunlit tripod; check the stated accuracy.',
       };
     case 'height_undetermined':
       return {

@@ -54,6 +54,7 @@ export function needsOf(document: Document): Needs {
   };
   for (const setup of document.setups) {
     needs.instruments.add(setup.instrument);
+    if (setup.stationPoint !== undefined) needs.control.add(setup.stationPoint);
     for (const { target } of setup.shots) if (target !== null) needs.control.add(target);
   }
   for (const check of document.setupChecks) {

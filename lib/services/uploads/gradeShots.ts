@@ -194,6 +194,10 @@ function placeOfShot(
     return [problemItem(at, 'reading_incomplete', detail)];
   }
   const { result } = setup;
+  if (!result.orientationDetermined) {
+    const detail = `No direction was read in ${item.setup}.`;
+    return [problemItem(`${pointer}/setup`, 'setup_without_orientation', detail)];
+  }
   if (!result.heightDetermined)
     return [problemItem(`${pointer}/setup`, 'setup_without_height', `${item.setup} has no height.`)];
   const polar = {

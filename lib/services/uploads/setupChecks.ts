@@ -2,7 +2,7 @@ import type { CallerContext } from '@/lib/services/context';
 import { utcInstant } from '@/lib/services/moments';
 import { isAgreed, judgeWithCheck } from '@/lib/services/setups/compute';
 import type { CheckRow } from '@/lib/services/setups/load';
-import { METHOD, METHOD_VERSION } from '@/lib/services/setups/result';
+import { METHOD, METHOD_OVER_MARK, METHOD_VERSION } from '@/lib/services/setups/result';
 import { problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 import type { Document } from './document';
@@ -44,6 +44,10 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
       problemItem(`${pointer}/setup`, 'setup_unknown', `There is no setup ${item.setup} in this project.`),
     ];
   const { setup, result, checks } = found;
+  if (!result.orientationDetermined) {
+    const detail = `No direction was read in ${item.setup}.`;
+    return [problemItem(`${pointer}/setup`, 'setup_without_orientation', detail)];
+  }
   const ids = new Set(found.shotIds);
   // They are the check's, whatever they say of themselves.
   const sent = item.shots.map((shot) => ({ ...shot, purpose: item.purpose }));
@@ -82,7 +86,7 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
     organizationId: caller.organizationId,
     setupId: setup.id,
     version: resultVersion,
-    method: METHOD,
+    method: judged.result.occupied ? METHOD_OVER_MARK : METHOD,
     methodVersion: METHOD_VERSION,
     result: judged.result,
     computedAt: runtime.now().toISOString(),

@@ -5,12 +5,19 @@ import { utcInstant } from '@/lib/services/moments';
 import { surroundingsOf } from '@/lib/services/projects/load';
 import { computeSetup, isAgreed } from '@/lib/services/setups/compute';
 import type { CheckRow, LoadedSetup } from '@/lib/services/setups/load';
-import { type CheckResult, METHOD, METHOD_VERSION, type SetupNote } from '@/lib/services/setups/result';
+import {
+  type CheckResult,
+  METHOD,
+  METHOD_OVER_MARK,
+  METHOD_VERSION,
+  type SetupNote,
+} from '@/lib/services/setups/result';
 import { problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
-import { readAtmosphere, wantedPpm } from './atmosphere';
+import { airOf, readAtmosphere, type Weather, wantedPpm } from './atmosphere';
 import type { Document } from './document';
 import { type Draft, pointerOf } from './draft';
+import { readOccupied } from './occupied';
 import {
   asEngineShot,
   incompleteChecks,
@@ -20,6 +27,7 @@ import {
   pointerIn,
 } from './shotsOfSetup';
 import type { Site, SiteClass, SiteInstrument } from './site';
+import { stationProblem } from './stationProblem';
 
 type SetupItem = Document['setups'][number];
 
@@ -51,55 +59,53 @@ function draftSetup(draft: Draft, context: CallerContext, item: SetupItem, point
   );
   const at = pointerIn(pointer, item.shots);
   const checking = shots.filter(({ sent }) => sent.purpose !== 'orient');
-  const problems = [...known.problems, ...airProblems, ...shotProblems, ...incompleteChecks(checking, at)];
+  const { occupied, problems: markProblems } = readOccupied(draft, item, pointer);
+  const problems = [
+    ...known.problems,
+    ...markProblems,
+    ...airProblems,
+    ...shotProblems,
+    ...incompleteChecks(checking, at),
+  ];
   const { instrument, limits } = known;
   if (problems.length > 0 || !instrument || !limits) return problems;
 
-  const ppm = wantedPpm(atmosphere, instrument);
+  const air = atmosphere && airOf(atmosphere, instrument);
+  const ppm = air && wantedPpm(air);
   const { name: toleranceClass, ...classLimits } = limits;
   try {
     const computed = computeSetup({
       shots: shots.map(asEngineShot),
       control: site.control,
       accuracy: instrument.accuracy,
-      surroundings: surroundingsOf(site.project),
+      surroundings: { ...surroundingsOf(site.project), ...chosenRefraction(item) },
       ppm,
+      air,
+      occupied,
       limits: classLimits,
-      notes: assumptions(site, shots, instrument, ppm),
+      notes: assumptions(site, { shots, stationPoint: item.stationPoint }, instrument, ppm),
     });
     accept(draft, context, item, { computed, shots, instrument, toleranceClass, atmosphere });
     return [];
   } catch (error) {
     if (!(error instanceof StationError)) throw error;
-    return [problemItem(`${pointer}/shots`, 'setup_not_computable', STATION_ERRORS[error.code])];
+    return [stationProblem(error, pointer)];
   }
 }
 
-const STATION_ERRORS: Record<StationError['code'], string> = {
-  too_few_sights: 'Fewer than two marks carry both a direction and a distance, or they stand at one place.',
-  zenith_wanted:
-    'Distances without a zenith angle cannot be brought to the horizontal: too few marks have both, and no zenith angle tells how high the instrument stands.',
-  not_determined: 'The shots leave the station undetermined.',
-};
+/** The k that a setup was observed with, where it says another than the project's. */
+function chosenRefraction({ refraction }: SetupItem) {
+  return refraction && { refraction: refraction.coefficient, refractionSigma: refraction.sigma };
+}
 
 function knownParts(site: Site, item: SetupItem, pointer: string) {
   const problems: ProblemItem[] = [];
-  if (item.method !== 'resection') {
+  if (item.method === 'identify') {
     problems.push(
       problemItem(
         `${pointer}/method`,
         'method_not_supported',
         `Setups by ${item.method} are not computed yet.`,
-      ),
-    );
-  }
-  if (item.method === 'resection' && item.stationPoint !== undefined) {
-    problems.push(
-      problemItem(
-        `${pointer}/stationPoint`,
-        'mutually_exclusive',
-        'stationPoint and method resection: a resection finds its station from the targets.',
-        'Leave stationPoint out; it belongs to a backsight.',
       ),
     );
   }
@@ -127,7 +133,7 @@ function knownParts(site: Site, item: SetupItem, pointer: string) {
 /** What was taken for granted, to be said in the answer. */
 function assumptions(
   site: Site,
-  shots: readonly NormalShot[],
+  { shots, stationPoint }: { shots: readonly NormalShot[]; stationPoint: string | undefined },
   instrument: SiteInstrument,
   ppm: number | null,
 ): SetupNote[] {
@@ -135,9 +141,11 @@ function assumptions(
   if (ppm === null)
     notes.push({ code: 'atmosphere_unknown', ppm: surroundingsOf(site.project).unknownAtmospherePpm });
   if (!instrument.accuracyStated) notes.push({ code: 'accuracy_default' });
-  const unstated = [...new Set(shots.map(({ sent }) => sent.target))].filter(
-    (name) => !site.control.get(name)!.sigmaStated,
-  );
+  const marks = [
+    ...(stationPoint === undefined ? [] : [stationPoint]),
+    ...shots.map(({ sent }) => sent.target),
+  ];
+  const unstated = [...new Set(marks)].filter((name) => !site.control.get(name)!.sigmaStated);
   if (unstated.length > 0) {
     const { controlSigmaHorizontal: horizontal, controlSigmaVertical: vertical } = site.project;
     notes.push({ code: 'control_sigma_default', targets: unstated, horizontal, vertical });
@@ -152,7 +160,7 @@ interface Computed {
   shots: NormalShot[];
   instrument: SiteInstrument;
   toleranceClass: string;
-  atmosphere: { temperature: number; pressure: number; humidity: number } | null;
+  atmosphere: Weather | null;
 }
 
 function accept(draft: Draft, context: CallerContext, item: SetupItem, parts: Computed): void {
@@ -172,7 +180,7 @@ function accept(draft: Draft, context: CallerContext, item: SetupItem, parts: Co
     uploadId: draft.uploadId,
     rootId: id,
     station: item.station,
-    method: 'resection' as const,
+    method: item.method,
     instrumentId: instrument.id,
     instrumentName: instrument.name,
     calibrationVersion: instrument.version,
@@ -199,7 +207,7 @@ function accept(draft: Draft, context: CallerContext, item: SetupItem, parts: Co
     organizationId,
     setupId: id,
     version: 1,
-    method: METHOD,
+    method: result.occupied ? METHOD_OVER_MARK : METHOD,
     methodVersion: METHOD_VERSION,
     result,
     computedAt: now,

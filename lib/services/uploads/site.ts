@@ -6,7 +6,7 @@ import type { ControlMark } from '@/lib/compute/survey/shots';
 import type { SetupLimits } from '@/lib/compute/survey/verdict';
 import type { LastPegTest } from '@/lib/services/levelRuns/compute';
 import type { CheckRow, SetupRow } from '@/lib/services/setups/load';
-import type { SetupResult } from '@/lib/services/setups/result';
+import { readResult, type SetupResult } from '@/lib/services/setups/result';
 
 /** What an upload names, so that one read finds it all. */
 export interface Needs {
@@ -266,7 +266,7 @@ export async function loadSite(tenant: Tenant, projectId: string, needs: Needs):
     control: byName(row.control),
     instruments: byName(row.instruments),
     layers: byName(row.layers),
-    setups: row.setups,
+    setups: row.setups.map((setup) => ({ ...setup, result: readResult(setup.result) })),
     pegTests: row.peg_tests,
     taken: {
       setups: new Set(row.taken_setups),

@@ -23,8 +23,13 @@ export function Standing({ setup }: { setup: ShownSetup }) {
         length('Instrument elevation', setup.instrumentElevation, sd.elevation),
         {
           name: 'Circle zero',
-          value: <Figure label="Circle zero" value={sexagesimal(setup.orientation, 1)} />,
-          beside: `± ${fixed(sd.orientationArcsec, 1)}″`,
+          value:
+            setup.orientation === null ? (
+              'none'
+            ) : (
+              <Figure label="Circle zero" value={sexagesimal(setup.orientation, 1)} />
+            ),
+          beside: sd.orientationArcsec === null ? undefined : `± ${fixed(sd.orientationArcsec, 1)}″`,
         },
       ]}
     />
@@ -62,9 +67,14 @@ export function Fit({ setup }: { setup: ShownSetup }) {
     within(`At ${fixed(work.radius, 0)} ${unit}, in plan`, work.horizontal, work.limits.horizontal),
     within(`At ${fixed(work.radius, 0)} ${unit}, in height`, work.vertical, work.limits.vertical),
   ];
+  const seconds = (name: string, value: number | null, sigma: number | null) => {
+    if (value === null) return;
+    const beside = sigma === null ? undefined : `± ${fixed(sigma, 1)}″`;
+    entries.push({ name, value: `${fixed(value, 1)}″`, beside });
+  };
   if (faceErrors) {
-    entries.push({ name: 'Collimation, 2c', value: `${fixed(faceErrors.twoCollimationArcsec, 1)}″` });
-    entries.push({ name: 'Vertical index', value: `${fixed(faceErrors.verticalIndexArcsec, 1)}″` });
+    seconds('Collimation, 2c', faceErrors.twoCollimationArcsec, faceErrors.twoCollimationSigmaArcsec);
+    seconds('Vertical index', faceErrors.verticalIndexArcsec, faceErrors.verticalIndexSigmaArcsec);
   }
   return <Ledger title="How well it fits" entries={entries} />;
 }
