@@ -10,7 +10,7 @@ import {
 const positive = (min: number, max: number) => fc.double({ min, max, noNaN: true });
 
 /** The widths that a fault's prior is averaged over: as stated where they are defined. */
-const WIDTHS = [0.3, 1, 3, 10, 30];
+const WIDTHS = [0.3, 1, 3, 10, 30, 100, 300, 1000];
 
 describe('the evidence of a fault', () => {
   it('is the likelihood averaged over its prior, as summed point by point', () => {
