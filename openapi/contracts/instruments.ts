@@ -1,5 +1,7 @@
+import * as z from 'zod';
 import { contract } from '@/openapi/contract';
 import { InstrumentParams, ProjectParams } from '@/openapi/params';
+import { Collimation } from '@/openapi/schemas/collimation';
 import {
   CalibrationCreate,
   Instrument,
@@ -47,6 +49,24 @@ export const getInstrument = contract({
   access: 'projects:read',
   params: InstrumentParams,
   answers: { 200: { description: 'The instrument.', json: Instrument } },
+});
+
+export const getCollimation = contract({
+  id: 'getCollimation',
+  method: 'get',
+  path: '/projects/{projectId}/instruments/{instrumentName}/collimation',
+  tag: 'Instruments',
+  summary: 'Follow collimation and vertical index',
+  description:
+    'What both faces have shown of an instrument, setup by setup, since its last calibration: where it stands, whether it changed or drifts, in plain words.',
+  access: 'setups:read',
+  params: InstrumentParams,
+  query: z.strictObject({
+    limit: z.coerce.number().int().min(1).max(200).default(100).meta({
+      description: 'Newest setups to look at.',
+    }),
+  }),
+  answers: { 200: { description: 'The history, newest first.', json: Collimation } },
 });
 
 export const createCalibration = contract({
