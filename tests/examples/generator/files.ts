@@ -1,6 +1,13 @@
 import { control, controlCsv, finish, instrument, layer } from './design';
 import { level, levelRun } from './levelling';
-import { bumpedTargetSetup, goodSetup, laterCheck, wrongPrismSetup } from './setups';
+import {
+  anglesOnlySetup,
+  backsightSetup,
+  bumpedTargetSetup,
+  goodSetup,
+  laterCheck,
+  wrongPrismSetup,
+} from './setups';
 import { benchAfter, benchBefore, gradeShots, machine, release } from './work';
 
 export const DATA_FOLDER = new URL('../../../examples/data/', import.meta.url);
@@ -18,6 +25,8 @@ export function dataFiles(): Record<string, string> {
     'setup-good': goodSetup(),
     'setup-wrong-prism': wrongPrismSetup(),
     'setup-bumped-target': bumpedTargetSetup(),
+    'setup-backsight': backsightSetup(),
+    'setup-angles-only': anglesOnlySetup(),
     release: release(),
     'bench-before': benchBefore(),
     'setup-check': laterCheck(),

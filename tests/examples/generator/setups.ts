@@ -40,6 +40,23 @@ export const BUMPED_TARGET: Station = {
   axis: { easting: 5188.447, northing: 10098.265, elevation: 1243.526 },
   orientation: 118.9474,
 };
+/** Over the iron pin BM-1: the axis stands where the pin truly is, but for the centring. */
+export const OVER_MARK: Station & { stationPoint: string } = {
+  station: 'ST-4',
+  clientId: 'st-4',
+  stationPoint: 'BM-1',
+  instrumentHeight: 5.02,
+  axis: { ...truePlace('BM-1'), elevation: truePlace('BM-1').elevation + 5.02 },
+  orientation: 301.4418,
+};
+/** Where no prism stands on the posts and only their plates are sighted. */
+export const ANGLES_ONLY: Station = {
+  station: 'ST-5',
+  clientId: 'st-5',
+  instrumentHeight: null,
+  axis: { easting: 5172.806, northing: 10112.441, elevation: 1243.882 },
+  orientation: 84.0273,
+};
 /** A truck has leant the post of HT-103 over: 0.20 ft in plan, and a little down. */
 const BUMP: Place = { easting: 0.163, northing: -0.116, elevation: -0.02 };
 
@@ -112,8 +129,8 @@ function prismFields({ declaredMm, appliedMm }: PrismState) {
   return { prismConstantMm: declaredMm, prismConstantAppliedMm: appliedMm, appliedPpm: 0 };
 }
 
-function setupDocument(clientId: string, at: Station, shots: ReturnType<typeof set>) {
-  const { station, instrumentHeight } = at;
+function setupDocument(clientId: string, at: Station & { stationPoint?: string }, shots: object[]) {
+  const { station, instrumentHeight, stationPoint } = at;
   return {
     clientId,
     units: UNITS,
@@ -121,7 +138,7 @@ function setupDocument(clientId: string, at: Station, shots: ReturnType<typeof s
       {
         clientId: at.clientId,
         station,
-        method: 'resection',
+        ...(stationPoint === undefined ? { method: 'resection' } : { method: 'backsight', stationPoint }),
         instrument: 'TS-1',
         instrumentHeight,
         toleranceClass: 'earthwork',
@@ -151,6 +168,22 @@ export function bumpedTargetSetup() {
   const moved = marks.map((mark) => (mark.target === 'HT-103' ? { ...mark, moved: BUMP } : mark));
   const shots = set(standing(BUMPED_TARGET, 'bumped target'), moved, RIGHT, 'st-3');
   return setupDocument('setup-bumped-target', BUMPED_TARGET, shots);
+}
+
+/** Two backsights and a check on the other benchmark. */
+export function backsightSetup() {
+  const marks = [...['HT-104', 'HT-106'].map(post), checkOnBenchmark];
+  const shots = set(standing(OVER_MARK, 'over a mark'), marks, RIGHT, 'st-4');
+  return setupDocument('setup-backsight', OVER_MARK, shots);
+}
+
+export function anglesOnlySetup() {
+  const marks = ['HT-101', 'HT-102', 'HT-103', 'HT-105', 'HT-106'].map(post);
+  const whole = set(standing(ANGLES_ONLY, 'angles only'), marks, RIGHT, 'st-5');
+  const shots = whole.map(({ clientId, target, face, set: round, horizontal, zenith, targetHeight }) => {
+    return { clientId, target, face, set: round, horizontal, zenith, targetHeight };
+  });
+  return setupDocument('setup-angles-only', ANGLES_ONLY, shots);
 }
 
 /** Hours later, from the good setup: the benchmark again, and a target of the fit to see whether it drifted. */
