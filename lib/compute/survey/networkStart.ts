@@ -4,6 +4,7 @@ import type { NetworkInput } from './networkInput';
 import type { SetupReadings } from './networkReadings';
 import { offsetFromHeight, offsetFromZenith } from './ray';
 import type { ControlMark } from './shots';
+import { sightsOf } from './sights';
 import { startValues } from './startValues';
 
 export interface Plan {
@@ -136,8 +137,13 @@ class Placing {
         return [target, { ...UNWEIGHTED, ...mark, name: target, elevation: heights.get(target) ?? null }];
       }),
     );
-    const found = startValues(erections, readings, control, this.input.surroundings);
-    if (!found) return null;
+    const { surroundings } = this.input;
+    // Where it may be one of two places, more of its marks are to be known first.
+    const [found, ...others] = startValues(
+      sightsOf(erections, readings, control, surroundings),
+      surroundings,
+    );
+    if (!found || others.length > 0) return null;
     const widest = Math.max(...known.map(({ mark }) => apart(mark, known[0].mark)));
     return { setup: { ...found, axis: null }, reach: widest / this.farthest };
   }

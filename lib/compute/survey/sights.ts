@@ -16,6 +16,7 @@ export interface Sight {
   axis: number | null;
 }
 
+/** Sights to the marks of `control`; others are passed over. */
 export function sightsOf(
   erections: readonly Erection[],
   readings: readonly Reading[],
@@ -24,15 +25,19 @@ export function sightsOf(
 ): Sight[] {
   const first = erections.map(() => ({}) as Partial<Record<ReadingKind, number>>);
   for (const { erection, kind, value } of readings) first[erection][kind] ??= value;
-  const sights = erections.map(({ target, targetHeight }, index): Sight & { slope: number | null } => {
-    const mark = control.get(target)!;
-    const { direction = null, zenith = null, distance: slope = null } = first[index];
-    const reflector = mark.elevation === null ? null : mark.elevation + targetHeight;
-    const sight = { mark, direction, zenith, reflector, slope };
-    if (slope === null || zenith === null) return { ...sight, grid: null, axis: null };
-    const offset = offsetFromZenith(zenith, slope, surroundings.refraction, surroundings);
-    return { ...sight, grid: offset.grid, axis: reflector === null ? null : reflector - offset.height };
-  });
+  const sights = erections.flatMap(
+    ({ target, targetHeight }, index): (Sight & { slope: number | null })[] => {
+      const mark = control.get(target);
+      if (!mark) return [];
+      const { direction = null, zenith = null, distance: slope = null } = first[index];
+      const reflector = mark.elevation === null ? null : mark.elevation + targetHeight;
+      const sight = { mark, direction, zenith, reflector, slope };
+      if (slope === null || zenith === null) return [{ ...sight, grid: null, axis: null }];
+      const offset = offsetFromZenith(zenith, slope, surroundings.refraction, surroundings);
+      const axis = reflector === null ? null : reflector - offset.height;
+      return [{ ...sight, grid: offset.grid, axis }];
+    },
+  );
   // Distances without a zenith angle are brought to the horizontal by the axis that the others give.
   const axis = median(sights.flatMap((sight) => sight.axis ?? []));
   return sights.map(({ slope, ...sight }) => {
