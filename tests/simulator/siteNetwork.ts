@@ -29,6 +29,8 @@ export interface TruePoint extends Place {
 
 export interface SimulatedSetup {
   id: string;
+  /** The mark that it stands over; of a free station, a place so far under its axis. */
+  place: Place;
   occupied: string | null;
   instrumentHeight: number;
   pointings: Pointing[];
@@ -56,6 +58,8 @@ export interface SimulatedNetwork {
 }
 
 const ARCSECOND = Math.PI / 648000;
+/** No setup sees fewer points. */
+const LEAST_SIGHTS = 4;
 /** Metres between neighbouring setups. */
 const SPACING = 120;
 
@@ -114,6 +118,10 @@ export function simulateNetwork(plan: NetworkPlan, chance: Chance): SimulatedNet
       .map((setup) => ({ setup, distance: apart(setup.place, point) }))
       .sort((a, b) => a.distance - b.distance);
     for (const { setup } of near.slice(0, plan.sightsOfPoint)) setup.seen.push(point);
+  }
+  for (const setup of setups) {
+    const near = points.toSorted((a, b) => apart(setup.place, a) - apart(setup.place, b));
+    for (const point of near.slice(0, LEAST_SIGHTS)) if (!setup.seen.includes(point)) setup.seen.push(point);
   }
   // Setups over marks see the next of their kind too.
   const standing = setups.filter(({ occupied }) => occupied !== null);
@@ -187,7 +195,7 @@ export function simulateNetwork(plan: NetworkPlan, chance: Chance): SimulatedNet
           }
         }
       }
-      return { id, occupied, instrumentHeight, pointings };
+      return { id, place, occupied, instrumentHeight, pointings };
     }),
     levelled: neighbours(plan.levelled).map(({ from, to }, i) => {
       const length = 1.3 * apart(from, to);
