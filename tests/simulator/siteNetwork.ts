@@ -63,11 +63,21 @@ const LEAST_SIGHTS = 4;
 /** Metres between neighbouring setups. */
 const SPACING = 120;
 
+/** A later epoch of the same layout: its errors are drawn from elsewhere, and points may have moved. */
+interface Later {
+  chance?: Chance;
+  move?: (point: TruePoint) => TruePoint;
+}
+
 /**
  * A site with setups on a loose grid and points at random among them, each seen from its nearest setups. Errors are
  * drawn as in a single setup: once for what readings share, anew for each reading.
  */
-export function simulateNetwork(plan: NetworkPlan, chance: Chance): SimulatedNetwork {
+export function simulateNetwork(
+  plan: NetworkPlan,
+  layout: Chance,
+  { chance = layout, move = (point) => point }: Later = {},
+): SimulatedNetwork {
   const drawn = (sigma: number) => sigma * chance.normal();
   const side = Math.ceil(Math.sqrt(plan.setups));
   const origin = { easting: 412_000, northing: 5_310_000 };
@@ -76,7 +86,7 @@ export function simulateNetwork(plan: NetworkPlan, chance: Chance): SimulatedNet
     return {
       easting: origin.easting + easting,
       northing: origin.northing + northing,
-      height: 140 + 6 * Math.sin(easting / 300) + 4 * Math.cos(northing / 200) + between(chance, 0, 3),
+      height: 140 + 6 * Math.sin(easting / 300) + 4 * Math.cos(northing / 200) + between(layout, 0, 3),
     };
   };
   const ground: Ground = { earthRadius: 6371008.8, combinedFactor: 0.99985 };
@@ -93,15 +103,15 @@ export function simulateNetwork(plan: NetworkPlan, chance: Chance): SimulatedNet
   const truth = new Map<string, TruePoint>();
   for (let i = 0; i < plan.points; i++) {
     const name = `P${i + 1}`;
-    const place = placeAt(between(chance, -0.4, side - 0.6), between(chance, -0.4, plan.setups / side - 0.6));
+    const place = placeAt(between(layout, -0.4, side - 0.6), between(layout, -0.4, plan.setups / side - 0.6));
     truth.set(name, { name, ...place });
   }
   const points = [...truth.values()];
 
   const setups = Array.from({ length: plan.setups }, (_, i) => {
     const place = placeAt(
-      (i % side) + between(chance, -0.2, 0.2),
-      Math.floor(i / side) + between(chance, -0.2, 0.2),
+      (i % side) + between(layout, -0.2, 0.2),
+      Math.floor(i / side) + between(layout, -0.2, 0.2),
     );
     const occupied = plan.occupiedEvery > 0 && i % plan.occupiedEvery === 0 ? `T${i + 1}` : null;
     if (occupied !== null) truth.set(occupied, { name: occupied, ...place });
@@ -109,7 +119,7 @@ export function simulateNetwork(plan: NetworkPlan, chance: Chance): SimulatedNet
       id: `S${i + 1}`,
       occupied,
       place,
-      instrumentHeight: between(chance, 1.4, 1.8),
+      instrumentHeight: between(layout, 1.4, 1.8),
       seen: [] as TruePoint[],
     };
   });
@@ -130,15 +140,16 @@ export function simulateNetwork(plan: NetworkPlan, chance: Chance): SimulatedNet
     if (next) setup.seen.push({ name: next.occupied!, ...next.place });
   });
 
+  for (const setup of setups) setup.seen = setup.seen.map(move);
   const refraction = { mean: 0.13, sigma: 0.2 };
   const neighbours = (count: number) =>
     Array.from({ length: count }, (_, i) => {
-      const from = points[Math.floor(chance.uniform() * points.length)];
+      const from = points[Math.floor(layout.uniform() * points.length)];
       const [, to] = points
         .toSorted((a, b) => apart(from, a) - apart(from, b))
         .slice(0, 2 + (i % 2))
         .slice(-2);
-      return { from, to };
+      return { from: move(from), to: move(to) };
     });
   const covarianceOf = (horizontal: number, vertical: number) => {
     const [a, b, c] = [horizontal ** 2, (1.2 * horizontal) ** 2, vertical ** 2];
@@ -212,7 +223,7 @@ export function simulateNetwork(plan: NetworkPlan, chance: Chance): SimulatedNet
     positions: points.flatMap((point, i) => {
       if (plan.roverEvery === 0 || i % plan.roverEvery !== 1) return [];
       const covariance = covarianceOf(0.008, 0.015);
-      return { id: `R${i + 1}`, point: point.name, covariance, ...shakenBy(point, covariance, chance) };
+      return { id: `R${i + 1}`, point: point.name, covariance, ...shakenBy(move(point), covariance, chance) };
     }),
     baselines: neighbours(plan.baselines).map(({ from, to }, i) => {
       const covariance = covarianceOf(0.004, 0.008);

@@ -41,3 +41,31 @@ export const ELLIPSE_95 = Math.sqrt(-2 * Math.log(0.05));
 export const CRITICAL_W = 3.29;
 /** Non-centrality δ₀ for α₀ = 0.001 and power 0.80 (Baarda 1968). */
 export const DELTA_0 = 4.13;
+
+/** Distribution function of Fisher's F (Abramowitz and Stegun 26.6.2). */
+export function fDistribution(f: number, numerator: number, denominator: number): number {
+  if (!(f > 0)) return 0;
+  const x = (numerator * f) / (numerator * f + denominator);
+  return betaDistribution(x, numerator / 2, denominator / 2);
+}
+
+/** Quantile of Fisher's F, by bisection of its distribution function. */
+export function fQuantile(probability: number, numerator: number, denominator: number): number {
+  let [low, high] = [0, 1];
+  while (fDistribution(high, numerator, denominator) < probability) high *= 2;
+  while (high - low > 1e-12 * high) {
+    const middle = (low + high) / 2;
+    if (fDistribution(middle, numerator, denominator) < probability) low = middle;
+    else high = middle;
+  }
+  return (low + high) / 2;
+}
+
+/** Upper tail of χ² with one to three degrees of freedom (Abramowitz and Stegun 26.4.4, 26.4.5). */
+export function chiSquareTail(value: number, degreesOfFreedom: 1 | 2 | 3): number {
+  if (!(value > 0)) return 1;
+  if (degreesOfFreedom === 2) return Math.exp(-value / 2);
+  const normal = 2 * normalCdf(-Math.sqrt(value));
+  if (degreesOfFreedom === 1) return normal;
+  return normal + Math.sqrt((2 * value) / Math.PI) * Math.exp(-value / 2);
+}

@@ -1,5 +1,14 @@
 import type { Ellipse } from '@/lib/compute/adjustment/ellipse';
 
+export interface CongruenceTest {
+  /** dᵀQ⁺d/h. */
+  value: number;
+  /** 95 % point of F(h, ν), or of χ²(h)/h where the a-priori variance factor stands. */
+  critical: number;
+  degreesOfFreedom: number;
+  passed: boolean;
+}
+
 /** How one common point fared between two epochs. */
 export interface PointDisplacement {
   name: string;
@@ -10,23 +19,23 @@ export interface PointDisplacement {
   /** Of the displacement, 3 × 3 row by row, m²; zero where null. */
   covariance: Float64Array;
   ellipse95: Ellipse;
-  /** dᵀQ⁻¹d of the point alone, with its degrees of freedom and the critical value at 95 %. */
+  /** dᵀQ⁻¹d of the point alone, with its degrees of freedom and its 95 % point. */
   value: number;
   degreesOfFreedom: number;
   critical: number;
   /** Probability that so large a displacement comes about by the errors of the observations alone. */
   probability: number;
-  /** `moved` in the order found by the congruence test; else it is part of the datum of the comparison. */
+  /** Found by the congruence test; else it is part of the datum of the comparison. */
   moved: boolean;
 }
 
 /** Two epochs of a network compared by the congruence of their common points. */
 export interface EpochComparison {
-  /** All common points at once: dᵀQ⁺d/h against F(h, ν) or χ²(h)/h. */
-  congruence: { value: number; critical: number; degreesOfFreedom: number; passed: boolean };
-  /** The same for those that stayed, after the moved ones were taken out of the datum. */
-  remaining: { value: number; critical: number; degreesOfFreedom: number; passed: boolean };
-  /** Pooled σ₀ of both epochs where either global test failed high, else 1: in the covariances. */
+  /** All common points at once. */
+  congruence: CongruenceTest;
+  /** Those that stayed, after the moved ones were taken out of the datum. */
+  remaining: CongruenceTest;
+  /** Pooled σ₀ of both epochs where their common global test failed high, else 1: in the covariances. */
   scale: number;
   points: readonly PointDisplacement[];
   /** In the order in which they were found. */
