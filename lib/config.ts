@@ -19,6 +19,14 @@ const Environment = z.object({
   HUBTACK_TRUST_PROXY: flag,
   /** Checks every answer against its contract; always on in tests. */
   HUBTACK_VALIDATE_ANSWERS: flag,
+  /** Lets webhooks go out without encryption. */
+  HUBTACK_WEBHOOK_HTTP: flag,
+  /** Blocks of addresses in CIDR notation, by commas, that webhooks reach beside the public ones. */
+  HUBTACK_WEBHOOK_NETWORKS: z
+    .string()
+    .default('')
+    .transform((text) => text.split(',').flatMap((block) => block.trim() || []))
+    .pipe(z.array(z.union([z.cidrv4(), z.cidrv6()]))),
   LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent']).default('info'),
 });
 
@@ -38,6 +46,8 @@ function read() {
     publicUrl: env.HUBTACK_PUBLIC_URL ?? null,
     trustProxy: env.HUBTACK_TRUST_PROXY,
     validateAnswers: env.HUBTACK_VALIDATE_ANSWERS,
+    webhookHttp: env.HUBTACK_WEBHOOK_HTTP,
+    webhookNetworks: env.HUBTACK_WEBHOOK_NETWORKS,
     logLevel: env.LOG_LEVEL,
   } as const;
 }

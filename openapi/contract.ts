@@ -49,6 +49,8 @@ export interface Contract {
   organizationWide?: true;
   params?: z.ZodObject;
   query?: z.ZodObject;
+  /** Headers of its own, for the document. */
+  headers?: z.ZodObject;
   body?: Body;
   answers: Readonly<Record<number, Answer>>;
   /** The answer holds a secret that is shown once: it is not kept for a repeated request. */

@@ -1,9 +1,17 @@
-import { OpenAPIRegistry, OpenApiGeneratorV31, type ResponseConfig } from '@asteasolutions/zod-to-openapi';
+import {
+  OpenAPIRegistry,
+  OpenApiGeneratorV31,
+  type ResponseConfig,
+  type RouteConfig,
+} from '@asteasolutions/zod-to-openapi';
+import * as z from 'zod';
 import { API_BASE } from './base';
 import type { Contract } from './contract';
 import { CONTRACTS } from './contracts';
 import { REQUEST_PROBLEMS, type RequestProblemCode } from './problemCodes';
+import { Id } from './schemas/primitives';
 import { Problem } from './schemas/problem';
+import { WebhookMessage } from './schemas/webhook';
 import { SCOPES } from './scopes';
 
 const VERSION = '1.0.0';
@@ -22,6 +30,7 @@ const TAGS: Record<string, string> = {
   Grade: 'Checks of ground and of blades.',
   Levelling: 'Level runs, their closure, and tests of the levels.',
   Record: 'What happened and who did it.',
+  Webhooks: 'Addresses that are told what happens, and what became of each message.',
 };
 
 const DESCRIPTION = `Hubtack takes raw observations in, keeps them, computes, and hands results out.
@@ -69,14 +78,43 @@ function successAnswers(operation: Contract): Record<string, ResponseConfig> {
   return Object.fromEntries(
     Object.entries(operation.answers).map(([status, { description, json, media }]) => {
       if (json) return [status, { description, content: { 'application/json': { schema: json } } }];
-      if (media)
-        return [
-          status,
-          { description, content: { [media]: { schema: { type: 'string' as const, format: 'binary' } } } },
-        ];
+      if (media) return [status, { description, content: { [media]: { schema: schemaOfMedia(media) } } }];
       return [status, { description }];
     }),
   );
+}
+
+/** What is posted to the endpoints that want it. */
+const EVENT_WEBHOOK: RouteConfig = {
+  method: 'post',
+  path: 'event',
+  operationId: 'receiveEvent',
+  tags: ['Webhooks'],
+  summary: 'Something has happened',
+  description:
+    'Posted to webhook endpoints, signed after the Standard Webhooks specification 1.0.0 over `id.timestamp.body`. It may come twice and out of order; its webhook-id is the event’s own id.',
+  security: [],
+  request: {
+    headers: z.object({
+      'webhook-id': Id,
+      'webhook-timestamp': z.string().meta({ description: 'Seconds since 1970.', example: '1934984400' }),
+      'webhook-signature': z
+        .string()
+        .meta({ description: 'One for each secret that holds, with a space between.', example: 'v1,K5oZ…' }),
+    }),
+    body: { required: true, content: { 'application/json': { schema: WebhookMessage } } },
+  },
+  responses: {
+    '2XX': { description: 'It has arrived.' },
+    '410': { description: 'No more messages are wanted: the endpoint is switched off.' },
+  },
+};
+
+/** Text is text; the rest is bytes. */
+function schemaOfMedia(media: string) {
+  return media.startsWith('text/')
+    ? { type: 'string' as const }
+    : { type: 'string' as const, format: 'binary' };
 }
 
 function requestBody({ body }: Contract) {
@@ -112,10 +150,16 @@ export function buildDocument() {
       summary: operation.summary,
       description: operation.description + scope + reach,
       security: operation.access === 'public' ? [] : [{ bearer: [] }, { session: [] }],
-      request: { params: operation.params, query: operation.query, body: requestBody(operation) },
+      request: {
+        params: operation.params,
+        query: operation.query,
+        headers: operation.headers,
+        body: requestBody(operation),
+      },
       responses: { ...successAnswers(operation), ...problemAnswers(operation) },
     });
   }
+  registry.registerWebhook(EVENT_WEBHOOK);
   return new OpenApiGeneratorV31(registry.definitions).generateDocument({
     openapi: '3.1.0',
     info: {

@@ -14,6 +14,8 @@ export const LevelRunParams = z.strictObject({ projectId: Id, levelRunId: Id });
 export const PegTestParams = z.strictObject({ projectId: Id, pegTestId: Id });
 export const AcknowledgementParams = z.strictObject({ projectId: Id, acknowledgementId: Id });
 export const ApiKeyParams = z.strictObject({ apiKeyId: Id });
+export const WebhookEndpointParams = z.strictObject({ webhookEndpointId: Id });
+export const WebhookDeliveryParams = z.strictObject({ webhookEndpointId: Id, deliveryId: Id });
 export const PersonParams = z.strictObject({ personId: Id });
 
 /** `?name=true`. */

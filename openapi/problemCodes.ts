@@ -234,6 +234,12 @@ export const REQUEST_PROBLEMS = {
     'Too many failed sign-ins from here or for this account.',
     'Wait as long as Retry-After says.',
   ),
+  too_many_streams: problem(
+    429,
+    'Too many streams at once',
+    'A key or a person follows events on five streams at most.',
+    'Close one of them, or wait as long as Retry-After says: the hub may not have noticed yet that one is gone.',
+  ),
   headers_too_large: problem(
     431,
     'The headers are too large',
@@ -705,6 +711,12 @@ export const ITEM_PROBLEMS = {
     'A scope that you do not have',
     'Nobody hands out more than they have.',
     'Leave it out, or ask an administrator.',
+  ),
+  webhook_url_refused: problem(
+    422,
+    'An address that messages are not sent to',
+    'Messages go by https to public addresses, unless the hub is configured for others.',
+    'Send an https address that the whole internet can reach.',
   ),
   password_weak: problem(
     422,

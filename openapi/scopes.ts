@@ -16,6 +16,8 @@ export const SCOPES = {
   'acknowledgements:read': 'see which withdrawals wait for an answer',
   'acknowledgements:write': 'answer a withdrawal for a machine',
   'events:read': 'follow what happens',
+  'webhooks:read': 'see webhook endpoints and their deliveries',
+  'webhooks:write': 'make webhook endpoints, rotate their secrets, replay',
   'audit:read': 'see who did what',
   'keys:read': 'see API keys',
   'keys:write': 'make, rotate and revoke API keys',
@@ -30,7 +32,8 @@ export const ROLES = ['admin', 'surveyor', 'foreman', 'inspector', 'analyst'] as
 export type Role = (typeof ROLES)[number];
 
 const READS = SCOPE_NAMES.filter(
-  (scope) => scope.endsWith(':read') && !['keys:read', 'people:read', 'audit:read'].includes(scope),
+  (scope) =>
+    scope.endsWith(':read') && !['keys:read', 'people:read', 'audit:read', 'webhooks:read'].includes(scope),
 );
 
 /** What each role may do. */

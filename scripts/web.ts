@@ -5,6 +5,7 @@ import { closeDatabase } from '@/db/tenant';
 import { getConfig } from '@/lib/config';
 import { closing } from '@/lib/http/closing';
 import { createHubServer } from '@/lib/http/server';
+import { streams } from '@/lib/http/streams';
 import { log } from '@/lib/log/log';
 
 /** How long requests under way may take to end after SIGTERM. */
@@ -31,7 +32,9 @@ async function drain(signal: string): Promise<void> {
   if (draining) return;
   draining = true;
   log().info({ signal }, 'web draining');
-  await Promise.race([close(), new Promise((resolve) => setTimeout(resolve, DRAIN_MS))]);
+  const closed = close();
+  streams().endAll();
+  await Promise.race([closed, new Promise((resolve) => setTimeout(resolve, DRAIN_MS))]);
   await closeDatabase();
   process.exit(0);
 }

@@ -4,6 +4,8 @@ import { closeDatabase } from '@/db/tenant';
 import { getConfig } from '@/lib/config';
 import { CRON, TASKS } from '@/lib/jobs/tasks';
 import { log } from '@/lib/log/log';
+import { systemRuntime } from '@/lib/runtime';
+import { Courier } from '@/lib/services/webhookDeliveries/courier';
 
 await assertDurable();
 const runner = await run({
@@ -19,6 +21,8 @@ const runner = await run({
     if (level === 'error' || level === 'warning') log().warn({ queue: level }, message);
   }),
 });
+const courier = new Courier(systemRuntime);
+courier.start();
 log().info('worker ready');
 
 let draining = false;
@@ -28,7 +32,7 @@ async function drain(signal: string): Promise<void> {
   if (draining) return;
   draining = true;
   log().info({ signal }, 'worker draining');
-  await runner.stop();
+  await Promise.all([runner.stop(), courier.stop()]);
   await closeDatabase();
   process.exit(0);
 }

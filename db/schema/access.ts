@@ -15,17 +15,18 @@ import { bytea, instant, organizationId, tenantPolicy } from './columns';
 
 /**
  * The one table outside the tenants: from the hash of an e-mail address, key, session or invitation to its
- * organization, so that the tenant is known before any tenant row is read.
+ * organization, so that the tenant is known before any tenant row is read. Webhook endpoints stand in it, too, so that
+ * whoever delivers knows which organizations have any.
  */
 export const directory = pgTable(
   'directory',
   {
     handleSha256: bytea('handle_sha256').primaryKey(),
     organizationId: organizationId(),
-    kind: text('kind').$type<'email' | 'apiKey' | 'session' | 'invitation'>().notNull(),
+    kind: text('kind').$type<'email' | 'apiKey' | 'session' | 'invitation' | 'webhook'>().notNull(),
     subjectId: uuid('subject_id').notNull(),
   },
-  (t) => [check('directory_kind', sql`${t.kind} in ('email', 'apiKey', 'session', 'invitation')`)],
+  (t) => [check('directory_kind', sql`${t.kind} in ('email', 'apiKey', 'session', 'invitation', 'webhook')`)],
 );
 
 export const organizations = pgTable(

@@ -7,3 +7,4 @@ export * from './projects';
 export * from './record';
 export * from './setups';
 export * from './uploads';
+export * from './webhooks';

@@ -229,7 +229,7 @@ export function publicEndpoint<C extends Contract>(
   });
 }
 
-function handler(
+export function handler(
   operation: Contract,
   work: (request: Request, base: PublicContext & Noted, params: Record<string, unknown>) => Promise<Response>,
 ): Handler {
@@ -266,7 +266,7 @@ interface Noted {
 }
 
 /** Notes who asks and refuses who may not. */
-function admit(caller: Caller, operation: Contract, base: Noted): Caller {
+export function admit(caller: Caller, operation: Contract, base: Noted): Caller {
   base.noted = { actor: `${caller.kind}:${caller.name}`, organization: caller.organizationId };
   const scope = operation.access;
   if (scope !== 'signedIn' && !caller.scopes.includes(scope as Scope)) {
@@ -284,7 +284,7 @@ function requireProject(caller: Caller, params: unknown): void {
   if (projectId !== undefined && !mayUseProject(caller, projectId)) throw new Problem('not_found');
 }
 
-function readQueryOf(request: Request, operation: Contract): unknown {
+export function readQueryOf(request: Request, operation: Contract): unknown {
   return readQuery(operation.query, new URL(request.url).searchParams);
 }
 

@@ -13,6 +13,7 @@ import * as sessions from './sessions';
 import * as setupForecasts from './setupForecasts';
 import * as setups from './setups';
 import * as uploads from './uploads';
+import * as webhooks from './webhooks';
 
 const modules = [
   hub,
@@ -29,6 +30,7 @@ const modules = [
   grade,
   levelling,
   record,
+  webhooks,
 ];
 
 function isContract(value: unknown): value is Contract {

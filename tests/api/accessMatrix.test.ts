@@ -33,6 +33,7 @@ const OF_ORGANIZATIONS = [
   'updatePerson',
   'reinvitePerson',
   'createProject',
+  ...CONTRACTS.filter(({ tag }) => tag === 'Webhooks').map(({ id }) => id),
 ];
 
 describe('every operation', () => {
@@ -179,7 +180,14 @@ describe('every operation', () => {
   });
 
   // A refit comes last of what is done to a setup, a revocation of what is done to a key.
-  const last = ['withdrawSetup', 'refitSetup', 'rotateApiKey', 'revokeApiKey', ...OF_SESSIONS];
+  const last = [
+    'withdrawSetup',
+    'refitSetup',
+    'rotateApiKey',
+    'revokeApiKey',
+    'deleteWebhookEndpoint',
+    ...OF_SESSIONS,
+  ];
   const inOrder = [...writes].sort(([a], [b]) => last.indexOf(a) - last.indexOf(b));
   it.each(inOrder)('%s is done for the right key', async (id, operation) => {
     const answer = await ask(operation, keys.right);

@@ -4,30 +4,37 @@ import { events, organizations } from '@/db/schema';
 import { mayUseProject } from '@/lib/access/actor';
 import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
-import { asMoment } from '@/lib/services/moments';
 import { readCursor, writeCursor } from '@/lib/services/paging';
 import type { QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/record';
+import { presentEvent } from './present';
 
-type List = typeof contract.listEvents;
+type Query = QueryOf<typeof contract.listEvents>;
 
 /** Transaction and number of an event, within what their types hold. */
 const Place = z.string().regex(/^\d{1,19}\/\d{1,18}$/);
 
+/** In place of a cursor: from now on. */
+export const LATEST = 'latest';
+
 /**
- * Events after a cursor in commit order. Only transactions below the oldest that still runs are read, so that a late
- * commit is never skipped; the cursor holds the epoch, which a restore raises, and the place.
+ * Events after a cursor in commit order, each with the cursor behind it. Only transactions below the oldest that still
+ * runs are read, so that a late commit is never skipped; the cursor holds the epoch, which a restore raises, and the
+ * place.
  */
-export async function listEvents({ tenant, caller }: VerbContext, { query }: { query: QueryOf<List> }) {
+export async function eventsAfter({ tenant, caller }: Pick<VerbContext, 'tenant' | 'caller'>, query: Query) {
   const { organizationId } = caller;
   if (query.projectId !== undefined && !mayUseProject(caller, query.projectId))
     throw new Problem('not_found');
-  const [organization] = await tenant.db
-    .select({ epoch: organizations.eventEpoch })
+  const [{ epoch, oldest }] = await tenant.db
+    .select({
+      epoch: organizations.eventEpoch,
+      oldest: sql<string>`pg_snapshot_xmin(pg_current_snapshot())::text`,
+    })
     .from(organizations)
     .where(eq(organizations.id, organizationId));
-  const list = ['events', organization.epoch, query.type, query.projectId];
-  const after = readCursor(list, query.after, Place);
+  const list = ['events', epoch, query.type, query.projectId];
+  const after = query.after === LATEST ? `${oldest}/0` : readCursor(list, query.after, Place);
   const [xid, seq] = after === null ? ['0', '0'] : after.split('/');
   const rows = await tenant.db
     .select()
@@ -44,16 +51,14 @@ export async function listEvents({ tenant, caller }: VerbContext, { query }: { q
     )
     .orderBy(asc(events.xid), asc(events.seq))
     .limit(query.limit);
-  const last = rows.at(-1);
-  return {
-    data: rows.map((row) => ({
-      id: row.id,
-      type: row.type,
-      subject: row.subject,
-      projectId: row.projectId,
-      occurredAt: asMoment(row.occurredAt),
-      data: row.data as Record<string, unknown>,
-    })),
-    nextCursor: writeCursor(list, last ? `${last.xid}/${last.seq}` : `${xid}/${seq}`),
-  };
+  const told = rows.map((row) => ({
+    event: presentEvent(row),
+    cursor: writeCursor(list, `${row.xid}/${row.seq}`),
+  }));
+  return { told, cursor: told.at(-1)?.cursor ?? writeCursor(list, `${xid}/${seq}`) };
+}
+
+export async function listEvents(context: VerbContext, { query }: { query: Query }) {
+  const { told, cursor } = await eventsAfter(context, query);
+  return { data: told.map(({ event }) => event), nextCursor: cursor };
 }
