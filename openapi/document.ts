@@ -35,7 +35,7 @@ const TAGS: Record<string, string> = {
 
 const DESCRIPTION = `Hubtack takes raw observations in, keeps them, computes, and hands results out.
 
-Coordinates are named easting, northing and elevation. Azimuths and horizontal readings run clockwise, azimuths from grid north. Deviation of ground from design is vertical and positive where ground is high (cut). No unit is assumed: every submission declares its own, every answer states its own. Errors are problem documents (RFC 9457); each code has a page under /reference/problems.
+Coordinates are named easting, northing and elevation. Azimuths and horizontal readings run clockwise, azimuths from grid north. Deviation of ground from design is vertical and positive where ground is high (cut). No unit is assumed: every submission declares its own, every answer states its own. Errors are problem documents (RFC 9457); each code has a page under /reference/problems. How every figure is computed stands under /reference/methods; a result's \`provenance.method\` is the name of its page there.
 
 Results support the judgement of the people on site. Site rules, local codes and licensed practice decide.`;
 

@@ -7,6 +7,7 @@ const TABS = [
   { href: '/reference', name: 'API' },
   { href: '/reference/problems', name: 'Problems' },
   { href: '/reference/conventions', name: 'Signs and conventions' },
+  { href: '/reference/methods', name: 'Methods' },
 ];
 
 export function ReferenceTabs() {

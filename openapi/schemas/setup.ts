@@ -224,7 +224,7 @@ export const Setup = z
     }),
     submittedBy: z.string(),
     provenance: z.object({
-      method: z.string(),
+      method: z.string().meta({ description: 'Its page: /reference/methods/{method}.' }),
       version: z.string(),
       resultVersion: z.int(),
       uploadId: Id,

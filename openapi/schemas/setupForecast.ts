@@ -245,6 +245,9 @@ export const SetupForecasts = z
         version: z.string(),
         of: z.object({ method: z.string(), version: z.string() }),
       })
-      .meta({ description: 'The method and the computation of setups that it forecasts.' }),
+      .meta({
+        description:
+          'The method, whose page is /reference/methods/{method}, and the computation of setups that it forecasts.',
+      }),
   })
   .meta({ id: 'SetupForecasts' });

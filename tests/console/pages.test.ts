@@ -2,6 +2,7 @@ import { mkdirSync } from 'node:fs';
 import axe from 'axe-core';
 import type { Browser, Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { METHODS } from '@/app/reference/methods/methods';
 import { api } from '@/tests/setup/api';
 import { type Desk, openBrowser, openDesk, settled } from './browser';
 import { walkedOrganization } from './site';
@@ -73,6 +74,8 @@ const PAGES: Record<string, (project: string) => string> = {
   problems: () => '/reference/problems',
   problem: () => '/reference/problems/face_mismatch',
   conventions: () => '/reference/conventions',
+  methods: () => '/reference/methods',
+  ...Object.fromEntries(METHODS.map(({ slug }) => [`method-${slug}`, () => `/reference/methods/${slug}`])),
   missing: () => '/no-such-page',
 };
 

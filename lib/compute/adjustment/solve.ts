@@ -3,8 +3,8 @@ import { type AdjustmentModel, SingularError } from './model';
 import { type NormalEquations, normalEquations } from './normals';
 
 /** The squared step, in its own standard deviations, that no longer matters. */
-const CONVERGED = 1e-12;
-const MAX_ITERATIONS = 50;
+export const CONVERGED = 1e-12;
+export const MAX_ITERATIONS = 50;
 const MAX_HALVINGS = 10;
 
 export interface Solution {

@@ -18,7 +18,7 @@ export interface Conformance {
   notCapable: boolean;
 }
 
-const ENOUGH = 0.95;
+export const ENOUGH = 0.95;
 
 /** Vertical deviation of ground from a layer, positive = high, and its standard deviation. */
 export function deviationFrom(

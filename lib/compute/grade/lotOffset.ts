@@ -2,10 +2,10 @@ import { isWithin } from './acceptance';
 import type { GradeTolerance } from './conformance';
 
 /** An offset stands clear of the tolerance from so many times its wider side on; under that a lot may just be high. */
-const CLEAR = 2;
+export const CLEAR = 2;
 
 /** At least this share of a lot must lie there: a mean between two heaps of readings says nothing. */
-const MOST = 0.5;
+export const MOST = 0.5;
 
 /**
  * Whether a lot as a whole lies off by its layer's own offset: its mean, and most of its readings, lie within the

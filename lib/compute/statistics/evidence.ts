@@ -11,7 +11,7 @@ import { factor, solveLower } from '@/lib/compute/adjustment/cholesky';
  * Widths of the prior of a fault, as multiples of its usual size: faults of the field have heavy tails. A wrong name
  * puts a mark a thousand times as far off as a bump does.
  */
-const WIDTHS = [0.3, 1, 3, 10, 30, 100, 300, 1000];
+export const WIDTHS = [0.3, 1, 3, 10, 30, 100, 300, 1000];
 
 /** Without any free fault: vᵀPv against its own expectation. */
 export function logEvidence(weightedSquares: number): number {
@@ -56,7 +56,7 @@ export function logEvidenceOfFaults(weightedSquares: number, faults: EstimatedFa
 }
 
 const INFLATIONS = 25;
-const LARGEST_INFLATION = 1000;
+export const LARGEST_INFLATION = 1000;
 
 /**
  * Of no model in particular: all standard deviations are s times as large as stated, s anything between 1 and 1000

@@ -29,7 +29,7 @@ export interface Explanation {
  * How often each kind of fault is met, set against each other before anything is read: common practice at best, and
  * the figures outweigh it soon. A kind shares its odds among all that it might concern.
  */
-const ODDS: Record<Fault, number> = {
+export const ODDS: Record<Fault, number> = {
   none: 0.9,
   targetMoved: 0.03,
   heightOfTargetOrMark: 0.03,
@@ -43,7 +43,7 @@ const ODDS: Record<Fault, number> = {
   unexplained: 0.005,
 };
 /** Lighter explanations are not named; what they weigh goes to `unexplained`. */
-const WORTH_NAMING = 0.01;
+export const WORTH_NAMING = 0.01;
 
 /** Above this share one explanation is worth acting on before any other. */
 export const SURE = 0.9;

@@ -10,6 +10,15 @@ import type { Surroundings } from './surroundings';
 import { judgeSetup, type SetupLimits, type SetupVerdict } from './verdict';
 import { accuracyAtWork, type WorkAccuracy } from './workAccuracy';
 
+/** What stands where a forecast states nothing, m (common practice). */
+export const FORECAST_DEFAULTS = {
+  /** Nearer, an instrument neither focuses nor measures. */
+  shortestSight: 2,
+  /** Beyond, refraction near the ground takes over. */
+  longestSight: 300,
+  instrumentHeight: 1.6,
+};
+
 export interface ForecastTask {
   /** Control that may be shot; from each place, what lies between the shortest and the longest sight. */
   targets: readonly ControlMark[];

@@ -16,7 +16,7 @@ export interface MarkShift {
 }
 
 /** Above this the linear answer is not good enough and the rest is adjusted anew, m. */
-const NONLINEAR = 1e-5;
+export const NONLINEAR = 1e-5;
 
 /**
  * How far the station moves with each mark left out in turn, one a block; null where the others do not determine

@@ -19,7 +19,7 @@ export const REFRACTION = 4;
  * Holds an unknown that nothing in the setup determines, m. It then takes no part, and no redundancy comes of it,
  * whatever the figure.
  */
-const UNDETERMINED_SIGMA = 0.1;
+export const UNDETERMINED_SIGMA = 0.1;
 /** The same for the orientation of a circle that was not read, rad. */
 const UNDETERMINED_TURN = 1;
 /** An error that is stated to be zero, m or rad: small beside everything, and still a weight. */

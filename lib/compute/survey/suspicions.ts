@@ -16,7 +16,7 @@ export interface Suspicion {
 const ARCSECOND = Math.PI / 648_000;
 
 /** Usual sizes of faults (common practice, from memory). */
-const USUAL = {
+export const USUAL = {
   /** Prism constants in use lie some centimetres apart, m. */
   constant: 0.03,
   /** A forgotten or doubled atmospheric correction, ratio. */

@@ -1,8 +1,9 @@
+import { FORECAST_DEFAULTS } from '@/lib/compute/survey/forecast';
 import type { AxisPlace } from '@/lib/compute/survey/forecastShots';
 import { invalid, invalidItems } from '@/lib/problem';
 import { problemItem } from '@/openapi/problemItem';
 import { MOST_CELLS } from '@/openapi/schemas/setupForecast';
-import { type ForecastBody, type ForecastPlan, SHORTEST_SIGHT } from './plan';
+import type { ForecastBody, ForecastPlan } from './plan';
 
 /** Somewhere to forecast, m: the ground and the axis above it. */
 export interface ForecastPlace extends AxisPlace {
@@ -39,10 +40,10 @@ export function candidatePlaces(
   const problems = places.flatMap((place, i) => {
     const mark = task.targets.find(
       ({ easting, northing }) =>
-        Math.hypot(easting - place.easting, northing - place.northing) < SHORTEST_SIGHT,
+        Math.hypot(easting - place.easting, northing - place.northing) < FORECAST_DEFAULTS.shortestSight,
     );
     if (!mark) return [];
-    const detail = `The place is on ${mark.name}, nearer than ${length.text(SHORTEST_SIGHT, 1)}.`;
+    const detail = `The place is on ${mark.name}, nearer than ${length.text(FORECAST_DEFAULTS.shortestSight, 1)}.`;
     return [problemItem(`/candidates/${i}`, 'candidate_on_mark', detail)];
   });
   if (problems.length > 0) throw invalidItems(problems);

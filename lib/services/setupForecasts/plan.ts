@@ -1,6 +1,6 @@
 import { asc, eq } from 'drizzle-orm';
 import { controlPoints, instruments } from '@/db/schema';
-import type { ForecastTask } from '@/lib/compute/survey/forecast';
+import { FORECAST_DEFAULTS, type ForecastTask } from '@/lib/compute/survey/forecast';
 import { invalidItems } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { asMark, byNames, type CurrentControl, currentControl } from '@/lib/services/control/load';
@@ -15,13 +15,6 @@ import { problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 
 export type ForecastBody = JsonOf<typeof contract.forecastSetups>;
-
-/** Shortest sight that an instrument focuses on and measures, m (common practice). */
-export const SHORTEST_SIGHT = 2;
-/** Longest sight where none is stated: beyond, refraction near the ground takes over, m (common practice). */
-const LONGEST_SIGHT = 300;
-/** Of the tilting axis above the ground where none is stated, m (common practice). */
-const INSTRUMENT_HEIGHT = 1.6;
 
 /** A request in SI units, with what stands in the project of what it names. */
 export interface ForecastPlan {
@@ -70,7 +63,7 @@ export async function readPlan(
   const length = new Lengths(body.units.length);
   const metres = (sent: number | undefined, otherwise: number) =>
     sent === undefined ? otherwise : length.in(sent);
-  const longest = metres(body.maximumRange, LONGEST_SIGHT);
+  const longest = metres(body.maximumRange, FORECAST_DEFAULTS.longestSight);
   return {
     task: {
       targets: targets.map(asMark),
@@ -80,7 +73,7 @@ export async function readPlan(
         kinds: body.observe,
         targetHeight: metres(body.targetHeight, 0),
       },
-      sight: { shortest: SHORTEST_SIGHT, longest },
+      sight: { shortest: FORECAST_DEFAULTS.shortestSight, longest },
       accuracy: instrument.calibration,
       surroundings: surroundingsOf(project),
       atmosphereKnown: body.atmosphereMeasured,
@@ -90,7 +83,7 @@ export async function readPlan(
     targets,
     className: limits.name,
     checkRequired: limits.checkRequired,
-    instrumentHeight: metres(body.instrumentHeight, INSTRUMENT_HEIGHT),
+    instrumentHeight: metres(body.instrumentHeight, FORECAST_DEFAULTS.instrumentHeight),
     ground: metres(body.elevation, meanElevation(targets) ?? project.siteElevation ?? 0),
     length,
   };

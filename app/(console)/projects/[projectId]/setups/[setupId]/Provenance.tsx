@@ -10,9 +10,16 @@ export function Provenance({ setup, projectId }: { setup: ShownSetup; projectId:
     <section>
       <h2 className="mb-2 font-head text-[19px]">Where it comes from</h2>
       <p className="max-w-[70ch] text-ink-second">
-        Result {provenance.resultVersion} by {provenance.method}, version {provenance.version}, computed{' '}
-        {moment(provenance.computedAt)} with {provenance.instrument.name} as stated in version{' '}
-        {provenance.instrument.calibration} and control{' '}
+        Result {provenance.resultVersion} by{' '}
+        <Link
+          href={`/reference/methods/${encodeURIComponent(provenance.method)}`}
+          prefetch={false}
+          className="underline"
+        >
+          {provenance.method}
+        </Link>
+        , version {provenance.version}, computed {moment(provenance.computedAt)} with{' '}
+        {provenance.instrument.name} as stated in version {provenance.instrument.calibration} and control{' '}
         {provenance.control.map(({ name, version }) => `${name} v${version}`).join(', ')}.{' '}
         <Link href={`/projects/${projectId}/uploads/${provenance.uploadId}`} className="underline">
           See the bytes as they came

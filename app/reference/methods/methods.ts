@@ -1,0 +1,35 @@
+import { benchCheck } from './content/benchCheck';
+import { checkShots } from './content/checkShots';
+import { distances } from './content/distances';
+import { explanations } from './content/explanations';
+import { faces } from './content/faces';
+import { freeStation } from './content/freeStation';
+import { gradeCheck } from './content/gradeCheck';
+import { leaveOneOut } from './content/leaveOneOut';
+import { lots } from './content/lots';
+import { ray } from './content/ray';
+import { setupForecast } from './content/setupForecast';
+import { setupVerdict } from './content/setupVerdict';
+import { statistics } from './content/statistics';
+import { surfaces } from './content/surfaces';
+import { units } from './content/units';
+import type { Method } from './method';
+
+/** Every method of computation of the hub, in the order in which a day meets them. */
+export const METHODS: readonly Method[] = [
+  units,
+  distances,
+  ray,
+  faces,
+  freeStation,
+  statistics,
+  leaveOneOut,
+  setupVerdict,
+  checkShots,
+  explanations,
+  setupForecast,
+  surfaces,
+  gradeCheck,
+  lots,
+  benchCheck,
+];
