@@ -6,7 +6,10 @@ import { faces } from './content/faces';
 import { freeStation } from './content/freeStation';
 import { gradeCheck } from './content/gradeCheck';
 import { leaveOneOut } from './content/leaveOneOut';
+import { levelRun } from './content/levelRun';
 import { lots } from './content/lots';
+import { network } from './content/network';
+import { pegTest } from './content/pegTest';
 import { ray } from './content/ray';
 import { setupForecast } from './content/setupForecast';
 import { setupVerdict } from './content/setupVerdict';
@@ -28,6 +31,9 @@ export const METHODS: readonly Method[] = [
   checkShots,
   explanations,
   setupForecast,
+  levelRun,
+  pegTest,
+  network,
   surfaces,
   gradeCheck,
   lots,
