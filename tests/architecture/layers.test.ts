@@ -31,6 +31,9 @@ const IMPORTS: [string, string, RegExp][] = [
   ['app/planted/page.tsx', '@/db/tenant', /Pages fetch through the public API/],
   ['app/planted/page.tsx', '@/lib/services/projects/list', /Pages fetch through the public API/],
   ['app/planted/page.tsx', '../ui/Field', /Import across folders by @/],
+  ['app/planted/page.tsx', '@/lib/compute/units/table', /Pages fetch through the public API/],
+  ['app/reference/methods/planted.tsx', '@/db/tenant', /Pages on methods quote/],
+  ['app/reference/methods/planted.tsx', '@/lib/services/setups/compute', /Pages on methods quote/],
 ];
 
 /** Imports that the plan of the house has: down, or within a room. */
@@ -43,6 +46,8 @@ const ALLOWED: [string, string][] = [
   ['db/tenant.ts', '@/db/client'],
   ['app/api/v1/planted/route.ts', '@/lib/services/projects/list'],
   ['app/planted/page.tsx', '@/openapi/schemas/project'],
+  ['app/reference/methods/planted.tsx', '@/lib/compute/units/table'],
+  ['app/reference/methods/planted.tsx', '@/lib/services/setups/result'],
 ];
 
 /** What must be passed in, or read in one place. */

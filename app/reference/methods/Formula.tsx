@@ -15,7 +15,7 @@ export function M({ children }: { children: string }) {
 export function Formula({ children }: { children: string }) {
   return (
     <div
-      className="my-4 overflow-x-auto rounded border border-rule bg-sheet px-5 py-3"
+      className="my-4 overflow-x-auto first:mt-0 last:mb-0 rounded border border-rule bg-sheet px-5 py-3"
       // biome-ignore lint/a11y/noNoninteractiveTabindex: what scrolls must be reachable by keyboard
       tabIndex={0}
       // biome-ignore lint/security/noDangerouslySetInnerHtml: made of our own TeX

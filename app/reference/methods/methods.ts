@@ -1,3 +1,4 @@
+import { backsight } from './content/backsight';
 import { benchCheck } from './content/benchCheck';
 import { checkShots } from './content/checkShots';
 import { distances } from './content/distances';
@@ -9,6 +10,7 @@ import { leaveOneOut } from './content/leaveOneOut';
 import { levelRun } from './content/levelRun';
 import { lots } from './content/lots';
 import { network } from './content/network';
+import { partialResection } from './content/partialResection';
 import { pegTest } from './content/pegTest';
 import { ray } from './content/ray';
 import { setupForecast } from './content/setupForecast';
@@ -25,6 +27,8 @@ export const METHODS: readonly Method[] = [
   ray,
   faces,
   freeStation,
+  partialResection,
+  backsight,
   statistics,
   leaveOneOut,
   setupVerdict,

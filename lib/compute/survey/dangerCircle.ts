@@ -10,11 +10,11 @@ export interface DangerCircle {
 }
 
 /** Marks further from their common circle than this part of its radius do not make one (common practice). */
-const ON_CIRCLE = 0.1;
+export const ON_CIRCLE = 0.1;
 /** A station within this part of the radius stands near the circle (common practice). */
 export const NEAR_CIRCLE = 0.1;
 /** A position no better than this part of the radius, one standard deviation, is no position. */
-const UNDETERMINED = 0.05;
+export const UNDETERMINED = 0.05;
 
 /** Null where the marks lie on one line, or on no common circle. */
 export function dangerCircle(

@@ -12,7 +12,7 @@ export interface OtherStation {
 }
 
 /** χ² with two degrees of freedom at 99.9 %: what fits worse than this the shots rule out. */
-const RULED_OUT = 13.8;
+export const RULED_OUT = 13.8;
 /** Stations nearer to each other are one, m: half of what would show in the coarsest work. */
 const SAME_STATION = 0.005;
 

@@ -14,7 +14,7 @@ export const checkShots: Method = {
           Polar position from the station minus published coordinates. Check shots never enter the fit. Its
           uncertainty is that of the station, the shot and the mark together:
         </p>
-        <Formula>{String.raw`\Sigma = J Q J^\mathsf{T} + K \Sigma_\ell K^\mathsf{T} + \Sigma_\mathrm{mark} - J C - C^\mathsf{T} J^\mathsf{T}`}</Formula>
+        <Formula>{String.raw`\begin{aligned} \Sigma = {}& J Q J^\mathsf{T} + K \Sigma_\ell K^\mathsf{T} + \Sigma_\mathrm{mark} \\ &- J C - C^\mathsf{T} J^\mathsf{T} \end{aligned}`}</Formula>
         <p>
           <M>{'J'}</M> and <M>{'K'}</M> are the derivatives of the position by station and readings.{' '}
           <M>{'C'}</M> is the covariance of the station with the mark’s coordinates, zero for a mark outside

@@ -4,9 +4,10 @@ import type { Method } from '@/app/reference/methods/method';
 import { Figures, Part, Points } from '@/app/reference/methods/parts';
 import { LARGEST_INFLATION, WIDTHS } from '@/lib/compute/statistics/evidence';
 import { ODDS, WORTH_NAMING } from '@/lib/compute/survey/explain';
+import type { Fault } from '@/lib/compute/survey/fault';
 import { USUAL } from '@/lib/compute/survey/suspicions';
 
-const NAMES: Record<string, string> = {
+const NAMES: Record<Fault, string> = {
   none: 'nothing but chance',
   targetMoved: 'a mark that was moved',
   heightOfTargetOrMark: 'a target height, or a mark that settled',
@@ -15,6 +16,8 @@ const NAMES: Record<string, string> = {
   distanceScale: 'a scale of all distances',
   wrongFoot: 'a mark in the other foot',
   singleFace: 'one face',
+  stationMoved: 'an instrument that stands beside its mark',
+  instrumentHeight: 'an instrument height misread',
   unexplained: 'none of these',
 };
 
@@ -29,12 +32,12 @@ export const explanations: Method = {
         <p>Each is one alternative to the adjustment that did not fit:</p>
         <Points>
           {[
-            'As further unknowns: a constant or a scale of all distances; collimation or index of single faces; a mark that stands elsewhere; a height of target or mark. The adjustment estimates their size beside the station.',
+            'As further unknowns: a constant or a scale of all distances; collimation or index of single faces; a mark that stands elsewhere; a height of target or mark; over a mark, an instrument beside it or its height. The adjustment estimates their size beside the station.',
             'As the same shots to other marks: two targets with each other’s name, or a mark whose coordinates came in the other foot.',
             'None: chance alone. And unexplained: all standard deviations are larger than stated, by any factor.',
           ]}
         </Points>
-        <Formula>{String.raw`\ell = f(x) + C\,\nabla + e`}</Formula>
+        <Formula>{String.raw`\ell = f(x) + C\,{\nabla} + e`}</Formula>
       </Part>
       <Part title="Weights">
         <p>
@@ -42,7 +45,7 @@ export const explanations: Method = {
           fault might have been beforehand. With the estimate <M>{String.raw`\hat\nabla`}</M>, its covariance{' '}
           <M>{'Q'}</M> and the prior covariance <M>{'W'}</M>:
         </p>
-        <Formula>{String.raw`\begin{aligned}\ln E = &-\tfrac12 v^\mathsf{T} P v + \tfrac12 \ln\frac{|Q|}{|Q + W|} \\ &- \tfrac12\,\hat\nabla^\mathsf{T}(Q + W)^{-1}\hat\nabla\end{aligned}`}</Formula>
+        <Formula>{String.raw`\begin{aligned}\ln E = &-\frac12 v^\mathsf{T} P v + \frac12 \ln\frac{|Q|}{|Q + W|} \\ &- \frac12\,\hat\nabla^\mathsf{T}(Q + W)^{-1}\hat\nabla\end{aligned}`}</Formula>
         <p>
           averaged over widths of {WIDTHS.map((width) => figure(width)).join(', ')} times the usual size,
           since faults of the field have heavy tails. For the model that explains nothing the standard
@@ -59,11 +62,11 @@ export const explanations: Method = {
     </>
   ),
   figures: (
-    <div className="grid gap-8 md:grid-cols-2">
+    <div className="grid items-start gap-8 md:grid-cols-2">
       <Figures
         caption="Odds before anything is read"
         rows={Object.entries(ODDS).map(([fault, odds]) => ({
-          what: NAMES[fault] ?? fault,
+          what: NAMES[fault as Fault],
           figure: figure(odds),
         }))}
       />

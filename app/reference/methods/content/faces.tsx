@@ -16,10 +16,10 @@ export const faces: Method = {
           A face-right direction is turned by half a turn, a face-right zenith angle is a full turn minus its
           reading. Within a set the faces are meaned, and their difference tells the instrument’s errors:
         </p>
-        <Formula>{String.raw`\begin{aligned} r &= \tfrac12\bigl(r_L + r_R - \pi\bigr) & 2c &= (r_L - r_R + \pi)\,\sin z \\[4pt] z &= \tfrac12\bigl(z_L + 2\pi - z_R\bigr) & i &= \tfrac12\bigl(z_L + z_R - 2\pi\bigr) \end{aligned}`}</Formula>
+        <Formula>{String.raw`\begin{aligned} r &= \frac12\bigl(r_L + r_R - \pi\bigr) & 2c &= (r_L - r_R + \pi)\,\sin z \\[4pt] z &= \frac12\bigl(z_L + 2\pi - z_R\bigr) & i &= \frac12\bigl(z_L + z_R - 2\pi\bigr) \end{aligned}`}</Formula>
         <p>
-          The setup reports their means over all pairs: <M>{'2c'}</M> is twice the collimation at the horizon,{' '}
-          <M>{'i'}</M> the vertical index.
+          The setup reports their means over all pairs, with the scatter of the pairs beside what is stated:{' '}
+          <M>{'2c'}</M> is twice the collimation at the horizon, <M>{'i'}</M> the vertical index.
         </p>
       </Part>
       <Part title="Standard deviations">

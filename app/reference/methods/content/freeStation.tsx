@@ -45,17 +45,19 @@ export const freeStation: Method = {
           that makes the sum grow is halved. It ends when the squared step, measured in its own standard
           deviations, is below {figure(CONVERGED)}, and fails honestly after {MAX_ITERATIONS} steps.
         </p>
-        <Formula>{String.raw`\bigl(A^\mathsf{T} P A\bigr)\,\mathrm{d}x = A^\mathsf{T} P \bigl(\ell - f(x)\bigr), \qquad Q = \bigl(A^\mathsf{T} P A\bigr)^{-1}`}</Formula>
+        <Formula>{String.raw`\begin{aligned} \bigl(A^\mathsf{T} P A\bigr)\,\mathrm{d}x &= A^\mathsf{T} P \bigl(\ell - f(x)\bigr) \\ Q &= \bigl(A^\mathsf{T} P A\bigr)^{-1} \end{aligned}`}</Formula>
       </Part>
       <Part title="Start">
         <p>
-          No guess is asked for. Each mark with direction and distance is a point of a polar picture; the
-          rigid motion that lays the picture onto the marks’ coordinates is found in closed form, for any
-          orientation:
+          No guess is asked for. Where the marks have direction and distance, each is a point of a polar
+          picture, and the rigid motion that lays the picture onto the marks’ coordinates is found in closed
+          form, for any orientation:
         </p>
-        <Formula>{String.raw`o = \operatorname{atan2}\Bigl(\sum q_E\,p_N - q_N\,p_E,\ \sum q_E\,p_E + q_N\,p_N\Bigr)`}</Formula>
+        <Formula>{String.raw`\begin{aligned} s &= \sum (q_E\,p_N - q_N\,p_E) \\ c &= \sum (q_E\,p_E + q_N\,p_N) \\ o &= \operatorname{atan2}(s, c) \end{aligned}`}</Formula>
         <p>
-          <M>{'p'}</M> are the picture’s points and <M>{'q'}</M> the marks, both from their centres.
+          <M>{'p'}</M> are the picture’s points and <M>{'q'}</M> the marks, both from their centres. Where the
+          marks do not agree with it, or lack a reading, the start is found by consensus of the smallest sets
+          that give one.
         </p>
       </Part>
       <Part title="What is answered">
@@ -95,6 +97,7 @@ export const freeStation: Method = {
   limits: [
     'Two marks determine a station and prove nothing: residuals of zero are not agreement. The verdict asks for three.',
     'Distances without a zenith angle are used only where both heights are known, and left out otherwise.',
+    'Sights with a direction or a distance alone take part; how they begin is a method of its own.',
     'Outside the figure of its marks a station extrapolates: the setup says so, and its ellipse shows it.',
     'Quarantined marks take no part.',
   ],

@@ -12,7 +12,7 @@ export const lots: Method = {
   body: (
     <>
       <Part title="Bias and spread">
-        <Formula>{String.raw`\bar d = \frac1n\sum d_i \qquad s = \sqrt{\frac{\sum (d_i - \bar d)^2}{n-1}} \qquad \mathrm{rmse} = \sqrt{\frac1n\sum d_i^2}`}</Formula>
+        <Formula>{String.raw`\begin{aligned} \bar d &= \frac1n\sum d_i & \mathrm{rmse} &= \sqrt{\frac1n\sum d_i^2} \\ s &= \sqrt{\frac{\sum (d_i - \bar d)^2}{n-1}} \end{aligned}`}</Formula>
         <p>
           Bias and spread apart: a lot that is high as a whole needs trimming, one that scatters needs another
           pass.

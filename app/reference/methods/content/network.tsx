@@ -27,7 +27,7 @@ export const network: Method = {
           the whole network that no observation sees, shifts and the turn about the vertical, are settled by
           the free coordinates: their corrections get the least sum of squares.
         </p>
-        <Formula>{String.raw`B^\mathsf{T}(x - x^0) = 0, \qquad Q = S\,Q^0 S^\mathsf{T}, \quad S = I - G\,(B^\mathsf{T} G)^{-1} B^\mathsf{T}`}</Formula>
+        <Formula>{String.raw`\begin{aligned} B^\mathsf{T}(x - x^0) &= 0, \qquad Q = S\,Q^0 S^\mathsf{T} \\ S &= I - G\,(B^\mathsf{T} G)^{-1} B^\mathsf{T} \end{aligned}`}</Formula>
         <p>
           <M>{'G'}</M> are the movements, <M>{'B'}</M> the same on the free coordinates alone. So a free
           network shows its own accuracy, not that of two points that somebody chose.

@@ -40,7 +40,7 @@ export const setupForecast: Method = {
           and each row <M>{'k'}</M> that enters the polar position or the published coordinates by{' '}
           <M>{'c_k'}</M>:
         </p>
-        <Formula>{String.raw`\Sigma = J Q J^\mathsf{T} + \sum_k \sigma_k^2\,c_k c_k^\mathsf{T} + \sum_k \bigl(J Q a_k c_k^\mathsf{T} + c_k a_k^\mathsf{T} Q J^\mathsf{T}\bigr)`}</Formula>
+        <Formula>{String.raw`\begin{aligned} \Sigma = {}& J Q J^\mathsf{T} + \sum_k \sigma_k^2\,c_k c_k^\mathsf{T} \\ &+ \sum_k \bigl(J Q a_k c_k^\mathsf{T} + c_k a_k^\mathsf{T} Q J^\mathsf{T}\bigr) \end{aligned}`}</Formula>
         <p>
           Where that is more than the class allows, a note says that good setups would often be called wrong:
           the class asks more than these marks and this instrument can show.

@@ -36,6 +36,8 @@ export const setupVerdict: Method = {
               prove nothing.
             </>,
             'Without some mark the others would not determine the station, or it would move by more than the class’ residual.',
+            'Another station would fit the same shots, or the station lies near the circle through its marks, from which directions alone do not find it.',
+            'Over a mark: nothing confirms the orientation, or that the instrument stands over its own mark.',
             'The χ² test fails: the shots scatter more than the stated accuracies allow.',
             'At the class’ working radius a point is not good enough for the work, at 95 %.',
             'The class requires an independent check and none agrees, or the one that was shot disagrees or could not tell.',

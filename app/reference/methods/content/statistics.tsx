@@ -52,7 +52,7 @@ export const statistics: Method = {
           a lever. In plan the worst direction of the worst ray counts; in height axis, zenith angle and
           refraction:
         </p>
-        <Formula>{String.raw`\begin{aligned} u_h^2 &= \max_\alpha\,\lambda_{\max}\bigl(J_\alpha Q J_\alpha^\mathsf{T}\bigr) \\[2pt] u_v^2 &= q_{HH} + \rho^2\sigma_z^2 + b^2 q_{kk} + 2b\,q_{Hk}, \quad b = -\frac{\rho^2}{2R} \end{aligned}`}</Formula>
+        <Formula>{String.raw`\begin{aligned} u_h^2 &= \max_\alpha\,\lambda_{\max}\bigl(J_\alpha Q J_\alpha^\mathsf{T}\bigr) \\[2pt] u_v^2 &= q_{HH} + \rho^2\sigma_z^2 + b^2 q_{kk} + 2b\,q_{Hk} \\ b &= -\frac{\rho^2}{2R} \end{aligned}`}</Formula>
         <p>{figure(NORMAL_95, 3)} times these is set against what the work allows.</p>
       </Part>
     </>
