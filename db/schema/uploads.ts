@@ -20,7 +20,10 @@ export const rawBodies = pgTable(
     organizationId: organizationId(),
     id: uuid('id').notNull(),
     sha256: bytea('sha256').notNull(),
-    /** Of what was in an accepted compressed body: compressed anew, the same document is seldom the same bytes. */
+    /**
+     * Of what was in an accepted compressed body: compressed anew, the same document is seldom the same bytes. Of a
+     * table with what its address says beside it.
+     */
     contentSha256: bytea('content_sha256'),
     bytes: bytea('bytes').notNull(),
     mediaType: text('media_type').notNull(),

@@ -96,7 +96,7 @@ const REPLAYED = { 'Idempotency-Replayed': 'true' };
 /** An operation that keeps the bytes it gets whatever becomes of them. */
 export interface RawOperation<C extends Contract, P, A> {
   /** Reads the bytes; what is wrong with them is part of the answer, not thrown. */
-  prepare(raw: RawBody): Promise<P>;
+  prepare(raw: RawBody, input: Omit<Input<C>, 'body'>): Promise<P>;
   /** Reads ahead of knowing the caller, in the same packet; not looked at until the caller is let in. */
   ahead(tenant: Tenant, input: Omit<Input<C>, 'body'>, prepared: P): Promise<A> | null;
   run(
@@ -117,7 +117,7 @@ export interface RawOperation<C extends Contract, P, A> {
 export function rawEndpoint<C extends Contract, P, A>(operation: C, steps: RawOperation<C, P, A>): Handler {
   const withRaw = ({ params, query, raw }: Arrived<C>) => ({ params, query, raw: raw! });
   return callerHandler(operation, {
-    prepare: ({ raw }) => steps.prepare(raw!),
+    prepare: ({ raw, params, query }) => steps.prepare(raw!, { params, query }),
     ahead: (tenant, arrived, prepared) => steps.ahead(tenant, arrived, prepared),
     run: async (context, arrived, prepared, ahead) => {
       const answer = await steps.run(context, withRaw(arrived), prepared, ahead);

@@ -1,7 +1,7 @@
 import * as z from 'zod';
 import { contract } from '@/openapi/contract';
-import { ProjectParams, UploadParams } from '@/openapi/params';
-import { PageQuery } from '@/openapi/schemas/primitives';
+import { Flag, ProjectParams, UploadParams } from '@/openapi/params';
+import { ClientId, Instant, Name, PageQuery } from '@/openapi/schemas/primitives';
 import { LengthQuery } from '@/openapi/schemas/units';
 import { Receipt, UploadDocument, UploadPage } from '@/openapi/schemas/upload';
 
@@ -14,11 +14,17 @@ export const createUpload = contract({
   tag: 'Uploads',
   summary: 'Post observations',
   description:
-    'Setups, checks, grade shots, bench checks, level runs and two-peg tests as they were observed. The bytes are kept as they came, whatever becomes of them; each item is accepted or refused on its own, and the answer says which. Posting the same document again is harmless, compressed anew or not at all.',
+    'Setups, checks, grade shots, bench checks, level runs and two-peg tests as they were observed. The bytes are kept as they came, whatever becomes of them; each item is accepted or refused on its own, and the answer says which. Posting the same document again is harmless, compressed anew or not at all. A single level run may come as `text/csv`, a line of the book a row under the header point, backsight, backsightDistance, intermediate, intermediateDistance, foresight, foresightDistance, bookedElevation (the last five as wanted), with ?length= and ?clientId=.',
   access: 'uploads:write',
   params: ProjectParams,
-  query: LengthQuery,
-  body: { json: UploadDocument, raw: true, limit: UPLOAD_LIMIT },
+  query: z.strictObject({
+    ...LengthQuery.shape,
+    clientId: ClientId.optional().meta({ description: 'Of a level book as text/csv: required there.' }),
+    instrument: Name.optional().meta({ description: 'The level, of a level book as text/csv.' }),
+    observedAt: Instant.optional().meta({ description: 'When, of a level book as text/csv.' }),
+    confirmUnits: Flag.meta({ description: 'As in the document, of a level book as text/csv.' }),
+  }),
+  body: { json: UploadDocument, text: ['text/csv'], raw: true, limit: UPLOAD_LIMIT },
   answers: {
     201: { description: 'Received, kept and computed.', json: Receipt },
     200: { description: 'The same upload came before: its first receipt.', json: Receipt },

@@ -107,7 +107,10 @@ describe('the bytes of an upload', () => {
     const answer = await post(body, headers);
     const problem = expectProblem(answer as never, code);
     if (code === 'media_type_unsupported')
-      expect(answer.headers).toMatchObject({ accept: 'application/json', 'accept-encoding': 'gzip' });
+      expect(answer.headers).toMatchObject({
+        accept: 'application/json, text/csv',
+        'accept-encoding': 'gzip',
+      });
     const upload = await newest();
     const bytes = Buffer.from(body);
     expect(upload).toMatchObject({

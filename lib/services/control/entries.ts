@@ -1,5 +1,6 @@
 import type * as z from 'zod';
 import type { LengthUnit } from '@/lib/compute/units/table';
+import { decimalCell } from '@/lib/formats/decimalCell';
 import type { Itemwise } from '@/lib/formats/itemwise';
 import { readTable, type Table } from '@/lib/formats/table';
 import { problemsOfIssues } from '@/lib/formats/validate';
@@ -41,8 +42,6 @@ function entriesOfJson(items: Itemwise<z.output<typeof ControlSubmission>>): Ent
   };
 }
 
-const NUMBER = /^[+-]?(?:\d+\.?\d*|\.\d+)$/;
-
 /** The points of a CSV submission, a row each; empty cells count as absent. */
 function entriesOfCsv(text: string, unit: LengthUnit | undefined, confirmUnits: boolean): Entries {
   if (!unit) throw invalid('?length', 'units_required', 'A CSV body needs ?length=m, ft or ftUS.');
@@ -71,13 +70,9 @@ function entriesOfCsv(text: string, unit: LengthUnit | undefined, confirmUnits: 
 function pointOfRow({ cells }: Table['rows'][number], pointer: string) {
   const problems: ProblemItem[] = [];
   const number = (column: string): number | undefined => {
-    const cell = cells[column];
-    if (cell === undefined || cell === '') return undefined;
-    if (NUMBER.test(cell)) return Number(cell);
-    problems.push(
-      problemItem(`${pointer}/${column}`, 'wrong_type', `${JSON.stringify(cell)} is no decimal number.`),
-    );
-    return undefined;
+    const { value, problem } = decimalCell(cells[column], `${pointer}/${column}`);
+    if (problem) problems.push(problem);
+    return value;
   };
   const [horizontal, vertical] = [number('sigmaHorizontal'), number('sigmaVertical')];
   const sigma = horizontal === undefined && vertical === undefined ? undefined : { horizontal, vertical };

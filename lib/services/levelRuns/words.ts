@@ -89,7 +89,7 @@ export function wordsOfLevelReason(reason: LevelReason, length: Lengths): Words 
     case 'peg_test_failed':
       return {
         code,
-        text: `The level failed its last two-peg test: ${arcsec(reason.value)}, ${arcsec(reason.limit)} allowed. Its collimation was not taken off.`,
+        text: `The level failed its last two-peg test, with ${arcsec(reason.value)}: that was not taken off, since it may have been adjusted after it.`,
         action: 'Adjust it, test it again, and run again.',
       };
     case 'sights_unbalanced':

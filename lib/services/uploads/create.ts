@@ -10,6 +10,7 @@ import { openSurface } from '@/lib/services/surfaces/open';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/uploads';
 import { problemItem } from '@/openapi/problemItem';
+import type { ProblemItem } from '@/openapi/schemas/problem';
 import { UPLOAD_KINDS } from '@/openapi/schemas/upload';
 import { draftBenchChecks } from './benchChecks';
 import { type Document, needsOf, type ReadDocument, readDocument } from './document';
@@ -35,9 +36,9 @@ export type Prepared = ReadDocument | Problem;
  * accepted, as refused in a second one.
  */
 export const createUpload = {
-  async prepare(raw: RawBody): Promise<Prepared> {
+  async prepare(raw: RawBody, { query }: Input): Promise<Prepared> {
     try {
-      return await readDocument(raw);
+      return await readDocument(raw, query);
     } catch (error) {
       if (error instanceof Problem) return error;
       throw error;
@@ -107,7 +108,8 @@ async function process(
     document.confirmUnits,
     '/units/length',
   );
-  if (foot) throw invalidItems([foot]);
+  const { asSent = (item: ProblemItem) => item } = read;
+  if (foot) throw invalidItems([asSent(foot)]);
 
   const draft = newDraft(runtime.uuid(), document, read, site);
   draftSetups(draft, context);
@@ -117,7 +119,8 @@ async function process(
   draftPegTests(draft, context);
   draftLevelRuns(draft, context);
   refuseUncomputed(draft);
-  const { setups, checks, gradeRows, benchRows, levelRows, pegRows, refused } = draft;
+  const { setups, checks, gradeRows, benchRows, levelRows, pegRows } = draft;
+  const refused = draft.refused.map(asSent);
   const kinds = [setups, checks, gradeRows, benchRows, levelRows, pegRows];
   const accepted = kinds.reduce((count, items) => count + items.length, 0);
   if (accepted === 0) {
@@ -149,13 +152,12 @@ async function process(
 }
 
 /** A document of which nothing is left: each item was bad, or something beside the items. */
-function refusal({ problems }: ReadDocument): Problem {
+function refusal({ problems, asSent = (item) => item }: ReadDocument): Problem {
   const itemsAlone = problems.every(({ pointer }) =>
     UPLOAD_KINDS.some((kind) => pointer.startsWith(`/${kind}/`)),
   );
-  return itemsAlone
-    ? new Problem('nothing_accepted', undefined, { errors: problems })
-    : invalidItems(problems);
+  const errors = problems.map(asSent);
+  return itemsAlone ? new Problem('nothing_accepted', undefined, { errors }) : invalidItems(errors);
 }
 
 function newDraft(

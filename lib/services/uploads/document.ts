@@ -3,28 +3,41 @@ import { sha256 } from '@/lib/access/secrets';
 import { BodyError, bodyText, type RawBody } from '@/lib/formats/body';
 import { type Itemwise, parseItemwise } from '@/lib/formats/itemwise';
 import { JsonError, parseStrictJson } from '@/lib/formats/strictJson';
-import { Problem } from '@/lib/problem';
+import { invalidItems, Problem } from '@/lib/problem';
+import { problemItem } from '@/openapi/problemItem';
+import type { ProblemItem } from '@/openapi/schemas/problem';
 import { UPLOAD_KINDS, UploadDocument } from '@/openapi/schemas/upload';
+import { type BookQuery, readLevelBook } from './levelBook';
 import type { Needs } from './site';
 
 export type Document = z.output<typeof UploadDocument>;
 export interface ReadDocument extends Itemwise<Document> {
-  /** SHA-256 of what was in a compressed body; null where it came as it is. */
+  /** SHA-256 of what was in a compressed body, or of what a table and its address stand for; null where it came as it is. */
   contentSha256: Buffer | null;
+  /** A problem of the document where it stands in what was sent, if that is not the document itself. */
+  asSent?: (item: ProblemItem) => ProblemItem;
 }
 
+/** What only a table takes from the address. */
+const BOOK_ONLY = ['clientId', 'instrument', 'observedAt', 'confirmUnits'] as const;
+const OF_TABLES = 'It stands in the document itself; in the address it belongs to a table.';
+
 /** @throws Problem where the body cannot be read at all */
-export async function readDocument(raw: RawBody): Promise<ReadDocument> {
+export async function readDocument(raw: RawBody, query: BookQuery): Promise<ReadDocument> {
   if (raw.bytes.byteLength === 0) throw new Problem('body_required');
   try {
     const text = await bodyText(raw);
+    if (raw.mediaType === 'text/csv') return readLevelBook(text, query);
     if (raw.mediaType !== 'application/json') {
       const declared = raw.mediaType === '' ? 'nothing' : raw.mediaType.slice(0, 80);
       throw new BodyError(
         'media_type_unsupported',
-        `Uploads are application/json; declared was ${declared}.`,
+        `Uploads are application/json, or text/csv for a level book; declared was ${declared}.`,
       );
     }
+    const beside = BOOK_ONLY.filter((name) => query[name] !== undefined);
+    if (beside.length > 0)
+      throw invalidItems(beside.map((name) => problemItem(`?${name}`, 'mutually_exclusive', OF_TABLES)));
     const { value, flaws } = parseStrictJson(text);
     return {
       ...parseItemwise(UploadDocument, UPLOAD_KINDS, value, flaws),

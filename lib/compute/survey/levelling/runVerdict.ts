@@ -1,5 +1,5 @@
 import { CRITICAL_W, NORMAL_95 } from '@/lib/compute/statistics/distributions';
-import { COLLIMATION_LIMIT, LONG_SIGHT } from './accuracy';
+import { LONG_SIGHT } from './accuracy';
 import type { LevelSight } from './book';
 import type { LevelRun } from './levelRun';
 import type { LevelLimit } from './limit';
@@ -17,7 +17,7 @@ export type LevelReason =
   | { code: 'misclosure_unlikely'; value: number; standardised: number }
   | { code: 'method_not_capable'; value: number; limit: number }
   | { code: 'lengths_unknown'; standings: number }
-  | { code: 'peg_test_failed'; value: number; limit: number }
+  | { code: 'peg_test_failed'; value: number }
   | { code: 'sights_unbalanced'; value: number; effect: number }
   | { code: 'booking_differs'; point: string; value: number }
   | { code: 'closes'; value: number; limit: number };
@@ -156,8 +156,7 @@ function doubts(run: LevelRun, around: RunCircumstances): LevelReason[] {
     reasons.push({ code: 'method_not_capable', value: capability, limit: closure.allowed });
   if (!balance.measured && limit.per === 'length')
     reasons.push({ code: 'lengths_unknown', standings: balance.standings });
-  if (line.failed !== null)
-    reasons.push({ code: 'peg_test_failed', value: line.failed, limit: COLLIMATION_LIMIT });
+  if (line.failed !== null) reasons.push({ code: 'peg_test_failed', value: line.failed });
   const imbalance = balance.largestImbalance ?? 0;
   const effect = Math.abs(2 * line.sigma * imbalance);
   if (effect > COLLIMATION_SHARE * closure.allowed)

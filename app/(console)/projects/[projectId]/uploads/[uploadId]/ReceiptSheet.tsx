@@ -27,6 +27,8 @@ export function ReceiptSheet({ projectId, uploadId }: { projectId: string; uploa
   if (!receipt.data) return <Skeleton lines={8} />;
   const { upload, refused } = receipt.data;
   const name = upload.clientId ?? 'Unreadable body';
+  // Mended text is sent as JSON; a table is mended where it was made.
+  const mendable = refused.length > 0 && mayPost && upload.mediaType !== 'text/csv';
   return (
     <>
       <Crumb
@@ -55,7 +57,7 @@ export function ReceiptSheet({ projectId, uploadId }: { projectId: string; uploa
               refused={refused}
               close={() => setMending(false)}
             />
-          ) : refused.length > 0 && mayPost && raw.data?.text ? (
+          ) : mendable && raw.data?.text ? (
             <Button look="plain" onClick={() => setMending(true)}>
               Mend and send again
             </Button>
