@@ -117,6 +117,23 @@ describe('a setup forecast', () => {
     );
   });
 
+  it('is the fit of directions and zenith angles alone, where no distances are to be read', () => {
+    fc.assert(
+      fc.property(anySeed, (seed) => {
+        const of = ground(seed, { marks: [4, 6], allRound: true });
+        const task = taskOf(of);
+        const plan = { ...task.plan, kinds: ['direction', 'zenith'] as const };
+        const forecast = forecastSetup(placeOf(of), { ...task, plan });
+        const input = engineOf(of);
+        const shots = input.shots.map((shot) => ({ ...shot, distance: null }));
+        if ('code' in forecast) return expect(() => fitStation({ ...input, shots })).toThrow(forecast.code);
+        near(variances(forecast.fit), variances(fitStation({ ...input, shots })), 1e-5);
+        expect(forecast.fit.ellipse95.semiMajor).toBeGreaterThan(forecastOf(of).fit.ellipse95.semiMajor);
+      }),
+      { numRuns: 40, seed: 17 },
+    );
+  });
+
   it('is within a few per mille of the fit of shots with all their errors', () => {
     fc.assert(
       fc.property(anySeed, anyProgramme, (seed, programme) => {

@@ -1,6 +1,7 @@
 import { backsight } from './content/backsight';
 import { benchCheck } from './content/benchCheck';
 import { checkShots } from './content/checkShots';
+import { collimation } from './content/collimation';
 import { distances } from './content/distances';
 import { explanations } from './content/explanations';
 import { faces } from './content/faces';
@@ -26,6 +27,7 @@ export const METHODS: readonly Method[] = [
   distances,
   ray,
   faces,
+  collimation,
   freeStation,
   partialResection,
   backsight,

@@ -22,9 +22,9 @@ export interface FaceHistory {
 }
 
 /** Error probability of calling a change what is chance, over all places where one might lie. */
-const ALPHA = 0.001;
+export const ALPHA = 0.001;
 /** Fewer readings tell no drift from a change. */
-const DRIFT_READINGS = 5;
+export const DRIFT_READINGS = 5;
 
 /**
  * How an error that should stand still has behaved: a change of its mean at the likeliest place (two means, the

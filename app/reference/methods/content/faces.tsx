@@ -29,7 +29,7 @@ export const faces: Method = {
           so that <M>{'m'}</M> readings in one face and <M>{'n'}</M> in the other, or <M>{'n'}</M> in one face
           alone, give
         </p>
-        <Formula>{String.raw`\sigma_{m,n} = \sigma_\mathrm{ISO}\sqrt{\tfrac12\Bigl(\tfrac1m + \tfrac1n\Bigr)} \qquad \sigma_{0,n} = \sigma_\mathrm{ISO}\sqrt{\tfrac2n}`}</Formula>
+        <Formula>{String.raw`\sigma_{m,n} = \sigma_\mathrm{ISO}\sqrt{\frac12\Bigl(\frac1m + \frac1n\Bigr)} \qquad \sigma_{0,n} = \sigma_\mathrm{ISO}\sqrt{\frac2n}`}</Formula>
         <p>
           The mean of <M>{'n'}</M> distances: <M>{String.raw`\sigma_S = (a + b\,S)/\sqrt n`}</M>, constant and
           proportional part added, as stated.

@@ -23,7 +23,7 @@ export const lots: Method = {
           By the standard-deviation method, from the quality index of each limit and <M>{'B'}</M>, the
           distribution function of Beta(<M>{'n/2-1'}</M>, <M>{'n/2-1'}</M>):
         </p>
-        <Formula>{String.raw`\begin{aligned} Q_a &= \frac{a - \bar d}{s}, \qquad Q_b = \frac{\bar d + b}{s} \\[2pt] P(Q) &= 100\Bigl(1 - B\Bigl(\tfrac12 - \frac{Q\sqrt n}{2(n-1)}\Bigr)\Bigr) \\[2pt] \mathrm{PWL} &= P(Q_a) + P(Q_b) - 100 \end{aligned}`}</Formula>
+        <Formula>{String.raw`\begin{aligned} Q_a &= \frac{a - \bar d}{s}, \qquad Q_b = \frac{\bar d + b}{s} \\[2pt] P(Q) &= 100\Bigl(1 - B\Bigl(\frac12 - \frac{Q\sqrt n}{2(n-1)}\Bigr)\Bigr) \\[2pt] \mathrm{PWL} &= P(Q_a) + P(Q_b) - 100 \end{aligned}`}</Formula>
         <p>It takes three readings at least.</p>
       </Part>
       <Part title="Rules">

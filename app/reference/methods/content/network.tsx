@@ -49,6 +49,14 @@ export const network: Method = {
           snooping says so.
         </p>
       </Part>
+      <Part title="Two epochs">
+        <p>
+          The same site observed again: both epochs are adjusted free, control believed no more than any other
+          point, and their common points tested for congruence. While the test fails, the point that brings in
+          most leaves the datum; displacements <M>{'d'}</M> are those in the datum of the points that stayed.
+        </p>
+        <Formula>{String.raw`d^\mathsf{T} Q^{+} d \le \chi^2_{0.95}(h) \quad\text{or}\quad h\,F_{0.95}(h, \nu)`}</Formula>
+      </Part>
     </>
   ),
   figures: <Figures caption="Snooping" rows={[{ what: 'critical |w|', figure: figure(CRITICAL_W) }]} />,
@@ -63,6 +71,7 @@ export const network: Method = {
   units: 'Metres and radians inside; answers in the project’s units.',
   sources: [
     'Baarda (1968); Kok, On data snooping and multiple outlier testing (1984).',
+    'Pelzer (1971); Caspary, Concepts of Network and Deformation Analysis, §6 (congruence).',
     'Meissl (1969); Baarda, S-transformations and criterion matrices (1973): inner constraints.',
     'Amestoy, Davis and Duff (1996); Liu, The multifrontal method for sparse matrix solution (1992); Davis, Direct Methods for Sparse Linear Systems.',
     'Printed networks of textbooks are reproduced in the hub’s tests.',
