@@ -13,6 +13,7 @@ import {
 import { exchangesOf } from './exchanges';
 import type { Fault } from './fault';
 import type { AdjustedStation } from './stationAdjustment';
+import { EASTING, NORTHING, type StationModel } from './stationModel';
 import { type Suspicion, suspicionsOf } from './suspicions';
 
 /** One thing that would explain what does not fit, with its share of the belief. */
@@ -54,6 +55,9 @@ const OF_ONE_MARK: ReadonlySet<Fault> = new Set(['targetMoved', 'heightOfTargetO
 export function markToBlame([first]: readonly Explanation[]): string | null {
   return first && first.weight >= SURE && OF_ONE_MARK.has(first.fault) ? first.subject[0] : null;
 }
+
+/** What common faults move a station by they move the start by as well, m. */
+const DRAGGED = 0.1;
 
 interface Candidate {
   fault: Fault;
@@ -98,8 +102,7 @@ export function explain(adjusted: AdjustedStation, standardised: Float64Array): 
 function tried({ model, solution }: AdjustedStation, suspicion: Suspicion): Candidate | null {
   const { fault, subject, entries, usual, sizeOf } = suspicion;
   const suspicious = withSuspicions(model, usual.length, entries);
-  // A wrong mark drags the solution far off; the start is free of it.
-  const attempts = [solution.unknowns, model.start].flatMap((from) => {
+  const attempts = beginnings(model, solution).flatMap((from) => {
     const attempt = orNull(() => solve(suspicious, suspiciousStart(model, from, usual.length)));
     return attempt?.converged ? attempt : [];
   });
@@ -111,6 +114,14 @@ function tried({ model, solution }: AdjustedStation, suspicion: Suspicion): Cand
     logEvidenceOfFaults(attempt.weightedSquares, { estimate, covariance, usual }),
   );
   return evidence === null ? null : { fault, subject, size: sizeOf(estimate), evidence };
+}
+
+/** A wrong mark drags the solution far off; the start is free of it. */
+function beginnings(model: StationModel, { converged, unknowns }: Solution): Float64Array[] {
+  if (!converged) return [model.start];
+  // The model counts its places from the start.
+  const dragged = Math.hypot(unknowns[EASTING], unknowns[NORTHING]) > DRAGGED;
+  return dragged ? [unknowns, model.start] : [unknowns];
 }
 
 function covarianceOfFaults(solution: Solution, first: number, count: number): Float64Array {

@@ -27,14 +27,17 @@ const MOST_OTHERS = 5;
  */
 export function startValues(sights: readonly Sight[], surroundings: Surroundings): StartValues[] {
   const whole = sights.filter(isWhole);
-  if (new Set(whole.map(({ mark }) => mark.name)).size > 1) {
+  // Two whole sights fit one place only.
+  const unique = new Set(whole.map(({ mark }) => mark.name)).size > 1;
+  if (unique) {
     const all = rigidMotion(whole);
     if (all && agrees(all, sights)) return [completed(all, sights, surroundings)];
   }
   const candidates = startCandidates(sights);
+  const most = unique ? 1 : 1 + MOST_OTHERS;
   const apart: Candidate[] = [];
   for (const candidate of candidates) {
-    if (candidate.misfit > candidates[0].misfit + AS_GOOD || apart.length > MOST_OTHERS) break;
+    if (candidate.misfit > candidates[0].misfit + AS_GOOD || apart.length === most) break;
     if (apart.every((other) => between(candidate, other) > SAME_PLACE)) apart.push(candidate);
   }
   return apart.map((candidate) => completed(candidate, sights, surroundings));
