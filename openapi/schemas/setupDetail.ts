@@ -35,7 +35,7 @@ export const DirectionSets = z
     directions: z.array(
       z.object({
         target: z.string(),
-        mean: figure.meta({ description: 'Degrees on the circle, turned onto the mean of all sets.' }),
+        mean: figure.meta({ description: 'Mean reading, degrees on the circle as the first set had it.' }),
         largestArcsec: figure.meta({ description: 'Largest departure of a set from the mean.' }),
       }),
     ),

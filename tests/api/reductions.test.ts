@@ -165,7 +165,8 @@ describe('two faces and sets', () => {
     expect(directionSets!.statedArcsec).toBeCloseTo(1, 9);
     expect(directionSets!.directions.map(({ target }) => target)).toEqual([...FITTED]);
     const [first] = shotsTo('HT-1');
-    expect((directionSets!.directions[0].mean - first.horizontal) * 3600).toBeCloseTo(0.5, 3);
+    // In the orientation of the first set, whatever the circle was turned by later.
+    expect((directionSets!.directions[0].mean - first.horizontal) * 3600).toBeCloseTo(0, 3);
     expect(notes.map(({ code }) => code)).not.toContain('directions_scatter');
     expect((await accepted({})).directionSets).toBeNull();
   });

@@ -1,6 +1,6 @@
 import { Figure } from '@/app/ui/Figure';
 import { type Entry, Ledger } from '@/app/ui/Ledger';
-import { COORDINATE, fixed, sexagesimal, stated, unitSign } from '@/app/ui/numbers';
+import { COORDINATE, fixed, sexagesimal, signed, stated, unitSign } from '@/app/ui/numbers';
 import { State } from '@/app/ui/State';
 import type { ShownSetup } from './SetupSheet';
 
@@ -77,4 +77,27 @@ export function Fit({ setup }: { setup: ShownSetup }) {
     seconds('Vertical index', faceErrors.verticalIndexArcsec, faceErrors.verticalIndexSigmaArcsec);
   }
   return <Ledger title="How well it fits" entries={entries} />;
+}
+
+/** Distances and heights to the backsights of a setup over a mark, against published coordinates. */
+export function Backsights({ setup }: { setup: ShownSetup }) {
+  const { occupied, backsights, units } = setup;
+  if (!occupied) return null;
+  const unit = unitSign(units.length);
+  const entries = backsights.flatMap(({ target, distance, height }): Entry[] =>
+    [
+      { name: `${target}, distance`, compared: distance },
+      { name: `${target}, height`, compared: height },
+    ].map(({ name, compared }): Entry => {
+      if (!compared) return { name, value: 'not read' };
+      const { difference, tolerance, outcome } = compared;
+      const text = `${signed(difference, COORDINATE)} of ${stated(tolerance, units.length)}`;
+      return outcome === 'over'
+        ? { name, value: <State tone="fail">{text}</State>, beside: `${unit}, over` }
+        : { name, value: text, beside: unit };
+    }),
+  );
+  return (
+    <Ledger title={`Backsights from ${occupied.point}`} note="measured minus published" entries={entries} />
+  );
 }

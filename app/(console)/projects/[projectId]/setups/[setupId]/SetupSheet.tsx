@@ -13,12 +13,18 @@ import type { Setup } from '@/openapi/schemas/setup';
 import { Acts } from './Acts';
 import { Checks } from './Checks';
 import { Explanations } from './Explanations';
-import { Fit, Standing } from './Ledgers';
+import { Backsights, Fit, Standing } from './Ledgers';
 import { Provenance } from './Provenance';
 import { SetupStamp } from './SetupStamp';
 import { Targets } from './Targets';
 
 export type ShownSetup = z.output<typeof Setup>;
+
+const METHOD: Record<ShownSetup['method'], string> = {
+  resection: 'Resection',
+  identify: 'Identified resection',
+  backsight: 'Backsights',
+};
 
 export function SetupSheet({ projectId, setupId }: { projectId: string; setupId: string }) {
   const setups = `/projects/${projectId}/setups`;
@@ -41,9 +47,8 @@ export function SetupSheet({ projectId, setupId }: { projectId: string; setupId:
         title={data.station}
         sub={
           <>
-            {data.method === 'resection' ? 'Resection' : data.method} on {marks} targets with{' '}
-            {data.instrument}, {moment(data.observedAt)}, posted by{' '}
-            <code className="font-code text-[13px]">{data.submittedBy}</code>
+            {METHOD[data.method]} on {marks} targets with {data.instrument}, {moment(data.observedAt)}, posted
+            by <code className="font-code text-[13px]">{data.submittedBy}</code>
           </>
         }
         aside={<SetupStamp setup={data} projectId={projectId} />}
@@ -54,6 +59,7 @@ export function SetupSheet({ projectId, setupId }: { projectId: string; setupId:
         <SetupPlan setup={data} />
         <div className="space-y-7">
           <Standing setup={data} />
+          <Backsights setup={data} />
           <Fit setup={data} />
         </div>
       </div>
