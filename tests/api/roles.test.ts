@@ -41,6 +41,8 @@ const DEEDS: Record<string, { may: readonly Role[]; path: string; body?: object 
   'see people': { may: ['admin', 'surveyor', 'inspector'], path: '/people' },
   'see API keys': { may: ['admin'], path: '/api-keys' },
   'make API keys': { may: ['admin'], path: '/api-keys', body: {} },
+  'see webhook endpoints': { may: ['admin'], path: '/webhook-endpoints' },
+  'make webhook endpoints': { may: ['admin'], path: '/webhook-endpoints', body: {} },
   'invite people': { may: ['admin'], path: '/people', body: {} },
 };
 

@@ -5,6 +5,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { METHODS } from '@/app/reference/methods/methods';
 import { api } from '@/tests/setup/api';
 import { type Desk, openBrowser, openDesk, settled } from './browser';
+import { hookedUp } from './hooked';
 import { walkedOrganization } from './site';
 
 const SCREENS = 'tests/output/screens';
@@ -15,6 +16,7 @@ const ON_TOUR = ['setup', 'layer', 'control'];
 let browser: Browser;
 let ground: Awaited<ReturnType<typeof walkedOrganization>>;
 let uploadId: string;
+let hookId: string;
 beforeAll(async () => {
   mkdirSync(SCREENS, { recursive: true });
   browser = await openBrowser();
@@ -31,6 +33,7 @@ beforeAll(async () => {
     .expect(200);
   uploadId = refused.body.data[0].id;
   await withdrawOne();
+  hookId = await hookedUp(ground.hub.url, ground.key);
 }, 60_000);
 afterAll(() => browser.close());
 
@@ -68,6 +71,8 @@ const PAGES: Record<string, (project: string) => string> = {
   uploads: (project) => `${project}/uploads`,
   receipt: (project) => `${project}/uploads/${uploadId}`,
   keys: () => '/keys',
+  hooks: () => '/hooks',
+  hook: () => `/hooks/${hookId}`,
   people: () => '/people',
   audit: () => '/audit',
   reference: () => '/reference',

@@ -9,9 +9,15 @@ export function keyOf(path: string, input: object = {}): readonly unknown[] {
   return [path, input];
 }
 
-/** Reads what an operation answers; `enabled: false` waits. */
-export function useRead<C extends Contract>(path: C['path'], input: Call<C> = {}, enabled = true) {
+/** Reads what an operation answers; `enabled: false` waits, `every` reads it again by itself after milliseconds. */
+export function useRead<C extends Contract>(
+  path: C['path'],
+  input: Call<C> = {},
+  enabled = true,
+  every?: number,
+) {
   return useQuery<AnswerOf<C>>({
+    refetchInterval: every ?? false,
     queryKey: keyOf(path, input),
     queryFn: () => call<C>('GET' as Uppercase<C['method']>, path, input),
     enabled,

@@ -23,6 +23,7 @@ const OF_A_PROJECT = [
 
 const OF_THE_HUB: { path: string; name: string; scope?: Scope }[] = [
   { path: '/keys', name: 'Keys', scope: 'keys:read' },
+  { path: '/hooks', name: 'Hooks', scope: 'webhooks:read' },
   { path: '/people', name: 'People', scope: 'people:read' },
   { path: '/audit', name: 'Audit', scope: 'audit:read' },
   { path: '/reference', name: 'Reference' },
