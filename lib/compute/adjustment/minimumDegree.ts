@@ -63,22 +63,25 @@ class QuotientGraph {
       this.postponed.push(i);
       this.count[i] = 0;
     }
-    const known = new Set<string>();
     for (let row = 0; row + 1 < rowStart.length; row++) {
-      const clique = [...new Set(columns.subarray(rowStart[row], rowStart[row + 1]))].filter(
-        (column) => this.count[column] > 0,
-      );
+      if (rowStart[row + 1] - rowStart[row] < 2) continue;
+      const stamp = ++this.stamp;
+      const clique: number[] = [];
+      for (let e = rowStart[row]; e < rowStart[row + 1]; e++) {
+        const column = columns[e];
+        if (this.count[column] === 0 || this.marked[column] === stamp) continue;
+        this.marked[column] = stamp;
+        clique.push(column);
+      }
       if (clique.length < 2) continue;
-      const key = clique.sort((a, b) => a - b).join();
-      if (known.has(key)) continue;
-      known.add(key);
       const element = this.addElement(clique, clique.length);
       for (const column of clique) this.elements[column].push(element);
     }
     for (let i = 0; i < n; i++) {
       if (this.count[i] === 0) continue;
-      const sum = this.elements[i].reduce((total, e) => total + this.sizes[e] - 1, 0);
-      this.enqueue(i, Math.min(n - 1, sum));
+      let bound = 0;
+      for (const e of this.elements[i]) bound += this.sizes[e] - 1;
+      this.enqueue(i, Math.min(n - 1, bound));
     }
   }
 
