@@ -225,6 +225,28 @@ describe('setup forecasts', () => {
     expectProblem(answer, 'invalid', ['/targets forecast_too_large']);
   });
 
+  it('let other requests have their turn while a large map is computed', async () => {
+    let finished = false;
+    const map = gridOf({
+      extent: { minEasting: 4800, maxEasting: 5388, minNorthing: 7800, maxNorthing: 8388 },
+      spacing: 12,
+    })
+      .expect(200)
+      .then(({ body }) => {
+        finished = true;
+        return body.grid;
+      });
+    let answered = 0;
+    while (!finished && answered < 1000) {
+      const { status } = await fetch(`${site.hub.url}/api/health/live`);
+      expect(status).toBe(200);
+      if (!finished) answered++;
+    }
+    expect((await map).verdict).toHaveLength(2500);
+    // Unless the map held all others up, several were answered before it.
+    expect(answered).toBeGreaterThan(3);
+  });
+
   it('write nothing', async () => {
     const before = await site.admin.get('/events?limit=200').expect(200);
     await ask().expect(200);
