@@ -4,10 +4,9 @@ import type { Method } from '@/app/reference/methods/method';
 import { Figures, Part, Points } from '@/app/reference/methods/parts';
 import { LARGEST_INFLATION, WIDTHS } from '@/lib/compute/statistics/evidence';
 import { ODDS, WORTH_NAMING } from '@/lib/compute/survey/explain';
-import type { Fault } from '@/lib/compute/survey/fault';
 import { USUAL } from '@/lib/compute/survey/suspicions';
 
-const NAMES: Record<Fault, string> = {
+const NAMES: Readonly<Record<string, string>> = {
   none: 'nothing but chance',
   targetMoved: 'a mark that was moved',
   heightOfTargetOrMark: 'a target height, or a mark that settled',
@@ -18,6 +17,7 @@ const NAMES: Record<Fault, string> = {
   singleFace: 'one face',
   stationMoved: 'an instrument that stands beside its mark',
   instrumentHeight: 'an instrument height misread',
+  instrumentMoved: 'an instrument that moved after its fit',
   unexplained: 'none of these',
 };
 
@@ -66,7 +66,7 @@ export const explanations: Method = {
       <Figures
         caption="Odds before anything is read"
         rows={Object.entries(ODDS).map(([fault, odds]) => ({
-          what: NAMES[fault as Fault],
+          what: NAMES[fault] ?? fault,
           figure: figure(odds),
         }))}
       />
