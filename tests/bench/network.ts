@@ -88,7 +88,7 @@ export function networkSection(say: (text: string) => void): boolean {
     const least = `under ${MOST_MEGABYTES} MB`;
     line('most memory of the process', `${megabytes.toFixed(0)} MB`, least, megabytes < MOST_MEGABYTES);
     line(
-      'time beside a quarter of the size',
+      'the second time beside that of a quarter of the size',
       growth.toFixed(2),
       `under ${MOST_GROWTH}`,
       growth < MOST_GROWTH,
