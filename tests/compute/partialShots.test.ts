@@ -240,3 +240,29 @@ describe('one target of four that is wrong by tens of metres', () => {
     expect(named.converged).toBe(count);
   });
 });
+
+describe('one target of five or six that is wrong by tens of metres, with partial shots', () => {
+  it.each<[string, Kept]>([
+    ['directions and zenith angles', angleOnly],
+    ['distances and zenith angles, one direction', (s, m) => (m === 0 ? s : distanceOnly(s, m))],
+    ['every other mark without distance', (s, m) => (m % 2 ? angleOnly(s, m) : s)],
+  ])('%s: is named in 99 of 100 setups, and never a good one', (_, kept) => {
+    const chance = seededChance(18);
+    let named = 0;
+    for (let i = 0; i < 100; i++) {
+      const { observed, shots } = seen(chance, [5, 6], kept);
+      const { published } = observed;
+      const bad = published[Math.floor(published.length * chance.uniform())];
+      const azimuth = 2 * Math.PI * chance.uniform();
+      const size = 10 + 70 * chance.uniform();
+      bad.easting += size * Math.sin(azimuth);
+      bad.northing += size * Math.cos(azimuth);
+      const [first] = fitStation({ ...asEngine(observed), shots }).explanations;
+      if (first.subject.join() === bad.name) named++;
+      else expect(first.subject).toEqual([]);
+      // What shows of it is a part of it, as well as the start knows the distance.
+      if (first.atLeast) expect(first.size!).toBeLessThan(1.05 * size);
+    }
+    expect(named).toBeGreaterThanOrEqual(99);
+  });
+});

@@ -23,6 +23,8 @@ export interface Explanation {
   subject: string[];
   /** m of distances, shifts and heights (as shot minus as published), ratio of a scale, rad of a face; null without. */
   size: number | null;
+  /** Only a part of the fault shows in the shots: it may be larger. */
+  atLeast?: boolean;
   weight: number;
 }
 
@@ -63,6 +65,7 @@ interface Candidate {
   fault: Fault;
   subject: string[];
   size: number | null;
+  atLeast?: boolean;
   evidence: number;
 }
 
@@ -100,7 +103,7 @@ export function explain(adjusted: AdjustedStation, standardised: Float64Array): 
 
 /** The adjustment with a suspected fault among its unknowns; null where the shots do not determine it. */
 function tried({ model, solution }: AdjustedStation, suspicion: Suspicion): Candidate | null {
-  const { fault, subject, entries, usual, sizeOf } = suspicion;
+  const { fault, subject, entries, usual, sizeOf, atLeast } = suspicion;
   const suspicious = withSuspicions(model, usual.length, entries);
   const attempts = beginnings(model, solution).flatMap((from) => {
     const attempt = orNull(() => solve(suspicious, suspiciousStart(model, from, usual.length)));
@@ -113,7 +116,7 @@ function tried({ model, solution }: AdjustedStation, suspicion: Suspicion): Cand
   const evidence = orNull(() =>
     logEvidenceOfFaults(attempt.weightedSquares, { estimate, covariance, usual }),
   );
-  return evidence === null ? null : { fault, subject, size: sizeOf(estimate), evidence };
+  return evidence === null ? null : { fault, subject, size: sizeOf(estimate), atLeast, evidence };
 }
 
 /** A wrong mark drags the solution far off; the start is free of it. */

@@ -1,6 +1,7 @@
 import type { SuspectedEntry } from '@/lib/compute/adjustment/suspicions';
+import type { ReadingKind } from './faces';
 import type { Fault } from './fault';
-import type { AdjustedStation } from './stationAdjustment';
+import { type AdjustedStation, marksOfKind } from './stationAdjustment';
 import { AXIS, EASTING, NORTHING } from './stationModel';
 
 /** A fault that enters the observations linearly: its size is estimated beside the station. */
@@ -11,6 +12,8 @@ export interface Suspicion {
   /** Usual size of each of its parts, one standard deviation, m, ratio or rad. */
   usual: number[];
   sizeOf: (estimate: readonly number[]) => number;
+  /** Only a part of the fault shows: it may be larger. */
+  atLeast?: boolean;
 }
 
 const ARCSECOND = Math.PI / 648_000;
@@ -81,25 +84,64 @@ function ofFaces({ readings }: AdjustedStation): Suspicion[] {
 /**
  * A mark that stands elsewhere than published, or a reflector or mark whose height is wrong: ∇ is the place that the
  * shots give minus the published one. The height of a target and a mark that settled look the same from one setup.
+ * Without a distance only what lies across the sight shows, without a direction only what lies along it.
  */
-function ofMarks({ model }: AdjustedStation): Suspicion[] {
+function ofMarks({ input, model, readings, erections }: AdjustedStation): Suspicion[] {
+  // The direction to one mark alone orients the circle, and says nothing of the mark.
+  const orient = marksOfKind('direction', readings, erections, input.control).length > 1;
   return model.marks.flatMap((name): Suspicion[] => {
+    const own = readings.flatMap(({ erection, kind }, row) =>
+      erections[erection].target === name ? { row, kind } : [],
+    );
+    const rowsOf = (kind: ReadingKind) =>
+      own.flatMap((reading) => (reading.kind === kind ? reading.row : []));
+    const directions = orient || input.occupied ? rowsOf('direction') : [];
+    const distances = rowsOf('distance');
     const first = model.markUnknown(name);
-    const rows = [first, first + 1, first + 2].map((unknown) => model.heldRow(unknown));
-    const entries = rows.flatMap((row, fault) => (row < 0 ? [] : { row, fault, coefficient: -1 }));
+    const held = (unknown: number, fault: number) => ({
+      row: model.heldRow(unknown),
+      fault,
+      coefficient: -1,
+    });
     const subject = [name];
-    const hasHeight = rows[2] >= 0;
-    const usual = [USUAL.moved, USUAL.moved, ...(hasHeight ? [USUAL.lifted] : [])];
-    const moved: Suspicion = { fault: 'targetMoved', subject, entries, usual, sizeOf: length };
-    if (!hasHeight) return [moved];
-    const height: Suspicion = {
-      fault: 'heightOfTargetOrMark',
-      subject,
-      entries: [{ row: rows[2], fault: 0, coefficient: -1 }],
-      usual: [USUAL.height],
-      sizeOf: single,
-    };
-    return [moved, height];
+    const plan: SuspectedEntry[] = [];
+    let parts = 1;
+    let sizeOf = length;
+    if (directions.length > 0 && distances.length > 0) {
+      plan.push(held(first, 0), held(first + 1, 1));
+      parts = 2;
+    } else {
+      const [east, north] = [model.start[first], model.start[first + 1]];
+      const away = Math.hypot(east - model.start[EASTING], north - model.start[NORTHING]);
+      plan.push(...directions.map((row) => ({ row, fault: 0, coefficient: 1 / away })));
+      plan.push(...distances.map((row) => ({ row, fault: 0, coefficient: 1 })));
+      // From the published place to the line of the sight, or to its distance: no nearer can the mark be.
+      sizeOf = ([miss]) =>
+        distances.length > 0 ? Math.abs(miss) : away * Math.sin(Math.min(Math.abs(miss) / away, Math.PI / 2));
+    }
+    const hasHeight = rowsOf('zenith').length > 0 && model.heldRow(first + 2) >= 0;
+    const lifted = (fault: number) => (hasHeight ? [held(first + 2, fault)] : []);
+    const suspicions: Suspicion[] = [];
+    if (plan.length > 0) {
+      suspicions.push({
+        fault: 'targetMoved',
+        subject,
+        entries: [...plan, ...lifted(parts)],
+        usual: [...Array<number>(parts).fill(USUAL.moved), ...(hasHeight ? [USUAL.lifted] : [])],
+        sizeOf,
+        atLeast: parts < 2,
+      });
+    }
+    if (hasHeight) {
+      suspicions.push({
+        fault: 'heightOfTargetOrMark',
+        subject,
+        entries: lifted(0),
+        usual: [USUAL.height],
+        sizeOf: single,
+      });
+    }
+    return suspicions;
   });
 }
 

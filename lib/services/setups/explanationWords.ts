@@ -60,14 +60,16 @@ export function wordsOfExplanation(explanation: Explanation, length: Lengths): E
         confirm: `Read the name that stands at ${mark} and shoot it again.`,
         act: `Check the names of ${mark} and ${other}: they look swapped.`,
       };
-    case 'targetMoved':
+    case 'targetMoved': {
+      const far = `${explanation.atLeast ? 'at least ' : ''}${fine(amount)}`;
       return {
         size: length.out(amount),
         unit: length.unit,
-        text: `${mark} stands ${fine(amount)} from where it was published: it was moved, or published wrongly.`,
+        text: `${mark} stands ${far} from where it was published: it was moved, or published wrongly, or another mark was shot.`,
         confirm: `Shoot ${mark} from another setup, or a mark beside it.`,
-        act: `Look at ${mark}: it stands ${fine(amount)} from where it was published.`,
+        act: `Look at ${mark}: it stands ${far} from where it was published.`,
       };
+    }
     case 'heightOfTargetOrMark': {
       const high = (size ?? 0) > 0;
       return {
