@@ -198,6 +198,51 @@ describe('snooping in a network', () => {
     expect(named.sort()).toEqual([`control ${wrong} elevation`, 'levelDifference L5'].sort());
   });
 
+  it('finds swapped targets and a distance off by a metre, which plain least squares would not converge with', () => {
+    for (const seed of [1, 2]) {
+      const clean = network(seed, 'weighted', {
+        setups: 40,
+        points: 160,
+        sightsOfPoint: 3,
+        levelled: 80,
+        controlEvery: 20,
+      });
+      const [one, other] = new Set(clean.setups[9].shots.map(({ target }) => target));
+      const far = clean.setups[20].shots[0].target;
+      const swapped = (shot: Shot): Shot =>
+        shot.target === one
+          ? { ...shot, target: other }
+          : shot.target === other
+            ? { ...shot, target: one }
+            : shot;
+      const input: NetworkInput = {
+        ...clean,
+        setups: clean.setups.map((setup, i) => ({
+          ...setup,
+          shots: setup.shots.map((shot) => {
+            if (i === 9) return swapped(shot);
+            const wrong = i === 20 && shot.target === far;
+            if (!wrong) return shot;
+            const slopeDistance = shot.distance!.slopeDistance + 1;
+            return { ...shot, distance: { ...shot.distance!, slopeDistance } };
+          }),
+        })),
+        snooping: true,
+      };
+      const { removed, observations, converged, test } = adjustNetwork(input);
+      expect(converged).toBe(true);
+      expect(test.sigma0).toBeLessThan(1.2);
+      const out = new Set(
+        removed.map(
+          ({ observation: i }) => `${observations[i].kind} ${observations[i].source} ${observations[i].to}`,
+        ),
+      );
+      expect(out).toContain(`distance ${clean.setups[20].id} ${far}`);
+      for (const target of [one, other]) expect(out).toContain(`direction ${clean.setups[9].id} ${target}`);
+      expect(out.size).toBeLessThan(14);
+    }
+  });
+
   it('removes nothing from clean networks more often than one test in a thousand would', () => {
     let [removed, tested] = [0, 0];
     for (let seed = 50; seed < 70; seed++) {

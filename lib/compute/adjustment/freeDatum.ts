@@ -16,7 +16,7 @@ export class PinnedModel {
   constructor(
     model: AdjustmentModel,
     private readonly datum: FreeDatum,
-    private readonly start: Float64Array,
+    start: Float64Array,
   ) {
     const diagonal = normalDiagonal(model, start);
     this.pins = pinsOf(datum.movements(start), diagonal);
@@ -48,7 +48,7 @@ export class PinnedModel {
     const gram = gramOf(movements, chosen);
     const sums = movements.map((g) => {
       let sum = 0;
-      for (const i of chosen) sum += g[i] * (x[i] + step[i] - this.start[i]);
+      for (const i of chosen) sum += g[i] * (x[i] + step[i] - this.datum.reference[i]);
       return sum;
     });
     const amounts = solveSmall(gram, sums);

@@ -31,12 +31,14 @@ export interface AdjustmentModel {
 
 /**
  * A free datum: among all solutions, which differ by movements that no row sees, the one in which the corrections of
- * the chosen unknowns to their start values have the least sum of squares.
+ * the chosen unknowns to their reference values have the least sum of squares.
  */
 export interface FreeDatum {
   /** The movements at x, independent of each other: how much each unknown moves (`unknowns` long). */
   movements(x: Float64Array): Float64Array[];
   readonly chosen: Int32Array;
+  /** What corrections count from (`unknowns` long). */
+  readonly reference: Float64Array;
 }
 
 /** The solution does not exist: some unknown is not determined by the observations. */

@@ -4,6 +4,7 @@ import { movableUnknowns } from '@/lib/compute/adjustment/movable';
 import { type Removal, snoop } from '@/lib/compute/adjustment/snooping';
 import { type Solution, solve } from '@/lib/compute/adjustment/solve';
 import { unseenMovements } from './networkDatum';
+import { acquitted, grossSuspects, isObserved, judgedByOthers, robustStart } from './networkGross';
 import type { NetworkInput } from './networkInput';
 import { type NetworkModel, networkModel } from './networkModel';
 import { setupReadings } from './networkReadings';
@@ -40,39 +41,102 @@ export function solveNetwork(input: NetworkInput): AdjustedNetwork {
   const start = networkStart(input, readings);
   if (start.plan.size === 0 && start.heights.size === 0) throw new NetworkError('no_datum');
   const bare = networkModel(input, readings, start);
-  if (!bare.observations.some(isObserved)) {
+  if (!bare.observations.some(({ name }) => isObserved(name))) {
     throw new NetworkError('no_observations', [], sourcesOf(input));
   }
   const { names, datum } = unseenMovements(bare);
   if (datum && datum.chosen.length === 0) throw new NetworkError('no_datum');
   const placed: NetworkModel = datum ? { ...bare, datum } : bare;
 
-  let solution = solveOrName(placed, placed.start);
-  let cofactors = new Cofactors(solution);
   if (!input.snooping) {
-    return { model: placed, solution, cofactors, free: names, removals: [], ended: null };
+    const solution = solveOrName(placed, placed.start);
+    return {
+      model: placed,
+      solution,
+      cofactors: new Cofactors(solution),
+      free: names,
+      removals: [],
+      ended: null,
+    };
   }
-  const most = Math.max(1, Math.floor(MOST_REMOVED * bare.observations.filter(isObserved).length));
-  const removals: Removal[] = [];
   const weights = placed.weights.slice();
+  const leave = (removed: readonly Removal[]) => {
+    for (const { rows } of removed) for (const row of rows) weights[row] = 0;
+  };
+  const again = (from: Float64Array) => solveOrName({ ...placed, weights: weights.slice() }, from);
+  const begun = solveWithoutGross(placed);
+  let { solution } = begun;
+  const removals: Removal[] = begun.removals;
+  leave(removals);
+  let cofactors = new Cofactors(solution);
+  const most = Math.max(
+    1,
+    Math.floor(MOST_REMOVED * bare.observations.filter(({ name }) => isObserved(name)).length),
+  );
   let ended: NetworkResult['snoopingEnded'] = 'clean';
   for (let pass = 0; pass < MOST_PASSES; pass++) {
-    const found = snoop(solution, cofactors, bare.suspects, most - removals.length);
+    const found = snoop(solution, cofactors, bare.suspects, Math.max(0, most - removals.length));
     ended = found.ended;
     if (found.removals.length === 0) break;
     removals.push(...found.removals);
-    for (const { rows } of found.removals) for (const row of rows) weights[row] = 0;
-    solution = solveOrName({ ...placed, weights: weights.slice() }, solution.unknowns);
+    leave(found.removals);
+    solution = again(solution.unknowns);
     cofactors = new Cofactors(solution);
     if (ended === 'too_many') break;
   }
   return { model: placed, solution, cofactors, free: names, removals, ended };
 }
 
-const OTHER_KINDS = new Set(['levelDifference', 'position', 'baseline']);
+/** σ₀ from which single observations are looked for that least squares would spread over all others. */
+const GROSSLY_LARGE = 3;
 
-const isObserved = ({ name: { kind, shots } }: NetworkModel['observations'][number]) =>
-  shots.length > 0 || OTHER_KINDS.has(kind);
+interface Begun {
+  solution: Solution;
+  removals: Removal[];
+}
+
+/**
+ * The solution to begin snooping from: of all observations, or, where they contradict each other too grossly for that, of
+ * those that a robust start leaves. What the others then do not contradict comes back.
+ */
+function solveWithoutGross(model: NetworkModel): Begun {
+  let plain: Begun;
+  try {
+    plain = { solution: solveOrName(model, model.start), removals: [] };
+  } catch (error) {
+    if (!(error instanceof NetworkError) || error.code !== 'contradiction') throw error;
+    const robust = solveRobustly(model);
+    if (!robust) throw error;
+    return robust;
+  }
+  const { weightedSquares, degreesOfFreedom } = plain.solution;
+  if (!(weightedSquares > GROSSLY_LARGE ** 2 * degreesOfFreedom)) return plain;
+  return solveRobustly(model) ?? plain;
+}
+
+/** Null where nothing stands out, or what does is all that determines something. */
+function solveRobustly(model: NetworkModel): Begun | null {
+  const start = robustStart(model);
+  let gross = grossSuspects(model, start);
+  if (gross.length === 0) return null;
+  const without = (suspects: readonly number[]) => {
+    const weights = model.weights.slice();
+    for (const suspect of suspects) for (const row of model.suspects[suspect].rows) weights[row] = 0;
+    return solveOrName({ ...model, weights }, start);
+  };
+  try {
+    let solution = without(gross);
+    const free = new Set(acquitted(judgedByOthers(model, solution, gross)).map(({ suspect }) => suspect));
+    if (free.size > 0) {
+      gross = gross.filter((suspect) => !free.has(suspect));
+      solution = without(gross);
+    }
+    return { solution, removals: judgedByOthers(model, solution, gross) };
+  } catch (error) {
+    if (error instanceof NetworkError) return null;
+    throw error;
+  }
+}
 
 function sourcesOf(input: NetworkInput): string[] {
   return [...input.setups, ...input.levelDifferences, ...input.positions, ...input.baselines].map(

@@ -33,6 +33,7 @@ export function unseenMovements(model: NetworkModel): UnseenMovements {
         ? null
         : {
             chosen,
+            reference: model.start,
             movements: (x) => {
               const all = wholeMovements(model.places.names, x);
               return amounts.map((own) => {

@@ -75,7 +75,10 @@ export interface NetworkObservation {
 export interface RemovedObservation {
   /** Index in `observations`; all coordinates of a position or baseline leave together, the worst is named. */
   observation: number;
-  /** Standardised residual that it was removed for; the largest of all at that moment. */
+  /**
+   * Standardised residual that it was removed for, the largest of all at that moment; of one that was grossly wrong, as
+   * it lies beside the fit of the others.
+   */
   standardised: number;
   redundancy: number;
   /** Estimate of its error from the others, with its standard deviation; in its own unit. */
