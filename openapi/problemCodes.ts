@@ -388,6 +388,12 @@ export const ITEM_PROBLEMS = {
     'In a resection every shot names its control point.',
     'Name the target.',
   ),
+  target_named: problem(
+    422,
+    'A target is named in a setup by identify',
+    'There the hub finds which control point each shot hit; a name would be a resection’s. Check shots name theirs.',
+    'Send the target as null, or method as resection with every target named.',
+  ),
   prism_state_required: problem(
     422,
     'The prism constants are missing',
@@ -588,8 +594,8 @@ export const ITEM_PROBLEMS = {
   ),
   reading_incomplete: problem(
     422,
-    'A check shot that cannot give a position',
-    'A check needs horizontal, zenith and slopeDistance to a mark.',
+    'A shot that cannot give a position',
+    'A check, and a mark that is to be identified, needs horizontal, zenith and slopeDistance.',
     'Send all three readings.',
   ),
   setup_not_computable: problem(
@@ -598,11 +604,17 @@ export const ITEM_PROBLEMS = {
     'The shots do not determine a station: two marks with distances, three with directions, or a mixture of them are the least.',
     'Shoot more marks, with directions and distances.',
   ),
-  method_not_supported: problem(
+  not_identified: problem(
     422,
-    'This method is not computed yet',
-    'The bytes are kept.',
-    'Send it as a resection with named targets.',
+    'No control was found behind the shots',
+    'No control points lie to each other as the reflectors do, within what is stated of instrument and control.',
+    'Check prism constant, units and target heights; or name the targets and send a resection.',
+  ),
+  identification_limit: problem(
+    422,
+    'Too much to be identified at once',
+    'At most 10 setups of an upload are identified, each among at most 10,000 control points.',
+    'Send the others in an upload of their own.',
   ),
   kind_not_supported: problem(
     422,

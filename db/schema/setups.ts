@@ -153,7 +153,10 @@ export const observations = pgTable(
     projectId: uuid('project_id').notNull(),
     checkId: uuid('check_id'),
     seq: integer('seq').notNull(),
-    target: text('target').notNull(),
+    /** As it was named or, where `identified`, found; null for a stray. */
+    target: text('target'),
+    /** It was sent without a name, to be identified. */
+    identified: boolean('identified').notNull(),
     purpose: text('purpose').$type<'orient' | 'check' | 'closing'>().notNull(),
     face: text('face').$type<'left' | 'right'>().notNull(),
     set: integer('set').notNull(),

@@ -1,4 +1,5 @@
 import * as z from 'zod';
+import { Identification } from './identification';
 import { Id, Moment, Name, Note, page, Sha256, Text, Verdict } from './primitives';
 import {
   Backsight,
@@ -61,10 +62,11 @@ export const SetupTarget = z
     used: z.boolean(),
     shots: z.array(z.string()).meta({ description: 'clientIds of its shots: what a refit leaves out.' }),
     purpose: z.enum(['orient', 'check', 'closing']),
-    status: z.enum(['trusted', 'suspect', 'quarantined']),
+    status: z.enum(['trusted', 'suspect', 'quarantined']).nullable(),
     published: z
       .object({ easting: figure, northing: figure, elevation: maybe })
-      .meta({ description: 'Control as it was used.' }),
+      .nullable()
+      .meta({ description: 'Control as it was used; null for a stray, which hit none.' }),
     residual: z.object({ easting: maybe, northing: maybe, elevation: maybe }).meta({
       description: 'Polar position from the fitted station minus published control.',
     }),
@@ -214,7 +216,9 @@ export const Setup = z
     targets: z.array(SetupTarget),
     checks: z.array(SetupCheck),
     explanations: z.array(Explanation),
-    identification: z.object({ ambiguous: z.boolean(), margin: maybe }).nullable(),
+    identification: Identification.nullable().meta({
+      description: 'Null where the shots named their targets.',
+    }),
     release: Release.nullable().meta({ description: 'The last one given.' }),
     validUntil: Moment.nullable().meta({ description: 'When the longest of its releases runs out.' }),
     supersedes: Id.nullable(),

@@ -309,12 +309,6 @@ describe('bad input', () => {
       ['/toleranceClass tolerance_class_unknown'],
     ],
     [
-      'a method that is not computed',
-      (s) => Object.assign(s, { method: 'identify' }),
-      undefined,
-      ['/method method_not_supported'],
-    ],
-    [
       'an occupied mark in a resection',
       (s) => Object.assign(s, { stationPoint: 'HT-5' }),
       undefined,

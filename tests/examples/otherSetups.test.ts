@@ -5,7 +5,7 @@ import type { Setup } from '@/openapi/schemas/setup';
 import { api } from '@/tests/setup/api';
 import { newOrganization } from '@/tests/setup/organization';
 import { DATA_FOLDER } from './generator/files';
-import { ANGLES_ONLY, OVER_MARK } from './generator/setups';
+import { ANGLES_ONLY, OVER_MARK, UNNAMED } from './generator/setups';
 
 /** The setups of examples/data that no walk posts: other ways to set up on the same site. */
 const setups = new Map<string, z.output<typeof Setup>>();
@@ -25,7 +25,7 @@ beforeAll(async () => {
   const site = `/projects/${project.body.id}`;
   await post(`${site}/control-points`, data('control')).expect(201);
   await post(`${site}/instruments`, data('instrument')).expect(201);
-  for (const name of ['setup-backsight', 'setup-angles-only']) {
+  for (const name of ['setup-backsight', 'setup-angles-only', 'setup-identify']) {
     const { body } = await post(`${site}/uploads`, data(name)).expect(201);
     expect(body.refused).toEqual([]);
     setups.set(name, body.setups[0]);
@@ -68,5 +68,25 @@ describe('the setup by directions alone', () => {
     expect(Math.abs(orientation! - ANGLES_ONLY.orientation) * 3600).toBeLessThan(20);
     for (const { observations } of targets)
       expect(observations.map(({ kind }) => kind)).toEqual(['direction', 'zenith']);
+  });
+});
+
+describe('the setup without names', () => {
+  it('finds the five posts, the station where the simulation put it, and one reflector that is none of them', () => {
+    const { verdict, position, orientation, targets, identification } = setups.get('setup-identify')!;
+    expect(verdict).toBe('pass');
+    expect(identification).toMatchObject({ ambiguous: false, reflectors: 6, matched: 5 });
+    expect(targets.map(({ target }) => target)).toEqual([
+      'HT-101',
+      'HT-102',
+      'HT-103',
+      'HT-105',
+      'HT-106',
+      null,
+    ]);
+    expect(targets.at(-1)).toMatchObject({ used: false, shots: ['st-6/4', 'st-6/9'] });
+    expect(Math.abs(position.easting - UNNAMED.axis.easting)).toBeLessThan(0.02);
+    expect(Math.abs(position.northing - UNNAMED.axis.northing)).toBeLessThan(0.02);
+    expect(Math.abs(orientation! - UNNAMED.orientation) * 3600).toBeLessThan(20);
   });
 });

@@ -7,6 +7,7 @@ import { explanations } from './content/explanations';
 import { faces } from './content/faces';
 import { freeStation } from './content/freeStation';
 import { gradeCheck } from './content/gradeCheck';
+import { identification } from './content/identification';
 import { leaveOneOut } from './content/leaveOneOut';
 import { levelRun } from './content/levelRun';
 import { lots } from './content/lots';
@@ -30,6 +31,7 @@ export const METHODS: readonly Method[] = [
   collimation,
   freeStation,
   partialResection,
+  identification,
   backsight,
   statistics,
   leaveOneOut,

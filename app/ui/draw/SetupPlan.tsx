@@ -3,7 +3,7 @@ import { COORDINATE, fixed, signed, unitSign } from '@/app/ui/numbers';
 import type { Setup } from '@/openapi/schemas/setup';
 import { Grid, LABEL, NorthArrow, roundLength, ScaleBar } from './PlanParts';
 import { SetupMark } from './SetupMark';
-import { type Layout, layoutOf } from './setupLayout';
+import { isMarked, type Layout, layoutOf } from './setupLayout';
 
 type Shown = z.output<typeof Setup>;
 
@@ -101,10 +101,12 @@ function caption({ station, magnified }: Layout, unit: string): string {
 /** The drawing in words, for whoever does not see it. */
 function describe({ station, targets, errorEllipse, units }: Shown): string {
   const unit = unitSign(units.length);
-  const marks = targets.map(({ target, residual: { northing, easting } }) =>
-    northing === null || easting === null
-      ? `${target}`
-      : `${target} east ${signed(easting, COORDINATE)}, north ${signed(northing, COORDINATE)} ${unit}`,
-  );
+  const marks = targets
+    .filter(isMarked)
+    .map(({ target, residual: { northing, easting } }) =>
+      northing === null || easting === null
+        ? `${target}`
+        : `${target} east ${signed(easting, COORDINATE)}, north ${signed(northing, COORDINATE)} ${unit}`,
+    );
   return `Plan of ${station}. 95 % ellipse ${fixed(errorEllipse.semiMajor, COORDINATE)} by ${fixed(errorEllipse.semiMinor, COORDINATE)} ${unit}. Residuals: ${marks.join('; ')}.`;
 }

@@ -7,6 +7,12 @@ import { fitView, roundStep, type View } from './scale';
 
 type Shown = z.output<typeof Setup>;
 export type Target = Shown['targets'][number];
+type Marked = Target & { published: NonNullable<Target['published']> };
+
+/** A stray stands on no control point: it has no place in the plan. */
+export function isMarked(target: Target): target is Marked {
+  return target.published !== null;
+}
 
 /** The longest residual arrow or half axis, in pixels. */
 const LONGEST = 46;
@@ -38,7 +44,8 @@ export interface Layout {
 
 /** Where everything in the plan of a setup stands, so that no word lies on a line or on another word. */
 export function layoutOf(setup: Shown, size: Size, edge: { x: number; y: number }): Layout {
-  const { position, errorEllipse, targets, station: name } = setup;
+  const { position, errorEllipse, station: name } = setup;
+  const targets = setup.targets.filter(isMarked);
   const { converged } = setup.fit;
   const published = targets.map((target) => target.published);
   const view = fitView(converged ? [position, ...published] : published, size.width, size.height, edge);

@@ -1,3 +1,4 @@
+import { wrapTurn } from '@/lib/compute/units/angles';
 import { ControlIndex, type SamePlace } from './identifyControl';
 import { type Weighed, weigh } from './identifyEvidence';
 import { misfit, type Pose, placeAt, planVariance, roughPose, STRAY } from './identifyPose';
@@ -46,6 +47,8 @@ export interface Identification {
   samePlace: SamePlace[];
   /** The one shot by name that would tell the assignments apart. */
   deciding: DecidingShot | null;
+  /** Marks whose later shots by name fit another assignment and not the best one. */
+  contradictedBy: string[];
 }
 
 /** Why no assignment was found. */
@@ -60,10 +63,10 @@ export class IdentificationError extends Error {
 }
 
 /** Odds of 1000 to 1: less is not sure. */
-const SURE = Math.log(1000);
+export const SURE = Math.log(1000);
 /** One reflector in so many may be a stray without anybody having to wonder. */
-const STRAYS_ONE_IN = 4;
-const FEWEST = 3;
+export const STRAYS_ONE_IN = 4;
+export const FEWEST = 3;
 const MOST_LISTED = 5;
 
 /**
@@ -122,6 +125,7 @@ export function identify(
     samePlace: index.samePlace.filter(({ target }) =>
       [...used].some((mark) => mark !== STRAY && index.marks[mark].name === target),
     ),
+    contradictedBy: [],
     deciding: decidingShot(
       index,
       reflectors,
@@ -151,7 +155,12 @@ function assignment(
 ): Assignment {
   const { east, north, up, orientation } = pose;
   return {
-    station: { easting: east, northing: north, axis: Number.isNaN(up) ? null : up, orientation },
+    station: {
+      easting: east,
+      northing: north,
+      axis: Number.isNaN(up) ? null : up,
+      orientation: wrapTurn(orientation),
+    },
     marks: Array.from(marks, (mark) => (mark === STRAY ? null : index.marks[mark].name)),
     matched,
     weightedSquares,

@@ -41,8 +41,15 @@ export class ControlIndex {
     const all: ControlMark[] = [];
     for (const mark of control) if (mark.status !== 'quarantined') all.push(mark);
     const count = all.length;
-    const [west, right] = reach(all, 'easting');
-    const [south, top] = reach(all, 'northing');
+    // Each field is read once: going through the objects again and again takes longer than all the rest.
+    const east = new Float64Array(count);
+    const north = new Float64Array(count);
+    for (let i = 0; i < count; i++) {
+      east[i] = all[i].easting;
+      north[i] = all[i].northing;
+    }
+    const [west, right] = reach(east);
+    const [south, top] = reach(north);
     const [width, depth] = [Math.max(right - west, 1), Math.max(top - south, 1)];
     this.cell = Math.sqrt((width * depth) / (CELLS_PER_POINT * Math.max(count, 1)));
     this.columns = Math.ceil(width / this.cell);
@@ -50,22 +57,21 @@ export class ControlIndex {
     this.west = west;
     this.south = south;
     this.cellStart = new Int32Array(this.rows * this.columns + 1);
-    this.marks = this.sorted(all);
-    this.east = new Float64Array(count);
-    this.north = new Float64Array(count);
+    const order = this.sorted(all, east, north);
+    this.marks = Array.from(order, (i) => all[i]);
+    this.east = permuted(east, order);
+    this.north = permuted(north, order);
     this.up = new Float64Array(count);
     this.horizontal = new Float64Array(count);
     this.vertical = new Float64Array(count);
     let [worstHorizontal, worstVertical] = [0, 0];
     for (let i = 0; i < count; i++) {
-      const mark = this.marks[i];
-      this.east[i] = mark.easting;
-      this.north[i] = mark.northing;
-      this.up[i] = mark.elevation ?? Number.NaN;
-      this.horizontal[i] = mark.horizontalSigma;
-      this.vertical[i] = mark.verticalSigma;
-      worstHorizontal = Math.max(worstHorizontal, mark.horizontalSigma);
-      worstVertical = Math.max(worstVertical, mark.verticalSigma);
+      const { elevation, horizontalSigma, verticalSigma } = this.marks[i];
+      this.up[i] = elevation ?? Number.NaN;
+      this.horizontal[i] = horizontalSigma;
+      this.vertical[i] = verticalSigma;
+      if (horizontalSigma > worstHorizontal) worstHorizontal = horizontalSigma;
+      if (verticalSigma > worstVertical) worstVertical = verticalSigma;
     }
     this.worstHorizontal = worstHorizontal;
     this.worstVertical = worstVertical;
@@ -137,24 +143,31 @@ export class ControlIndex {
     return Math.min(this.rows - 1, Math.max(0, Math.floor((north - this.south) / this.cell)));
   }
 
-  /** Marks cell by cell, within a cell by their place: in whatever order they came, the search goes through them in one. */
-  private sorted(all: readonly ControlMark[]): ControlMark[] {
-    const { cellStart } = this;
-    const cells = new Int32Array(all.length);
-    all.forEach(({ easting, northing }, i) => {
-      cells[i] = this.row(northing) * this.columns + this.column(easting);
+  /** Marks cell by cell, within a cell by their place: in whatever order they came, the search takes them in one. */
+  private sorted(all: readonly ControlMark[], east: Float64Array, north: Float64Array): Int32Array {
+    const { cellStart, columns } = this;
+    const count = all.length;
+    const cells = new Int32Array(count);
+    for (let i = 0; i < count; i++) {
+      cells[i] = this.row(north[i]) * columns + this.column(east[i]);
       cellStart[cells[i] + 1]++;
-    });
+    }
     for (let cell = 1; cell < cellStart.length; cell++) cellStart[cell] += cellStart[cell - 1];
+    const before = (a: number, b: number) =>
+      north[a] !== north[b]
+        ? north[a] < north[b]
+        : east[a] !== east[b]
+          ? east[a] < east[b]
+          : all[a].name < all[b].name;
     const next = cellStart.slice();
-    const marks = new Array<ControlMark>(all.length);
-    all.forEach((mark, i) => {
+    const order = new Int32Array(count);
+    for (let i = 0; i < count; i++) {
       // Put in among the few of its cell.
       let at = next[cells[i]]++;
-      for (; at > cellStart[cells[i]] && byPlace(mark, marks[at - 1]) < 0; at--) marks[at] = marks[at - 1];
-      marks[at] = mark;
-    });
-    return marks;
+      for (; at > cellStart[cells[i]] && before(i, order[at - 1]); at--) order[at] = order[at - 1];
+      order[at] = i;
+    }
+    return order;
   }
 
   /** Takes marks that another one stands for out of every search: they are nowhere. */
@@ -193,17 +206,17 @@ export class ControlIndex {
   }
 }
 
-/** Where points begin and end, but for the outermost ones. */
-function reach(marks: readonly ControlMark[], axis: 'easting' | 'northing'): [number, number] {
-  const sorted = new Float64Array(marks.length);
-  for (let i = 0; i < sorted.length; i++) sorted[i] = marks[i][axis];
-  sorted.sort();
+/** Where values begin and end, but for the outermost ones. */
+function reach(values: Float64Array): [number, number] {
+  const sorted = values.slice().sort();
   const beyond = Math.floor(BEYOND * sorted.length);
   return [sorted[beyond] ?? 0, sorted[sorted.length - 1 - beyond] ?? 0];
 }
 
-function byPlace(a: ControlMark, b: ControlMark): number {
-  return a.northing - b.northing || a.easting - b.easting || compare(a.name, b.name);
+function permuted(values: Float64Array, order: Int32Array): Float64Array {
+  const result = new Float64Array(values.length);
+  for (let i = 0; i < result.length; i++) result[i] = values[order[i]];
+  return result;
 }
 
 function byPreference(a: ControlMark, b: ControlMark): number {

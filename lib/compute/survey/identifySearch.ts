@@ -6,7 +6,7 @@ import type { Place } from './identifyReflectors';
 /** A place farther from its mark than this (χ² of three) is not on it: five good places of a million are lost. */
 export const ON_MARK = chiSquareQuantile(1 - 5e-6, 3);
 /** The same of one axis alone. */
-const REACH = Math.sqrt(ON_MARK);
+export const REACH = Math.sqrt(ON_MARK);
 /** Of more reflectors, pairs are tried of so many: each still finds its mark in the end. */
 const MOST_PAIRED = 24;
 /** So many assignments that fit alike are enough to know that the layout repeats itself. */

@@ -2,6 +2,7 @@ import { wrapTurn } from '@/lib/compute/units/angles';
 import type { ControlIndex } from './identifyControl';
 import type { Pose } from './identifyPose';
 import type { Place } from './identifyReflectors';
+import { REACH } from './identifySearch';
 import { rayTo } from './ray';
 import type { Surroundings } from './surroundings';
 
@@ -57,6 +58,9 @@ export function decidingShot(
   });
   if (chosen === null) return null;
   const { mark, apart } = chosen as { mark: number; apart: number };
+  // The same stand with other names: no reading tells them apart.
+  const coarsest = places.reduce((worst, { along, across }) => Math.max(worst, along, across), 0);
+  if (apart <= REACH * coarsest) return null;
   return {
     target: index.marks[mark].name,
     apart,

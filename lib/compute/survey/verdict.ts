@@ -4,6 +4,7 @@ import type { CheckDifference, Tolerance } from './checkShots';
 import { isNear } from './dangerCircle';
 import { markToBlame } from './explain';
 import type { ReadingKind } from './faces';
+import type { DecidingShot } from './identifySettling';
 import type { Place } from './loci';
 import type { FittedMark, StationFit } from './stationFit';
 import type { WorkAccuracy } from './workAccuracy';
@@ -34,6 +35,17 @@ export type SetupReason =
   | { code: 'occupied_unproven'; target: string }
   | { code: 'occupied_suspect'; target: string }
   | { code: 'two_stations'; stations: Place[] }
+  | {
+      code: 'identification_ambiguous';
+      /** Of the assignment that was taken, then of the others. */
+      stations: Place[];
+      /** Marks too near each other to be told apart, where that is all. */
+      confused: [string, string][];
+      more: boolean;
+      margin: number;
+      deciding: DecidingShot | null;
+      contradictedBy: string[];
+    }
   | { code: 'near_danger_circle'; marks: string[]; value: number; radius: number; semiMajor: number }
   | { code: 'spread_too_large'; value: number; limit: number }
   | { code: 'accuracy_short'; axis: Axis; value: number; limit: number; radius: number }

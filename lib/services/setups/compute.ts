@@ -1,4 +1,6 @@
 import { type CheckDifference, checkDifferences } from '@/lib/compute/survey/checkShots';
+import type { Identification } from '@/lib/compute/survey/identify';
+import { identificationAfter, judgeIdentification } from '@/lib/compute/survey/identifyVerdict';
 import type { InstrumentAccuracy } from '@/lib/compute/survey/instrument';
 import type { ControlMark, Shot } from '@/lib/compute/survey/shots';
 import type { Occupied } from '@/lib/compute/survey/stationAdjustment';
@@ -6,6 +8,7 @@ import { fitStation, type StationFit } from '@/lib/compute/survey/stationFit';
 import type { Surroundings } from '@/lib/compute/survey/surroundings';
 import { judgeSetup, type SetupLimits } from '@/lib/compute/survey/verdict';
 import { accuracyAtWork } from '@/lib/compute/survey/workAccuracy';
+import { notesOfIdentification } from './identification';
 import { type Air, type CheckResult, fitOf, keepMark, type SetupNote, type SetupResult } from './result';
 
 export interface SetupTask {
@@ -22,6 +25,8 @@ export interface SetupTask {
   /** The mark under the instrument, of a setup by backsights. */
   occupied?: Occupied | null;
   limits: SetupLimits;
+  /** How the targets were found, where the shots did not name them. */
+  identification?: Identification | null;
   /** What the caller knows and the figures do not show. */
   notes: readonly SetupNote[];
 }
@@ -64,9 +69,11 @@ export function computeSetup(task: SetupTask): ComputedSetup {
   const laterChecks = later.map((shots) => compare(fit, shots, task));
   const differences = latestOf([...checks.map(({ targets }) => targets), ...laterChecks]);
   const unused = quarantinedIn([...task.shots, ...later.flat()], control);
+  const { identification = null } = task;
+  const found = identification ? notesOfIdentification(identification) : [];
   const result: SetupResult = {
-    ...judgeSetup(fit, limits, differences, work),
-    notes: [...task.notes, ...notesOf(fit, unused, differences, limits)],
+    ...judgeIdentification(judgeSetup(fit, limits, differences, work), identification),
+    notes: [...task.notes, ...found, ...notesOf(fit, unused, differences, limits)],
     station: { ...fit.station, covariance: Array.from(fit.station.covariance) },
     heightDetermined: fit.heightDetermined,
     orientationDetermined: fit.orientationDetermined,
@@ -74,6 +81,7 @@ export function computeSetup(task: SetupTask): ComputedSetup {
     backsights: fit.backsights,
     danger: fit.danger,
     others: fit.others,
+    identification,
     unusedDistances: fit.unusedDistances,
     directionSets: fit.directionSets,
     converged: fit.converged,
@@ -116,7 +124,11 @@ export function judgeWithCheck(
 ): { result: SetupResult; check: CheckResult } {
   const fit = fitOf(result);
   const targets = compare(fit, shots, { ...result, control });
-  const judged = judgeSetup(fit, result.limits, latestOf([...earlier, targets, ...later]), result.work);
+  const identification = identificationAfter(result.identification, shots, targets, result);
+  const judged = judgeIdentification(
+    judgeSetup(fit, result.limits, latestOf([...earlier, targets, ...later]), result.work),
+    identification,
+  );
   const noted = result.notes.flatMap((note) => (note.code === 'mark_quarantined' ? note.target : []));
   const unused = quarantinedIn(shots, control).filter((target) => !noted.includes(target));
   const notes = [
@@ -124,7 +136,7 @@ export function judgeWithCheck(
     ...unused.map((target): SetupNote => ({ code: 'mark_quarantined', target })),
   ];
   return {
-    result: { ...result, ...judged, notes },
+    result: { ...result, ...judged, identification, notes },
     check: { targets, tolerance: result.limits.residual, verdict: judged.verdict },
   };
 }

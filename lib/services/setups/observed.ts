@@ -10,11 +10,14 @@ export interface LaterCheck {
   shots: Shot[];
 }
 
+/** A shot as it was sent: without a name where its target was to be identified. */
+export type ObservedShot = Omit<Shot, 'target'> & { target: string | null };
+
 /** The shots of a setup and, oldest first, the checks that came later, whichever of its refits they came to. */
 export async function loadObserved(
   { db }: Tenant,
   { organizationId, rootId }: Pick<SetupRow, 'organizationId' | 'rootId'>,
-): Promise<{ shots: Shot[]; later: LaterCheck[] }> {
+): Promise<{ shots: ObservedShot[]; later: LaterCheck[] }> {
   const rows = await db
     .select()
     .from(observations)
@@ -32,14 +35,18 @@ export async function loadObserved(
   const shotsOf = (checkId: string | null) => rows.filter((row) => row.checkId === checkId).map(asShot);
   return {
     shots: shotsOf(null),
-    later: (checks as CheckRow[]).map((check) => ({ check, shots: shotsOf(check.id) })),
+    later: (checks as CheckRow[]).map((check) => ({ check, shots: shotsOf(check.id).filter(isNamed) })),
   };
 }
 
-function asShot(row: InferSelectModel<typeof observations>): Shot {
+export function isNamed(shot: ObservedShot): shot is Shot {
+  return shot.target !== null;
+}
+
+function asShot(row: InferSelectModel<typeof observations>): ObservedShot {
   return {
     id: row.clientId,
-    target: row.target,
+    target: row.identified ? null : row.target,
     purpose: row.purpose,
     face: row.face,
     set: row.set,

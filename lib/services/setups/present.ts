@@ -21,6 +21,7 @@ import {
   presentOccupied,
   presentReductions,
 } from './presentDetail';
+import { presentIdentification, straysAsTargets } from './presentIdentification';
 import type { KeptMark, SetupResult } from './result';
 import { RELEASE_CAUTIONS, radioOfSetup, wordsOfNote, wordsOfReasons } from './words';
 
@@ -128,11 +129,19 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
     targets: [
       ...result.marks.map((mark) => presentMark(mark, length)),
       ...result.leftOut.map((mark) => presentLeftOut(mark, length)),
+      ...(result.identification ? straysAsTargets(result.identification) : []),
       ...presentedChecks.filter((check) => check.clientId === null).flatMap(targetsOfCheck),
     ],
     checks: presentedChecks,
     explanations: result.explanations.map((explanation) => presentExplanation(explanation, length)),
-    identification: null,
+    identification:
+      result.identification &&
+      presentIdentification(
+        result.identification,
+        setup.instrumentHeight,
+        result.surroundings.combinedFactor,
+        length,
+      ),
     release: release && presentRelease(release, length),
     validUntil: asMomentOrNull(setup.validUntil),
     supersedes: setup.supersedesId,

@@ -3,7 +3,9 @@ import { bulkInsert } from '@/db/bulk';
 import { setupChecks, setupResults, setups, toleranceClasses } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
 import type { CheckDifference } from '@/lib/compute/survey/checkShots';
-import type { ControlMark } from '@/lib/compute/survey/shots';
+import { IdentificationError } from '@/lib/compute/survey/identify';
+import { ControlIndex } from '@/lib/compute/survey/identifyControl';
+import type { ControlMark, Shot } from '@/lib/compute/survey/shots';
 import { StationError } from '@/lib/compute/survey/stationAdjustment';
 import { invalid, invalidItems, Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
@@ -15,11 +17,12 @@ import { record } from '@/lib/services/record';
 import type { JsonOf, ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/setups';
 import { problemItem } from '@/openapi/problemItem';
-import { computeSetup, isAgreed } from './compute';
+import { computeSetup, isAgreed, type SetupTask } from './compute';
+import { identifyTargets, wordsOfNoIdentification } from './identification';
 import { type CheckRow, type LoadedSetup, loadSetup, type SetupRow } from './load';
-import { type LaterCheck, loadObserved } from './observed';
+import { isNamed, type LaterCheck, loadObserved, type ObservedShot } from './observed';
 import { presentSetup } from './present';
-import { METHOD, METHOD_OVER_MARK, METHOD_VERSION } from './result';
+import { METHOD_VERSION, methodOf } from './result';
 
 type Refit = typeof contract.refitSetup;
 
@@ -58,14 +61,15 @@ export async function refitSetup(
   ];
   const kept = shots.filter((shot) => !excluded.some((out) => out.shot === shot.id));
   const { result: earlier } = before.result;
-  const shot = [...shots, ...later.flatMap((one) => one.shots)].map(({ target }) => target);
+  const shot = [...shots, ...later.flatMap((one) => one.shots)].flatMap(({ target }) => target ?? []);
   const names = [...new Set([...shot, ...(earlier.occupied ? [earlier.occupied.name] : [])])];
-  const marks = await currentControl(tenant, organizationId, project.id, byNames(names));
+  const among = earlier.identification ? undefined : byNames(names);
+  const marks = await currentControl(tenant, organizationId, project.id, among);
   const control = new Map(marks.map((row) => [row.point.name, asMark(row)]));
   let computed: ReturnType<typeof computeSetup>;
   try {
     computed = computeSetup({
-      shots: kept,
+      ...withTargets(kept, later, control, earlier),
       later: later.map((one) => one.shots),
       control,
       occupied: earlier.occupied && {
@@ -80,6 +84,9 @@ export async function refitSetup(
       notes: earlier.notes.filter(({ code }) => ASSUMED.has(code)),
     });
   } catch (error) {
+    if (error instanceof IdentificationError) {
+      throw invalid('/exclude', 'not_identified', wordsOfNoIdentification(error).detail);
+    }
     if (!(error instanceof StationError)) throw error;
     throw invalid('/exclude', 'setup_not_computable', 'What is left does not determine a station.');
   }
@@ -96,6 +103,33 @@ export async function refitSetup(
     },
   });
   return presentSetup(made, new Lengths(query.length ?? project.lengthUnit), runtime.now());
+}
+
+/**
+ * The shots that are left with their targets. Those of a setup by `identify` are identified anew, among the control as
+ * it is now; every check by name since then decides with them.
+ *
+ * @throws IdentificationError where nothing fits any more
+ */
+function withTargets(
+  kept: readonly ObservedShot[],
+  later: readonly LaterCheck[],
+  control: ReadonlyMap<string, ControlMark>,
+  earlier: LoadedSetup['result']['result'],
+): Pick<SetupTask, 'shots' | 'identification'> {
+  const named = kept.filter(isNamed);
+  if (!earlier.identification) return { shots: named };
+  const { accuracy, surroundings, ppm } = earlier;
+  const { identification, names } = identifyTargets(new ControlIndex(control.values()), {
+    ...{ accuracy, surroundings, ppm, control },
+    shots: kept.filter((shot) => !isNamed(shot)),
+    named: [...named, ...later.flatMap(({ shots }) => shots)],
+  });
+  const found = kept.flatMap((shot): Shot[] => {
+    const target = names.get(shot.id);
+    return target === undefined ? [] : [{ ...shot, target }];
+  });
+  return { shots: [...found, ...named], identification };
 }
 
 /** @throws Problem where the mark was quarantined meanwhile: nothing stands on it any more */
@@ -159,7 +193,7 @@ async function write(
     organizationId,
     setupId: id,
     version: 1,
-    method: result.occupied ? METHOD_OVER_MARK : METHOD,
+    method: methodOf(result),
     methodVersion: METHOD_VERSION,
     result,
     computedAt: now,

@@ -93,6 +93,11 @@ function requireReleasable(
   if (setup.verdict === 'fail') throw refuse('The setup fails: shoot again or refit.');
   if (!result.orientationDetermined)
     throw refuse('The setup has no orientation: nothing can be shot from it.');
+  if (result.identification?.ambiguous) {
+    throw refuse(
+      'More than one assignment of targets fits the shots: let a shot by name decide, or name them all.',
+    );
+  }
   if (result.others.length > 0) throw refuse('More than one station fits the shots: shoot a further mark.');
   if (setup.verdict !== 'hold') return;
   if (!note) throw invalid('/note', 'note_required');

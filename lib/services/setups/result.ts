@@ -7,6 +7,7 @@ import type { DirectionSets } from '@/lib/compute/survey/directionSets';
 import type { Explanation } from '@/lib/compute/survey/explain';
 import type { FaceErrors } from '@/lib/compute/survey/faces';
 import type { SightGeometry } from '@/lib/compute/survey/geometry';
+import type { Identification, Stray } from '@/lib/compute/survey/identify';
 import type { InstrumentAccuracy } from '@/lib/compute/survey/instrument';
 import type { MarkShift } from '@/lib/compute/survey/leaveOneOut';
 import type { OtherStation } from '@/lib/compute/survey/otherStations';
@@ -22,8 +23,18 @@ import type { WorkAccuracy } from '@/lib/compute/survey/workAccuracy';
 
 /** Name and version of the computation; a change of figures raises the version. */
 export const METHOD = 'free station, least squares';
+export const METHOD_IDENTIFIED = 'targets by rigid geometry, free station, least squares';
 export const METHOD_OVER_MARK = 'station over a mark by backsights, least squares';
 export const METHOD_VERSION = '1.2.0';
+
+/** How a result came about, in words. */
+export function methodOf({
+  occupied,
+  identification,
+}: Pick<SetupResult, 'occupied' | 'identification'>): string {
+  if (identification) return METHOD_IDENTIFIED;
+  return occupied ? METHOD_OVER_MARK : METHOD;
+}
 
 /** What is worth knowing of a setup, though no verdict hangs on it. */
 export type SetupNote =
@@ -39,7 +50,9 @@ export type SetupNote =
   | { code: 'distance_unused'; targets: string[] }
   | { code: 'directions_scatter'; value: number; limit: number }
   | { code: 'height_undetermined' }
-  | { code: 'check_not_telling'; target: string };
+  | { code: 'check_not_telling'; target: string }
+  | { code: 'stray_shots'; shots: string[]; nearest: Stray['nearest'] }
+  | { code: 'same_place'; target: string; others: string[] };
 
 /** A mark of the fit as it is kept: undefined statistics are null, covariances plain lists. */
 export interface KeptMark extends Omit<FittedMark, 'readings' | 'stationCovariance' | 'without'> {
@@ -74,6 +87,8 @@ export interface SetupResult extends SetupVerdict {
   backsights: BacksightCheck[];
   danger: DangerCircle | null;
   others: OtherStation[];
+  /** Of unnamed targets; null where the shots named them. */
+  identification: Identification | null;
   unusedDistances: string[];
   directionSets: DirectionSets | null;
   converged: boolean;
@@ -135,6 +150,7 @@ const UNTOLD = {
   backsights: [],
   danger: null,
   others: [],
+  identification: null,
   unusedDistances: [],
   directionSets: null,
   air: null,

@@ -3,6 +3,7 @@ import type { Axis, SetupReason, Verdict } from '@/lib/compute/survey/verdict';
 import { toArcseconds } from '@/lib/compute/units/convert';
 import type { Lengths } from '@/lib/services/lengths';
 import { firstAct } from './explanationWords';
+import { wordsOfAmbiguity, wordsOfStray } from './identificationWords';
 import type { SetupNote } from './result';
 
 /** A finding in plain words, with what to do next. */
@@ -105,6 +106,8 @@ function wordsOfReason(reason: SetupReason, length: Lengths): Words {
         action: 'Shoot a direction or a distance to a further mark, off the line of the others.',
       };
     }
+    case 'identification_ambiguous':
+      return wordsOfAmbiguity(reason, length);
     case 'near_danger_circle':
       return {
         code,
@@ -267,6 +270,13 @@ export function wordsOfNote(note: SetupNote, length: Lengths): Words {
       return {
         code,
         text: 'No mark with an elevation was seen with a zenith angle: the setup has no height.',
+      };
+    case 'stray_shots':
+      return { code, ...wordsOfStray(note, length) };
+    case 'same_place':
+      return {
+        code,
+        text: `${[note.target, ...note.others].join(', ')} stand at one place: ${note.target} was taken for all of them.`,
       };
     case 'check_not_telling':
       return { code, text: `The check on ${note.target} neither confirms nor contradicts the setup.` };

@@ -55,6 +55,7 @@ export function needsOf(document: Document): Needs {
   const needs: Needs = {
     clientId: document.clientId,
     control: new Set(),
+    registry: document.setups.some(({ method }) => method === 'identify'),
     instruments: new Set(),
     layers: new Set(),
     setups: new Set(),

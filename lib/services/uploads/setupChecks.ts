@@ -2,7 +2,7 @@ import type { CallerContext } from '@/lib/services/context';
 import { utcInstant } from '@/lib/services/moments';
 import { isAgreed, judgeWithCheck } from '@/lib/services/setups/compute';
 import type { CheckRow } from '@/lib/services/setups/load';
-import { METHOD, METHOD_OVER_MARK, METHOD_VERSION } from '@/lib/services/setups/result';
+import { METHOD_VERSION, methodOf } from '@/lib/services/setups/result';
 import { problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 import type { Document } from './document';
@@ -51,7 +51,7 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
   const ids = new Set(found.shotIds);
   // They are the check's, whatever they say of themselves.
   const sent = item.shots.map((shot) => ({ ...shot, purpose: item.purpose }));
-  const { shots, problems } = normaliseShots(sent, document.units, site, pointer, ids);
+  const { shots, problems } = normaliseShots(sent, document.units, site, pointer, { taken: ids });
   const at = pointerIn(pointer, item.shots);
   problems.push(...incompleteChecks(shots, at));
   if (problems.length === 0) problems.push(...unusable(shots, site, `${pointer}/shots`));
@@ -86,7 +86,7 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
     organizationId: caller.organizationId,
     setupId: setup.id,
     version: resultVersion,
-    method: judged.result.occupied ? METHOD_OVER_MARK : METHOD,
+    method: methodOf(judged.result),
     methodVersion: METHOD_VERSION,
     result: judged.result,
     computedAt: runtime.now().toISOString(),
@@ -95,7 +95,13 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
   const { organizationId, projectId, id: checkId } = check;
   shots.forEach((shot, seq) => {
     rows.observations.push(
-      observationRow(shot, seq, { organizationId, projectId, setupId: setup.rootId, checkId }),
+      observationRow(shot, seq, {
+        organizationId,
+        projectId,
+        setupId: setup.rootId,
+        checkId,
+        identified: false,
+      }),
     );
   });
   // What follows in this upload sees the setup as it is now.

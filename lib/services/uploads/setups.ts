@@ -5,18 +5,13 @@ import { utcInstant } from '@/lib/services/moments';
 import { surroundingsOf } from '@/lib/services/projects/load';
 import { computeSetup, isAgreed } from '@/lib/services/setups/compute';
 import type { CheckRow, LoadedSetup } from '@/lib/services/setups/load';
-import {
-  type CheckResult,
-  METHOD,
-  METHOD_OVER_MARK,
-  METHOD_VERSION,
-  type SetupNote,
-} from '@/lib/services/setups/result';
+import { type CheckResult, METHOD_VERSION, methodOf, type SetupNote } from '@/lib/services/setups/result';
 import { problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 import { airOf, readAtmosphere, type Weather, wantedPpm } from './atmosphere';
 import type { Document } from './document';
 import { type Draft, pointerOf } from './draft';
+import { identificationLimits, nameTargets } from './identified';
 import { readOccupied } from './occupied';
 import {
   asEngineShot,
@@ -25,6 +20,7 @@ import {
   normaliseShots,
   observationRow,
   pointerIn,
+  type UnnamedShot,
 } from './shotsOfSetup';
 import type { Site, SiteClass, SiteInstrument } from './site';
 import { stationProblem } from './stationProblem';
@@ -48,8 +44,9 @@ function draftSetup(draft: Draft, context: CallerContext, item: SetupItem, point
     ];
   }
   const known = knownParts(site, item, pointer);
-  const { shots, problems: shotProblems } = normaliseShots(item.shots, document.units, site, pointer);
-  const targets = shots.map(({ sent }) => sent.target);
+  const identified = item.method === 'identify';
+  const normal = normaliseShots(item.shots, document.units, site, pointer, { identified });
+  const targets = identified ? [...site.control.keys()] : normal.shots.map(({ sent }) => sent.target);
   const { atmosphere, problems: airProblems } = readAtmosphere(
     item.atmosphere,
     document.units,
@@ -58,13 +55,14 @@ function draftSetup(draft: Draft, context: CallerContext, item: SetupItem, point
     pointer,
   );
   const at = pointerIn(pointer, item.shots);
-  const checking = shots.filter(({ sent }) => sent.purpose !== 'orient');
+  const checking = normal.shots.filter(({ sent }) => sent.purpose !== 'orient');
   const { occupied, problems: markProblems } = readOccupied(draft, item, pointer);
   const problems = [
     ...known.problems,
+    ...identificationLimits(site, document, item, pointer),
     ...markProblems,
     ...airProblems,
-    ...shotProblems,
+    ...normal.problems,
     ...incompleteChecks(checking, at),
   ];
   const { instrument, limits } = known;
@@ -73,19 +71,25 @@ function draftSetup(draft: Draft, context: CallerContext, item: SetupItem, point
   const air = atmosphere && airOf(atmosphere, instrument);
   const ppm = air && wantedPpm(air);
   const { name: toleranceClass, ...classLimits } = limits;
+  const surroundings = { ...surroundingsOf(site.project), ...chosenRefraction(item) };
+  const sighting = { accuracy: instrument.accuracy, surroundings, ppm };
+  const { unnamed } = normal;
+  const named = identified ? nameTargets(site, item, { unnamed, checking }, sighting, pointer) : null;
+  if (Array.isArray(named)) return named;
+  const { shots } = named ?? normal;
   try {
     const computed = computeSetup({
       shots: shots.map(asEngineShot),
       control: site.control,
-      accuracy: instrument.accuracy,
-      surroundings: { ...surroundingsOf(site.project), ...chosenRefraction(item) },
-      ppm,
+      ...sighting,
       air,
       occupied,
+      identification: named?.identification,
       limits: classLimits,
       notes: assumptions(site, { shots, stationPoint: item.stationPoint }, instrument, ppm),
     });
-    accept(draft, context, item, { computed, shots, instrument, toleranceClass, atmosphere });
+    const observed = inOrder(item, [...shots, ...(named?.strays ?? [])]);
+    accept(draft, context, item, { computed, observed, instrument, toleranceClass, atmosphere });
     return [];
   } catch (error) {
     if (!(error instanceof StationError)) throw error;
@@ -100,15 +104,6 @@ function chosenRefraction({ refraction }: SetupItem) {
 
 function knownParts(site: Site, item: SetupItem, pointer: string) {
   const problems: ProblemItem[] = [];
-  if (item.method === 'identify') {
-    problems.push(
-      problemItem(
-        `${pointer}/method`,
-        'method_not_supported',
-        `Setups by ${item.method} are not computed yet.`,
-      ),
-    );
-  }
   const instrument = site.instruments.get(item.instrument);
   if (!instrument) {
     problems.push(
@@ -155,16 +150,22 @@ function assumptions(
   return notes;
 }
 
+/** Shots as they were sent, one after the other. */
+function inOrder(item: SetupItem, shots: readonly UnnamedShot[]): UnnamedShot[] {
+  const place = new Map(item.shots.map(({ clientId }, i) => [clientId, i]));
+  return [...shots].sort((a, b) => place.get(a.sent.clientId)! - place.get(b.sent.clientId)!);
+}
+
 interface Computed {
   computed: ReturnType<typeof computeSetup>;
-  shots: NormalShot[];
+  observed: UnnamedShot[];
   instrument: SiteInstrument;
   toleranceClass: string;
   atmosphere: Weather | null;
 }
 
 function accept(draft: Draft, context: CallerContext, item: SetupItem, parts: Computed): void {
-  const { computed, shots, instrument, toleranceClass, atmosphere } = parts;
+  const { computed, observed, instrument, toleranceClass, atmosphere } = parts;
   const { caller, runtime } = context;
   const { result } = computed;
   const { organizationId } = caller;
@@ -207,7 +208,7 @@ function accept(draft: Draft, context: CallerContext, item: SetupItem, parts: Co
     organizationId,
     setupId: id,
     version: 1,
-    method: result.occupied ? METHOD_OVER_MARK : METHOD,
+    method: methodOf(result),
     methodVersion: METHOD_VERSION,
     result,
     computedAt: now,
@@ -234,9 +235,15 @@ function accept(draft: Draft, context: CallerContext, item: SetupItem, parts: Co
   draft.rows.setups.push(setup);
   draft.rows.setupResults.push(resultRow);
   draft.rows.setupChecks.push(...checks);
-  shots.forEach((shot, seq) => {
+  observed.forEach((shot, seq) => {
     draft.rows.observations.push(
-      observationRow(shot, seq, { organizationId, projectId, setupId: id, checkId: null }),
+      observationRow(shot, seq, {
+        organizationId,
+        projectId,
+        setupId: id,
+        checkId: null,
+        identified: item.method === 'identify' && shot.sent.purpose === 'orient',
+      }),
     );
   });
   draft.site.taken.setups.add(item.clientId);

@@ -14,20 +14,28 @@ export interface NormalShot {
   readings: Readings;
 }
 
+/** A shot of a setup by `identify`, whose target is still to be found. */
+export interface UnnamedShot {
+  sent: Shot;
+  readings: Readings;
+}
+
 /**
  * The shots of a setup or of a check in SI units, all targets known, or everything that is wrong with them: one bad
  * shot refuses the whole.
  *
  * @param taken client ids of shots that the setup has already
+ * @param identified shots that orient have no name yet
  */
 export function normaliseShots(
   shots: readonly Shot[],
   units: Units,
   site: Site,
   pointer: string,
-  taken: ReadonlySet<string> = new Set(),
-): { shots: NormalShot[]; problems: ProblemItem[] } {
+  { taken = new Set(), identified = false }: { taken?: ReadonlySet<string>; identified?: boolean } = {},
+): { shots: NormalShot[]; unnamed: UnnamedShot[]; problems: ProblemItem[] } {
   const normal: NormalShot[] = [];
+  const unnamed: UnnamedShot[] = [];
   const problems: ProblemItem[] = [];
   const ids = new Set(taken);
   shots.forEach((shot, i) => {
@@ -39,7 +47,10 @@ export function normaliseShots(
       );
     }
     ids.add(clientId);
-    if (target === null) problems.push(problemItem(`${at}/target`, 'target_required'));
+    const nameless = identified && shot.purpose === 'orient';
+    if (nameless) {
+      if (target !== null) problems.push(problemItem(`${at}/target`, 'target_named', `${target} is named.`));
+    } else if (target === null) problems.push(problemItem(`${at}/target`, 'target_required'));
     else if (!site.control.has(target)) {
       problems.push(
         problemItem(`${at}/target`, 'target_unknown', `There is no control point ${target} in this project.`),
@@ -47,21 +58,25 @@ export function normaliseShots(
     }
     const readings = normaliseShot(shot, units, at);
     if (Array.isArray(readings)) problems.push(...readings);
+    else if (nameless) unnamed.push({ sent: shot, readings });
     else if (target !== null) normal.push({ sent: { ...shot, target }, readings });
   });
   problems.push(...mixedSigmas(normal, pointerIn(pointer, shots)));
-  return { shots: normal, problems: once(problems) };
+  return { shots: normal, unnamed, problems: once(problems) };
 }
 
 /** The pointers of an item's shots, by their client ids. */
-export function pointerIn(pointer: string, shots: readonly Shot[]): (shot: NormalShot) => string {
+export function pointerIn(pointer: string, shots: readonly Shot[]): (shot: UnnamedShot) => string {
   return ({ sent }) => `${pointer}/shots/${shots.findIndex((shot) => shot.clientId === sent.clientId)}`;
 }
 
 const SIGMAS = ['targetCentringSigma', 'targetHeightSigma'] as const;
 
 /** Centring and height of one erection are one error in all its shots: they have one σ, stated in all or in none. */
-function mixedSigmas(shots: readonly NormalShot[], pointers: (shot: NormalShot) => string): ProblemItem[] {
+export function mixedSigmas(
+  shots: readonly NormalShot[],
+  pointers: (shot: NormalShot) => string,
+): ProblemItem[] {
   return byErection(shots).flatMap(([first, ...others]) =>
     others.flatMap((shot) =>
       SIGMAS.filter((field) => shot.readings[field] !== first.readings[field]).map((field) => {
@@ -99,9 +114,15 @@ export function asEngineShot({ sent, readings }: NormalShot): EngineShot {
 }
 
 export function observationRow(
-  { sent, readings }: NormalShot,
+  { sent, readings }: UnnamedShot,
   seq: number,
-  of: { organizationId: string; projectId: string; setupId: string; checkId: string | null },
+  of: {
+    organizationId: string;
+    projectId: string;
+    setupId: string;
+    checkId: string | null;
+    identified: boolean;
+  },
 ): InferInsertModel<typeof observations> {
   // Written out, not spread: this runs for every shot, and a spread of this size takes longer than all the rest.
   return {
@@ -112,6 +133,7 @@ export function observationRow(
     clientId: sent.clientId,
     seq,
     target: sent.target,
+    identified: of.identified,
     purpose: sent.purpose,
     face: readings.face,
     set: readings.set,

@@ -1,10 +1,12 @@
 import type { InferSelectModel } from 'drizzle-orm';
 import type { projects, setupReleases } from '@/db/schema';
 import type { NamedStatement, Tenant } from '@/db/tenant';
+import { ControlIndex } from '@/lib/compute/survey/identifyControl';
 import type { InstrumentAccuracy } from '@/lib/compute/survey/instrument';
 import type { ControlMark } from '@/lib/compute/survey/shots';
 import type { SetupLimits } from '@/lib/compute/survey/verdict';
 import type { LastPegTest } from '@/lib/services/levelRuns/compute';
+import { MOST_POINTS } from '@/lib/services/setups/identification';
 import type { CheckRow, SetupRow } from '@/lib/services/setups/load';
 import { readResult, type SetupResult } from '@/lib/services/setups/result';
 
@@ -14,6 +16,8 @@ export interface Needs {
   control: Set<string>;
   instruments: Set<string>;
   layers: Set<string>;
+  /** All of the site's control, for shots without names. */
+  registry: boolean;
   /** Setups by clientId or id. */
   setups: Set<string>;
   setupClientIds: string[];
@@ -70,13 +74,23 @@ export interface SiteClass extends SetupLimits {
   name: string;
 }
 
+type KnownMark = ControlMark & { sigmaStated: boolean };
+
+/** All control of a site, laid out to be searched the first time that it is. */
+export interface Registry {
+  size: number;
+  index: () => ControlIndex;
+}
+
 /** What stands in the project of what an upload names. */
 export interface Site {
   project: InferSelectModel<typeof projects>;
   classes: SiteClass[];
   /** The processed upload of the same clientId, if there is one. */
   before: { id: string; contentSha256: string } | null;
-  control: Map<string, ControlMark & { sigmaStated: boolean }>;
+  control: Map<string, KnownMark>;
+  /** All control but what is quarantined; null where every shot names its target. */
+  registry: Registry | null;
   instruments: Map<string, SiteInstrument>;
   layers: Map<string, SiteLayer>;
   setups: SiteSetup[];
@@ -109,11 +123,13 @@ const BEFORE = `select u.id, encode(coalesce(r.content_sha256, r.sha256), 'hex')
   from uploads u join raw_bodies r on r.organization_id = u.organization_id and r.id = u.raw_body_id
   where u.organization_id = ${TENANT} and u.project_id = $1 and u.client_id = $2 and u.status = 'processed'`;
 
-const CONTROL = `select p.name, v.version, v.easting, v.northing, v.elevation, v.sigma_horizontal as "horizontalSigma",
+const MARK = `p.name, v.version, v.easting, v.northing, v.elevation, v.sigma_horizontal as "horizontalSigma",
     v.sigma_vertical as "verticalSigma", p.status, v.submitted -> 'sigma' <> 'null'::jsonb as "sigmaStated"
   from control_points p join control_point_versions v on v.organization_id = p.organization_id
     and v.project_id = p.project_id and v.name = p.name and v.version = p.current_version
-  where p.organization_id = ${TENANT} and p.project_id = $1 and p.name = any($3::text[])`;
+  where p.organization_id = ${TENANT} and p.project_id = $1`;
+
+const CONTROL = `select ${MARK} and p.name = any($3::text[])`;
 
 const INSTRUMENTS = `select i.id, i.name, i.kind, c.version, c.accuracy_stated as "accuracyStated",
     json_build_object('direction', c.direction, 'zenith', c.zenith, 'distance', c.distance,
@@ -219,13 +235,18 @@ const SITE: NamedStatement = {
     ${taken('level_runs', 12)} as taken_levels, ${taken('peg_tests', 13)} as taken_pegs`,
 };
 
+const REGISTRY: NamedStatement = {
+  name: 'upload_registry',
+  text: `select ${list(`select ${MARK} and p.status <> 'quarantined' limit ${MOST_POINTS + 1}`)} as marks`,
+};
+
 const UUID = /^[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}$/i;
 
 interface SiteRow {
   project: Site['project'] | null;
   classes: SiteClass[];
   before: Site['before'];
-  control: (ControlMark & { sigmaStated: boolean })[];
+  control: KnownMark[];
   instruments: SiteInstrument[];
   layers: SiteLayer[];
   setups: SiteSetup[];
@@ -241,7 +262,8 @@ interface SiteRow {
 /** Reads, in one round trip, all that an upload names; null where the project does not exist. */
 export async function loadSite(tenant: Tenant, projectId: string, needs: Needs): Promise<Site | null> {
   const setups = [...needs.setups];
-  const { rows } = await tenant.run<SiteRow & Record<string, unknown>>(SITE, [
+  const all = needs.registry ? tenant.run<{ marks: KnownMark[] }>(REGISTRY, [projectId]) : null;
+  const named = tenant.run<SiteRow & Record<string, unknown>>(SITE, [
     projectId,
     needs.clientId,
     [...needs.control],
@@ -256,14 +278,17 @@ export async function loadSite(tenant: Tenant, projectId: string, needs: Needs):
     needs.levelClientIds,
     needs.pegClientIds,
   ]);
+  const [{ rows }, registry] = await Promise.all([named, all]);
   const [row] = rows;
   if (!row.project) return null;
+  const marks = registry?.rows[0].marks ?? null;
   const byName = <T extends { name: string }>(items: T[]) => new Map(items.map((item) => [item.name, item]));
   return {
     project: row.project,
     classes: row.classes,
     before: row.before,
-    control: byName(row.control),
+    control: byName([...(marks ?? []), ...row.control]),
+    registry: marks && registryOf(marks),
     instruments: byName(row.instruments),
     layers: byName(row.layers),
     setups: row.setups.map((setup) => ({ ...setup, result: readResult(setup.result) })),
@@ -275,6 +300,17 @@ export async function loadSite(tenant: Tenant, projectId: string, needs: Needs):
       bench: new Set(row.taken_bench),
       levels: new Set(row.taken_levels),
       pegs: new Set(row.taken_pegs),
+    },
+  };
+}
+
+function registryOf(marks: readonly KnownMark[]): Registry {
+  let index: ControlIndex | null = null;
+  return {
+    size: marks.length,
+    index: () => {
+      index ??= new ControlIndex(marks);
+      return index;
     },
   };
 }

@@ -6,6 +6,7 @@ import {
   bumpedTargetSetup,
   goodSetup,
   laterCheck,
+  unnamedSetup,
   wrongPrismSetup,
 } from './setups';
 import { benchAfter, benchBefore, gradeShots, machine, release } from './work';
@@ -27,6 +28,7 @@ export function dataFiles(): Record<string, string> {
     'setup-bumped-target': bumpedTargetSetup(),
     'setup-backsight': backsightSetup(),
     'setup-angles-only': anglesOnlySetup(),
+    'setup-identify': unnamedSetup(),
     release: release(),
     'bench-before': benchBefore(),
     'setup-check': laterCheck(),

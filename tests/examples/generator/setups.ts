@@ -57,6 +57,17 @@ export const ANGLES_ONLY: Station = {
   axis: { easting: 5172.806, northing: 10112.441, elevation: 1243.882 },
   orientation: 84.0273,
 };
+/** By an operator who named no target. */
+export const UNNAMED: Station & { method: 'identify' } = {
+  station: 'ST-6',
+  clientId: 'st-6',
+  method: 'identify',
+  instrumentHeight: null,
+  axis: { easting: 5149.317, northing: 10150.882, elevation: 1244.106 },
+  orientation: 163.5809,
+};
+/** Another crew's reflector, on a tripod some way from HT-104. */
+const OTHERS: Place = { easting: -21.4, northing: 16.85, elevation: 4.3 };
 /** A truck has leant the post of HT-103 over: 0.20 ft in plan, and a little down. */
 const BUMP: Place = { easting: 0.163, northing: -0.116, elevation: -0.02 };
 
@@ -129,8 +140,12 @@ function prismFields({ declaredMm, appliedMm }: PrismState) {
   return { prismConstantMm: declaredMm, prismConstantAppliedMm: appliedMm, appliedPpm: 0 };
 }
 
-function setupDocument(clientId: string, at: Station & { stationPoint?: string }, shots: object[]) {
-  const { station, instrumentHeight, stationPoint } = at;
+function setupDocument(
+  clientId: string,
+  at: Station & { method?: 'identify'; stationPoint?: string },
+  shots: object[],
+) {
+  const { station, instrumentHeight, stationPoint, method = 'resection' } = at;
   return {
     clientId,
     units: UNITS,
@@ -138,7 +153,7 @@ function setupDocument(clientId: string, at: Station & { stationPoint?: string }
       {
         clientId: at.clientId,
         station,
-        ...(stationPoint === undefined ? { method: 'resection' } : { method: 'backsight', stationPoint }),
+        ...(stationPoint === undefined ? { method } : { method: 'backsight', stationPoint }),
         instrument: 'TS-1',
         instrumentHeight,
         toleranceClass: 'earthwork',
@@ -184,6 +199,17 @@ export function anglesOnlySetup() {
     return { clientId, target, face, set: round, horizontal, zenith, targetHeight };
   });
   return setupDocument('setup-angles-only', ANGLES_ONLY, shots);
+}
+
+/** Five posts and somebody else's reflector, none of them named. */
+export function unnamedSetup() {
+  const marks = ['HT-101', 'HT-102', 'HT-103', 'HT-104', 'HT-105', 'HT-106'].map(post);
+  const seen = marks.map((mark) => (mark.target === 'HT-104' ? { ...mark, moved: OTHERS } : mark));
+  const shots = set(standing(UNNAMED, 'unnamed'), seen, RIGHT, 'st-6').map((shot) => ({
+    ...shot,
+    target: null,
+  }));
+  return setupDocument('setup-identify', UNNAMED, shots);
 }
 
 /** Hours later, from the good setup: the benchmark again, and a target of the fit to see whether it drifted. */

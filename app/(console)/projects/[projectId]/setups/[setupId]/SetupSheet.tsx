@@ -13,6 +13,7 @@ import type { Setup } from '@/openapi/schemas/setup';
 import { Acts } from './Acts';
 import { Checks } from './Checks';
 import { Explanations } from './Explanations';
+import { Identification } from './Identification';
 import { Backsights, Fit, Standing } from './Ledgers';
 import { Provenance } from './Provenance';
 import { SetupStamp } from './SetupStamp';
@@ -67,6 +68,7 @@ export function SetupSheet({ projectId, setupId }: { projectId: string; setupId:
         <Targets setup={data} />
         <div className="grid gap-9 lg:grid-cols-[minmax(0,1.55fr)_minmax(280px,1fr)]">
           <div className="space-y-9">
+            <Identification setup={data} />
             <Explanations setup={data} />
             <ReasonList reasons={data.reasons} notes={data.notes} />
             <Checks setup={data} />

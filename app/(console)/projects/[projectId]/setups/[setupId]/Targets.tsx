@@ -19,8 +19,9 @@ function largestW({ observations }: Target): number | null {
 
 const ROLE = { orient: 'in the fit', check: 'check', closing: 'closing check' } as const;
 
-function partOf({ used, purpose }: Target): string {
+function partOf({ target, used, purpose }: Target): string {
   if (used) return ROLE.orient;
+  if (target === null) return 'stray';
   return purpose === 'orient' ? 'left out' : ROLE[purpose];
 }
 
@@ -65,7 +66,11 @@ export function Targets({ setup }: { setup: ShownSetup }) {
             value: (target) => target.target,
             cell: (target) => (
               <>
-                <span className="font-semibold whitespace-nowrap">{target.target}</span>
+                {target.target === null ? (
+                  <span className="text-ink-second">no control point ({target.shots.join(', ')})</span>
+                ) : (
+                  <span className="font-semibold whitespace-nowrap">{target.target}</span>
+                )}
                 <span className="block text-[12.5px] whitespace-nowrap text-ink-second md:hidden">
                   {partOf(target)}
                 </span>
@@ -107,7 +112,7 @@ export function Targets({ setup }: { setup: ShownSetup }) {
           {
             name: 'Control',
             value: (target) => target.status,
-            cell: (target) => <State tone={CONTROL_TONE[target.status]}>{target.status}</State>,
+            cell: ({ status }) => (status ? <State tone={CONTROL_TONE[status]}>{status}</State> : ''),
           },
         ]}
       />
