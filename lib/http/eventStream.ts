@@ -34,7 +34,7 @@ export function eventStream(registry: Streams, source: Source): ReadableStream<U
   let wakeUp: (() => void) | null = null;
   let ended = false;
   let pending: Page | null = source.first;
-  let cursor = source.first.cursor;
+  let cursor = source.first.reached;
   let controller: ReadableStreamDefaultController<Uint8Array>;
   const stream: Stream = {
     caller,
@@ -83,11 +83,10 @@ export function eventStream(registry: Streams, source: Source): ReadableStream<U
       const page = pending ?? (await attempt());
       pending = null;
       if (ended) break;
-      if (page !== null && page.told.length > 0) {
-        cursor = page.cursor;
-        return page.told.map(framed).join('');
-      }
-      if (quiet) return ': still here\n\n';
+      if (page !== null) cursor = page.reached;
+      if (page !== null && page.told.length > 0) return page.told.map(framed).join('');
+      // With how far was looked: whoever comes back later need not have it looked through again.
+      if (quiet) return `: still here\nid: ${cursor}\n\n`;
       // What was seen while it was being read is read at once.
       if (version === registry.versionOf(caller.organizationId))
         quiet = (await somethingOrQuiet()) === 'quiet';

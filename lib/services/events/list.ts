@@ -18,7 +18,8 @@ const Place = z.string().regex(/^\d{1,19}\/\d{1,18}$/);
 export const LATEST = 'latest';
 
 /**
- * Events after a cursor in commit order, each with the cursor behind it. Only transactions below the oldest that still
+ * Events after a cursor in commit order, each with the cursor behind it, and how far was looked: on a busy hub that is
+ * further than the last event that passes the filters. Only transactions below the oldest that still
  * runs are read, so that a late commit is never skipped; the cursor holds the epoch, which a restore raises, and the
  * place.
  */
@@ -55,7 +56,11 @@ export async function eventsAfter({ tenant, caller }: Pick<VerbContext, 'tenant'
     event: presentEvent(row),
     cursor: writeCursor(list, `${row.xid}/${row.seq}`),
   }));
-  return { told, cursor: told.at(-1)?.cursor ?? writeCursor(list, `${xid}/${seq}`) };
+  const last = rows.at(-1);
+  const cursor = writeCursor(list, last ? `${last.xid}/${last.seq}` : `${xid}/${seq}`);
+  // Where no more are waiting, everything before the oldest transaction of a moment ago has been looked at.
+  const beyond = rows.length < query.limit && BigInt(oldest) > BigInt(last?.xid ?? xid);
+  return { told, cursor, reached: beyond ? writeCursor(list, `${oldest}/0`) : cursor };
 }
 
 export async function listEvents(context: VerbContext, { query }: { query: Query }) {
