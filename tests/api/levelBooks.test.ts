@@ -103,7 +103,7 @@ describe('a level book as a table', () => {
     expect(await errors('point,height\nA,1\n', query('t-11'))).toEqual([
       422,
       'invalid',
-      ['/rows/1 column_missing', '/rows/1 column_missing', '/rows/1/height column_unknown'],
+      ['/rows/1 column_missing', '/rows/1 column_missing', '/rows/1/2 column_unknown'],
     ]);
     expect(await errors(BOOK, '?length=ftUS&clientId=t-12')).toEqual([
       422,
