@@ -21,7 +21,10 @@ export const FaceErrors = z
     twoCollimationSpreadArcsec: maybe.meta({
       description: 'Standard deviation of one pair as the pairs show it; null of fewer than two.',
     }),
-    collimationPairs: z.int().nullable(),
+    collimationPairs: z
+      .int()
+      .nullable()
+      .meta({ description: 'Null where there are none, or were not counted.' }),
     verticalIndexArcsec: maybe.meta({ description: '(left + right − 360°)/2 of zenith angles.' }),
     verticalIndexSigmaArcsec: maybe,
     verticalIndexSpreadArcsec: maybe,

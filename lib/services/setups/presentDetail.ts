@@ -114,11 +114,12 @@ export function presentFaceErrors(faces: FaceErrors): z.output<typeof schema.Fac
     twoCollimationArcsec: arcseconds(faces.twoCollimation),
     twoCollimationSigmaArcsec: arcseconds(faces.twoCollimationSigma),
     twoCollimationSpreadArcsec: arcseconds(faces.twoCollimationSpread),
-    collimationPairs: faces.collimationPairs,
+    // Version 1.1 did not count them.
+    collimationPairs: faces.collimationPairs || null,
     verticalIndexArcsec: arcseconds(faces.verticalIndex),
     verticalIndexSigmaArcsec: arcseconds(faces.verticalIndexSigma),
     verticalIndexSpreadArcsec: arcseconds(faces.verticalIndexSpread),
-    indexPairs: faces.indexPairs,
+    indexPairs: faces.indexPairs || null,
   };
 }
 
