@@ -1,6 +1,6 @@
 import { type ItemProblemCode, REQUEST_PROBLEMS, type RequestProblemCode } from '@/openapi/problemCodes';
 import { problemItem } from '@/openapi/problemItem';
-import type { ProblemItem } from '@/openapi/schemas/problem';
+import type { Problem as ProblemDocument, ProblemItem } from '@/openapi/schemas/problem';
 
 /** A request that cannot be fulfilled, in words for whoever sent it. */
 export class Problem extends Error {
@@ -27,4 +27,27 @@ export function invalid(pointer: string, code: ItemProblemCode, detail?: string,
 export function invalidItems(errors: readonly ProblemItem[]): Problem {
   const places = errors.length === 1 ? 'One place' : `${errors.length} places`;
   return new Problem('invalid', `${places} in the request must be mended.`, { errors });
+}
+
+/**
+ * A problem as it is answered (RFC 9457).
+ *
+ * @param instance path of what was asked for
+ */
+export function problemDocument(
+  problem: Pick<Problem, 'code' | 'message' | 'options'>,
+  requestId: string,
+  instance: string,
+): ProblemDocument {
+  const { status, title } = REQUEST_PROBLEMS[problem.code];
+  return {
+    type: `/reference/problems/${problem.code}`,
+    title,
+    status,
+    detail: problem.message,
+    instance,
+    code: problem.code,
+    requestId,
+    ...(problem.options.errors ? { errors: [...problem.options.errors] } : {}),
+  };
 }

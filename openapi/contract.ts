@@ -29,6 +29,8 @@ export interface Answer {
   json?: z.ZodType;
   /** Media type of an answer that is not JSON. */
   media?: string;
+  /** Headers of its own, with what they say. */
+  headers?: Readonly<Record<string, string>>;
 }
 
 /**

@@ -29,6 +29,8 @@ const TAGS: Record<string, string> = {
   'Surfaces and layers': 'The design that ground is checked against.',
   Grade: 'Checks of ground and of blades.',
   Levelling: 'Level runs, their closure, and tests of the levels.',
+  Adjustments: 'Networks adjusted from stored observations; applied to the control when a surveyor says so.',
+  Jobs: 'Work that takes longer than a request.',
   Record: 'What happened and who did it.',
   Webhooks: 'Addresses that are told what happens, and what became of each message.',
 };
@@ -76,8 +78,11 @@ function problemAnswers(operation: Contract): Record<string, ResponseConfig> {
 
 function successAnswers(operation: Contract): Record<string, ResponseConfig> {
   return Object.fromEntries(
-    Object.entries(operation.answers).map(([status, { description, json, media }]) => {
-      if (json) return [status, { description, content: { 'application/json': { schema: json } } }];
+    Object.entries(operation.answers).map(([status, { description, json, media, headers }]) => {
+      if (json) {
+        const content = { 'application/json': { schema: json } };
+        return [status, { description, content, ...(headers ? { headers: headersOf(headers) } : {}) }];
+      }
       if (media) return [status, { description, content: { [media]: { schema: schemaOfMedia(media) } } }];
       return [status, { description }];
     }),
@@ -115,6 +120,14 @@ function schemaOfMedia(media: string) {
   return media.startsWith('text/')
     ? { type: 'string' as const }
     : { type: 'string' as const, format: 'binary' };
+}
+
+function headersOf(headers: Readonly<Record<string, string>>) {
+  const described = Object.entries(headers).map(([name, description]) => [
+    name,
+    { description, schema: { type: 'string' as const } },
+  ]);
+  return Object.fromEntries(described);
 }
 
 function requestBody({ body }: Contract) {

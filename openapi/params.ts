@@ -16,6 +16,8 @@ export const AcknowledgementParams = z.strictObject({ projectId: Id, acknowledge
 export const ApiKeyParams = z.strictObject({ apiKeyId: Id });
 export const WebhookEndpointParams = z.strictObject({ webhookEndpointId: Id });
 export const WebhookDeliveryParams = z.strictObject({ webhookEndpointId: Id, deliveryId: Id });
+export const JobParams = z.strictObject({ jobId: Id });
+export const AdjustmentParams = z.strictObject({ projectId: Id, adjustmentId: Id });
 export const PersonParams = z.strictObject({ personId: Id });
 
 /** `?name=true`. */

@@ -180,6 +180,12 @@ export const REQUEST_PROBLEMS = {
     'This acknowledgement was given before.',
     'Nothing needs doing.',
   ),
+  job_finished: problem(
+    409,
+    'The job has ended',
+    'It succeeded or failed before it could be cancelled.',
+    'Read the job: what came of it is kept.',
+  ),
   invitation_used: problem(
     410,
     'The invitation is over',
@@ -251,6 +257,42 @@ export const REQUEST_PROBLEMS = {
     'The hub failed',
     'Something went wrong inside; it is logged under the request id.',
     'Try again; report the request id if it happens again.',
+  ),
+  job_given_up: problem(
+    500,
+    'The job was given up',
+    'The hub failed at it five times over, or its worker died each time; the log tells more.',
+    'Start it again; report its id if it happens again.',
+  ),
+  adjustment_not_computable: problem(
+    422,
+    'The network cannot be adjusted',
+    'The observations and the datum do not determine it; the detail says what is lacking.',
+    'Add observations, hold more points, or leave out what is not tied to the rest.',
+  ),
+  comparison_too_large: problem(
+    422,
+    'Too much to compare in one request',
+    'The two networks have more observations than are compared at once.',
+    'Compare adjustments of the setups around the points in question.',
+  ),
+  adjustment_not_applicable: problem(
+    409,
+    'The adjustment cannot be applied',
+    'Only a finished adjustment that converged, whose verdict is not fail, is applied, and once.',
+    'Read its verdict and do what it says; then adjust again.',
+  ),
+  adjustment_outdated: problem(
+    409,
+    'Control changed after the adjustment',
+    'A point has a newer version than the one that the adjustment started from; the errors say which.',
+    'Adjust again with the present control, then apply that.',
+  ),
+  adjustment_not_finished: problem(
+    409,
+    'The adjustment has no result',
+    'Its job still runs, failed or was cancelled.',
+    'Follow the job that the adjustment names.',
   ),
   unavailable: problem(
     503,
@@ -585,6 +627,42 @@ export const ITEM_PROBLEMS = {
     'No such person',
     'The person does not exist or the account is closed.',
     'Correct the id.',
+  ),
+  point_unknown: problem(
+    422,
+    'No control point of that name',
+    'The project has none, or the network does not reach it.',
+    'Check the name; the registry lists all points.',
+  ),
+  level_run_unknown: problem(
+    422,
+    'No level run of that id',
+    'The project has none.',
+    'Check the id; the list of level runs has all.',
+  ),
+  level_run_fails: problem(
+    422,
+    'A level run that fails',
+    'It does not close, so it holds a gross error somewhere.',
+    'Leave it out, and level again.',
+  ),
+  point_quarantined: problem(
+    422,
+    'A quarantined point places no network',
+    'Its coordinates are not trusted; it is found anew from the observations.',
+    'Leave it out of the datum, or trust the point again once it is proven.',
+  ),
+  observations_not_available: problem(
+    422,
+    'Observations that are not kept yet',
+    'The hub does not keep observations of that kind in a form that can be adjusted.',
+    'Leave the field out.',
+  ),
+  control_point_changed: problem(
+    422,
+    'A control point changed meanwhile',
+    'It has another version or status than when the adjustment was computed.',
+    'Adjust again with the present control.',
   ),
   shot_unknown: problem(
     422,

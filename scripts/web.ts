@@ -6,6 +6,7 @@ import { getConfig } from '@/lib/config';
 import { closing } from '@/lib/http/closing';
 import { createHubServer } from '@/lib/http/server';
 import { streams } from '@/lib/http/streams';
+import { prepareQueue } from '@/lib/jobs/queue';
 import { log } from '@/lib/log/log';
 
 /** How long requests under way may take to end after SIGTERM. */
@@ -13,6 +14,7 @@ const DRAIN_MS = 20_000;
 
 const { mode, host, port } = getConfig();
 await assertDurable();
+await prepareQueue();
 const dev = mode === 'development';
 // Clients offer upgrades that nobody asked for (h2c). The framework would take those requests from its server and close
 // them unanswered; it is given a server that gets none. Only in development it has a use for them.

@@ -1,21 +1,35 @@
-import { Logger, parseCronItems, run } from 'graphile-worker';
+import { EventEmitter } from 'node:events';
+import { Logger, parseCronItems, run, type WorkerEvents } from 'graphile-worker';
 import { assertDurable } from '@/db/durability';
 import { closeDatabase } from '@/db/tenant';
 import { getConfig } from '@/lib/config';
-import { CRON, TASKS } from '@/lib/jobs/tasks';
+import { Presence } from '@/lib/jobs/presence';
+import { CRON, tasks } from '@/lib/jobs/tasks';
 import { log } from '@/lib/log/log';
 import { systemRuntime } from '@/lib/runtime';
+import { runJob } from '@/lib/services/jobs/run';
 import { Courier } from '@/lib/services/webhookDeliveries/courier';
 
+let draining = false;
+
 await assertDurable();
+const { databaseUrl: connectionString } = getConfig();
+const presence = new Presence(connectionString);
+await presence.begin();
+const events: WorkerEvents = new EventEmitter();
+// Jobs are locked under the pool's id.
+events.on('pool:create', ({ workerPool }) => {
+  presence.add(workerPool.id).catch(giveUp);
+});
 const runner = await run({
-  connectionString: getConfig().databaseUrl,
+  connectionString,
   concurrency: 2,
+  events,
   // With them a stop waits until it is written what became of a job: by default a job that ends while the worker stops
   // stays locked for hours.
   preset: { worker: { completeJobBatchDelay: 0, failJobBatchDelay: 0 } },
   noHandleSignals: true,
-  taskList: TASKS,
+  taskList: tasks((job) => runJob(systemRuntime, job)),
   parsedCronItems: parseCronItems(CRON),
   logger: new Logger(() => (level, message) => {
     if (level === 'error' || level === 'warning') log().warn({ queue: level }, message);
@@ -25,14 +39,13 @@ const courier = new Courier(systemRuntime);
 courier.start();
 log().info('worker ready');
 
-let draining = false;
-
 /** Lets running jobs end, hands the others back. */
 async function drain(signal: string): Promise<void> {
   if (draining) return;
   draining = true;
   log().info({ signal }, 'worker draining');
   await Promise.all([runner.stop(), courier.stop()]);
+  await presence.end();
   await closeDatabase();
   process.exit(0);
 }

@@ -10,6 +10,7 @@ import {
   text,
   uuid,
 } from 'drizzle-orm/pg-core';
+import { adjustments } from './adjustments';
 import { instant, organizationId, tenantPolicy } from './columns';
 import { projects } from './projects';
 
@@ -59,6 +60,8 @@ export const controlPointVersions = pgTable(
     kind: text('kind').$type<'control' | 'benchmark' | 'target'>().notNull(),
     description: text('description'),
     submitted: jsonb('submitted').$type<SubmittedControl>().notNull(),
+    /** The adjustment that it comes from; null for one that was sent in. */
+    adjustmentId: uuid('adjustment_id'),
     createdBy: text('created_by').notNull(),
     createdAt: instant('created_at').notNull(),
   },
@@ -67,6 +70,10 @@ export const controlPointVersions = pgTable(
     foreignKey({
       columns: [t.organizationId, t.projectId, t.name],
       foreignColumns: [controlPoints.organizationId, controlPoints.projectId, controlPoints.name],
+    }),
+    foreignKey({
+      columns: [t.organizationId, t.adjustmentId],
+      foreignColumns: [adjustments.organizationId, adjustments.id],
     }),
     check('control_point_versions_kind', sql`${t.kind} in ('control', 'benchmark', 'target')`),
     tenantPolicy(t.organizationId),

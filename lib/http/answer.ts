@@ -1,6 +1,4 @@
-import type { Problem } from '@/lib/problem';
-import { REQUEST_PROBLEMS } from '@/openapi/problemCodes';
-import type { Problem as ProblemDocument } from '@/openapi/schemas/problem';
+import { type Problem, problemDocument } from '@/lib/problem';
 
 /** An answer with a status or headers of its own; verbs that answer plainly need none. */
 export class Reply {
@@ -51,20 +49,6 @@ export function attachmentResponse({ bytes, fileName }: Attachment, requestId: s
       'Request-Id': requestId,
     },
   });
-}
-
-export function problemDocument(problem: Problem, requestId: string, instance: string): ProblemDocument {
-  const { status, title } = REQUEST_PROBLEMS[problem.code];
-  return {
-    type: `/reference/problems/${problem.code}`,
-    title,
-    status,
-    detail: problem.message,
-    instance,
-    code: problem.code,
-    requestId,
-    ...(problem.options.errors ? { errors: [...problem.options.errors] } : {}),
-  };
 }
 
 /** Headers that belong to a problem's status. */

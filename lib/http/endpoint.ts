@@ -5,6 +5,7 @@ import { callerTransaction } from '@/lib/access/identify';
 import { getConfig } from '@/lib/config';
 import type { RawBody } from '@/lib/formats/body';
 import { log } from '@/lib/log/log';
+import { loggable } from '@/lib/log/loggable';
 import { Problem } from '@/lib/problem';
 import { systemRuntime as runtime, stopwatch } from '@/lib/runtime';
 import { answerOnce } from '@/lib/services/answerOnce';
@@ -18,12 +19,14 @@ import {
   type QueryOf,
   successStatus,
 } from '@/openapi/contract';
+import { Job } from '@/openapi/schemas/job';
 import type { Scope } from '@/openapi/scopes';
 import { Attachment, attachmentResponse, jsonResponse, problemResponse, Reply } from './answer';
 import { readCredential, requireSameOrigin } from './authenticate';
 import { checkAnswer } from './checkAnswer';
-import { loggable, problemOf } from './faults';
+import { problemOf } from './faults';
 import { type BodyInput, DEFAULT_LIMIT, readIdempotency, readInput, readParams, readQuery } from './input';
+import { jobHeaders } from './jobs';
 import { readBody } from './readBody';
 
 export const ADDRESS_HEADER = 'x-hubtack-address';
@@ -85,7 +88,12 @@ export function bodyEndpoint<C extends Contract>(
       };
       const { status, text, replayed } = await answerOnce(context, operation.id, produce, operation.secret);
       if (answer instanceof Attachment) return attachmentResponse(answer, context.requestId);
-      const headers = { ...answer?.headers, ...(replayed ? REPLAYED : {}) };
+      const isJob = operation.answers[status]?.json === Job;
+      const headers = {
+        ...answer?.headers,
+        ...(isJob ? jobHeaders(status, JSON.parse(text), context.runtime.now()) : {}),
+        ...(replayed ? REPLAYED : {}),
+      };
       return jsonResponse(status, text === '' ? null : text, context.requestId, headers);
     },
   });

@@ -1,8 +1,7 @@
 import type { Caller } from '@/lib/access/actor';
-import type { Problem } from '@/lib/problem';
+import { type Problem, problemDocument } from '@/lib/problem';
 import { stopwatch } from '@/lib/runtime';
 import type { eventsAfter } from '@/lib/services/events/list';
-import { problemDocument } from './answer';
 import { problemOf } from './faults';
 import type { Stream, Streams } from './streams';
 

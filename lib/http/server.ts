@@ -7,9 +7,9 @@ import {
 } from 'node:http';
 import type { Socket } from 'node:net';
 import { getConfig } from '@/lib/config';
-import { Problem } from '@/lib/problem';
+import { Problem, problemDocument } from '@/lib/problem';
 import { systemRuntime as runtime } from '@/lib/runtime';
-import { problemDocument, problemHeaders } from './answer';
+import { problemHeaders } from './answer';
 import { ADDRESS_HEADER } from './endpoint';
 import { guardRequest, isApi } from './guard';
 

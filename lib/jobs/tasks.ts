@@ -1,15 +1,26 @@
 import type { CronItem, TaskList } from 'graphile-worker';
 import { log } from '@/lib/log/log';
 import { systemRuntime } from '@/lib/runtime';
+import { JOB_TASK, QueuedJob } from './queue';
 import { sweep } from './sweep';
 
-/** What the worker can do; each task may be run twice without harm. */
-export const TASKS: TaskList = {
-  sweep: async () => {
-    const removed = await sweep(systemRuntime);
-    log().info({ task: 'sweep', removed }, 'job done');
-  },
-};
+/**
+ * What the worker can do; each task may be run twice without harm.
+ *
+ * @param runJob does what the row of a job says
+ */
+export function tasks(runJob: (job: QueuedJob) => Promise<string>): TaskList {
+  return {
+    sweep: async () => {
+      const removed = await sweep(systemRuntime);
+      log().info({ task: 'sweep', removed }, 'job done');
+    },
+    [JOB_TASK]: async (payload) => {
+      const job = QueuedJob.parse(payload);
+      log().info({ task: JOB_TASK, ...job, outcome: await runJob(job) }, 'job done');
+    },
+  };
+}
 
 /** When it does so without being asked. */
 export const CRON: CronItem[] = [

@@ -1,10 +1,12 @@
 import type { Contract } from '@/openapi/contract';
+import * as adjustments from './adjustments';
 import * as apiKeys from './apiKeys';
 import * as control from './control';
 import * as design from './design';
 import * as grade from './grade';
 import * as hub from './hub';
 import * as instruments from './instruments';
+import * as jobs from './jobs';
 import * as levelling from './levelling';
 import * as people from './people';
 import * as projects from './projects';
@@ -29,6 +31,8 @@ const modules = [
   design,
   grade,
   levelling,
+  adjustments,
+  jobs,
   record,
   webhooks,
 ];

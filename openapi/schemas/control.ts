@@ -41,6 +41,10 @@ export const ControlSubmission = z
     },
   });
 
+const AdjustmentId = Id.nullable().meta({
+  description: 'The adjustment that the version comes from; null where it was sent in.',
+});
+
 export const ControlPoint = z
   .object({
     name: z.string(),
@@ -52,6 +56,7 @@ export const ControlPoint = z
     sigma: Sigma,
     sigmaSource: z.enum(['stated', 'projectDefault']),
     description: z.string().nullable(),
+    adjustmentId: AdjustmentId,
     version: z.int(),
     units: AnswerUnits,
     updatedAt: Moment,
@@ -94,6 +99,7 @@ export const ControlHistory = z
         sigmaSource: z.enum(['stated', 'projectDefault']),
         kind: ControlKind,
         description: z.string().nullable(),
+        adjustmentId: AdjustmentId,
         createdAt: Moment,
         createdBy: z.string(),
       }),

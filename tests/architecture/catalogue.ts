@@ -18,6 +18,8 @@ export const APPEND_ONLY = [
   'setup_releases',
   'surface_data',
   'layers',
+  'adjustment_results',
+  'adjustment_observations',
   'grade_checks',
   'bench_checks',
   'events',

@@ -1,26 +1,15 @@
+import { setTimeout as pause } from 'node:timers/promises';
 import { afterAll, beforeAll, beforeEach, describe, expect, inject, it } from 'vitest';
 import { closeDatabase } from '@/db/tenant';
-import { environmentOf, type HubDatabase, newDatabase } from '@/tests/setup/hub';
-import { startProgram } from '@/tests/setup/program';
+import { type HubDatabase, newDatabase } from '@/tests/setup/hub';
 import { callerRoles } from '@/tests/setup/roles';
 import { closeBarrier, STOP_HERE, STOP_SWEEPS } from './barrier';
 import { openSql, type Sql } from './sql';
 import { until } from './until';
+import { LONGER_AGO, startWorker, type Worker } from './workers';
 import './patience';
 
-/** The queue looks for jobs of the dead at a moment of its first minute that it draws: now it is the first. */
-const AT_ONCE = { NODE_OPTIONS: '--import=data:text/javascript,Math.random=()=>0' };
 const WELL = { code: 0, signal: null };
-
-type Worker = Awaited<ReturnType<typeof startWorker>>;
-
-async function startWorker(database: HubDatabase, further: Record<string, string> = {}) {
-  const program = startProgram('scripts/worker.ts', environmentOf(database, further));
-  const lines: string[] = [];
-  program.listen((line) => lines.push(line));
-  await program.said(/worker ready/);
-  return { ...program, jobsDone: () => lines.filter((line) => line.includes('"job done"')).length };
-}
 
 describe('the worker', () => {
   let database: HubDatabase;
@@ -112,25 +101,38 @@ describe('the worker', () => {
     expect(await jobs()).toEqual([{ attempts: 0, taken: false }]);
   });
 
-  it('leaves a job that it was killed in undone, for another to take when its time is over', async () => {
+  it('leaves a job that it was killed in undone, for another to take as soon as it is known to be dead', async () => {
     const barrier = await holdSweeps();
     // It finds the job that was left.
     const killed = await startWorker(database);
     const [session] = await barrier.waiting(1);
+    const other = await startWorker(database);
+    await sql(LONGER_AGO);
     await killed.stop('SIGKILL');
     await barrier.open();
     await until('its session has ended', async () => {
       const sessions = await sql('select from pg_stat_activity where pid = $1', [session]);
       return sessions.length === 0;
     });
-    expect(await expired()).toHaveLength(1);
-    expect(await jobs()).toEqual([{ attempts: 1, taken: true }]);
-
-    await sql(`update graphile_worker._private_jobs set locked_at = locked_at - interval '4 hours 1 minute'`);
-    const other = await startWorker(database, AT_ONCE);
     await untilDone();
+    await until('the log tells of it', () => other.jobsDone() === 1);
     expect(await other.stop()).toEqual(WELL);
-    expect(other.jobsDone()).toBe(1);
+    expect(other.count('jobs of a dead worker handed back')).toBe(1);
     expect(await expired()).toEqual([]);
+  });
+
+  it('keeps its job however long it takes, while another looks after the dead', async () => {
+    const pair = await Promise.all([startWorker(database), startWorker(database)]);
+    const barrier = await holdSweeps();
+    await addJobs();
+    await barrier.waiting(1);
+    await sql(LONGER_AGO);
+    // Longer than from one look to the next, and shorter than the barrier may hold.
+    await pause(6_000);
+    expect(await jobs()).toEqual([{ attempts: 1, taken: true }]);
+    await barrier.open();
+    await untilDone();
+    for (const worker of pair) expect(await worker.stop()).toEqual(WELL);
+    expect(pair.map((worker) => worker.jobsDone()).sort()).toEqual([0, 1]);
   });
 });

@@ -25,6 +25,7 @@ export function presentCoordinates(version: VersionRow, unit: LengthUnit) {
     sigmaSource: submitted.sigma ? ('stated' as const) : ('projectDefault' as const),
     kind: version.kind,
     description: version.description,
+    adjustmentId: version.adjustmentId,
   };
 }
 

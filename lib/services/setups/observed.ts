@@ -43,7 +43,8 @@ export function isNamed(shot: ObservedShot): shot is Shot {
   return shot.target !== null;
 }
 
-function asShot(row: InferSelectModel<typeof observations>): ObservedShot {
+/** An observation as the engine takes it; without the target that the hub found for it. */
+export function asShot(row: InferSelectModel<typeof observations>): ObservedShot {
   return {
     id: row.clientId,
     target: row.identified ? null : row.target,

@@ -3,12 +3,14 @@ import { figure } from '@/app/reference/methods/figures';
 import type { Method } from '@/app/reference/methods/method';
 import { Figures, Part, Points } from '@/app/reference/methods/parts';
 import { CRITICAL_W } from '@/lib/compute/statistics/distributions';
+import { METHOD, METHOD_VERSION } from '@/lib/services/adjustments/result';
 
 export const network: Method = {
   slug: 'network',
   title: 'Network adjustment',
   lead: 'Setups, levelled differences and rover positions of a whole site in one least-squares solution: every control point with its covariance, and every observation with its test.',
   group: 'Levels and control',
+  carried: { method: METHOD, version: METHOD_VERSION },
   body: (
     <>
       <Part title="Observations">
