@@ -4,9 +4,10 @@ import { assertDurable } from '@/db/durability';
 import { closeDatabase } from '@/db/tenant';
 import { getConfig } from '@/lib/config';
 import { Presence } from '@/lib/jobs/presence';
-import { CRON, tasks } from '@/lib/jobs/tasks';
+import { CRON, tasks, WATCH_CONTROL } from '@/lib/jobs/tasks';
 import { log } from '@/lib/log/log';
 import { systemRuntime } from '@/lib/runtime';
+import { watchRecent } from '@/lib/services/control/watchRecent';
 import { runJob } from '@/lib/services/jobs/run';
 import { Courier } from '@/lib/services/webhookDeliveries/courier';
 
@@ -29,7 +30,10 @@ const runner = await run({
   // stays locked for hours.
   preset: { worker: { completeJobBatchDelay: 0, failJobBatchDelay: 0 } },
   noHandleSignals: true,
-  taskList: tasks((job) => runJob(systemRuntime, job)),
+  taskList: {
+    ...tasks((job) => runJob(systemRuntime, job)),
+    [WATCH_CONTROL]: () => watchRecent(systemRuntime),
+  },
   parsedCronItems: parseCronItems(CRON),
   logger: new Logger(() => (level, message) => {
     if (level === 'error' || level === 'warning') log().warn({ queue: level }, message);

@@ -14,6 +14,31 @@ import { adjustments } from './adjustments';
 import { instant, organizationId, tenantPolicy } from './columns';
 import { projects } from './projects';
 
+/** The last time that somebody, or the hub itself, said how far a point is to be trusted. */
+export interface StatusAct {
+  by: { kind: 'person' | 'key' | 'job'; name: string };
+  at: string;
+  note: string;
+  /** What the hub saw, where it was the hub; metres. */
+  seen: SeenDisplacement | null;
+}
+
+/** Where a mark stands minus where it was published, by several setups. */
+export interface SeenDisplacement {
+  version: number;
+  easting: number;
+  northing: number;
+  elevation: number | null;
+  /** 2 × 2 or 3 × 3, row by row. */
+  covariance: number[];
+  statistic: number;
+  critical: number;
+  /** Setups and level runs that agree with it, the first one first. */
+  setups: string[];
+  /** When the mark was last seen where it was published; null where it never was. */
+  lastGoodAt: string | null;
+}
+
 export const controlPoints = pgTable(
   'control_points',
   {
@@ -22,6 +47,8 @@ export const controlPoints = pgTable(
     name: text('name').notNull(),
     currentVersion: integer('current_version').notNull(),
     status: text('status').$type<'trusted' | 'suspect' | 'quarantined'>().notNull(),
+    /** Null as long as nobody has said anything. */
+    statusAct: jsonb('status_act').$type<StatusAct>(),
     updatedAt: instant('updated_at').notNull(),
   },
   (t) => [

@@ -57,6 +57,7 @@ export const gradeChecks = pgTable(
     unique('grade_checks_client_id').on(t.organizationId, t.projectId, t.clientId),
     index('grade_checks_layer').on(t.organizationId, t.projectId, t.layerName, t.id),
     index('grade_checks_upload').on(t.organizationId, t.uploadId),
+    index('grade_checks_setup').on(t.organizationId, t.setupId, t.observedAt),
     foreignKey({
       columns: [t.organizationId, t.projectId],
       foreignColumns: [projects.organizationId, projects.id],

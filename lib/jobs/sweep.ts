@@ -4,7 +4,7 @@ import { directoryTransaction, tenantTransaction } from '@/db/tenant';
 import type { Runtime } from '@/lib/runtime';
 
 /** Every organization that the directory knows. */
-async function organizationIds(): Promise<string[]> {
+export async function organizationIds(): Promise<string[]> {
   return directoryTransaction(async ({ db }) => {
     const rows = await db.selectDistinct({ id: directory.organizationId }).from(directory);
     return rows.map(({ id }) => id);

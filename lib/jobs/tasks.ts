@@ -22,7 +22,11 @@ export function tasks(runJob: (job: QueuedJob) => Promise<string>): TaskList {
   };
 }
 
+/** Its work is a service's: the worker brings it in. */
+export const WATCH_CONTROL = 'watchControl';
+
 /** When it does so without being asked. */
 export const CRON: CronItem[] = [
   { task: 'sweep', match: '*/10 * * * *', options: { backfillPeriod: 0 }, identifier: 'sweep' },
+  { task: WATCH_CONTROL, match: '*/10 * * * *', options: { backfillPeriod: 0 }, identifier: WATCH_CONTROL },
 ];

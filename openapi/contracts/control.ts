@@ -1,11 +1,13 @@
 import * as z from 'zod';
 import { contract } from '@/openapi/contract';
 import { Flag, PointParams, ProjectParams } from '@/openapi/params';
+import { Affected } from '@/openapi/schemas/affected';
 import {
   ControlHistory,
   ControlPoint,
   ControlPointPage,
   ControlPointPatch,
+  ControlPointSheet,
   ControlReceipt,
   ControlStatus,
   ControlSubmission,
@@ -57,11 +59,11 @@ export const getControlPoint = contract({
   tag: 'Control',
   summary: 'Read a control point',
   description:
-    'Its present version. Asked in the unit it was sent in, it answers the very numbers that were sent.',
+    'Its present version, who said how far it is to be trusted, and what setups show of it. Asked in the unit it was sent in, it answers the very numbers that were sent.',
   access: 'control:read',
   params: PointParams,
   query: LengthQuery,
-  answers: { 200: { description: 'The control point.', json: ControlPoint } },
+  answers: { 200: { description: 'The control point.', json: ControlPointSheet } },
 });
 
 export const updateControlPoint = contract({
@@ -70,7 +72,8 @@ export const updateControlPoint = contract({
   path: '/projects/{projectId}/control-points/{pointName}',
   tag: 'Control',
   summary: 'Trust, suspect or quarantine a control point',
-  description: 'A quarantined point takes no part in new setups; it is never deleted.',
+  description:
+    'A quarantined point takes no part in new setups; it is never deleted. The hub itself suspects a trusted point that setups show to have moved, and never goes against what somebody has said here.',
   access: 'control:write',
   params: PointParams,
   query: LengthQuery,
@@ -89,4 +92,19 @@ export const getControlPointHistory = contract({
   params: PointParams,
   query: LengthQuery,
   answers: { 200: { description: 'Versions and residuals.', json: ControlHistory } },
+});
+
+export const getControlPointAffected = contract({
+  id: 'getControlPointAffected',
+  method: 'get',
+  path: '/projects/{projectId}/control-points/{pointName}/affected',
+  tag: 'Control',
+  summary: 'What hangs on a control point',
+  description:
+    'Setups that used it since it was last seen in its place, with their releases, bench checks and grade checks, and blades that were benched on it.',
+  access: 'setups:read',
+  params: PointParams,
+  query: PageQuery,
+  answers: { 200: { description: 'What is affected.', json: Affected } },
+  problems: ['cursor_invalid'],
 });

@@ -1,6 +1,7 @@
 import * as z from 'zod';
 import { contract } from '@/openapi/contract';
 import { AcknowledgementParams, Flag, ProjectParams, SetupParams } from '@/openapi/params';
+import { Affected } from '@/openapi/schemas/affected';
 import { Name, PageQuery, Verdict } from '@/openapi/schemas/primitives';
 import {
   Acknowledgement,
@@ -12,6 +13,7 @@ import {
   Setup,
   SetupPage,
   SetupStatus,
+  SetupWatch,
   Withdrawal,
   WithdrawCreate,
 } from '@/openapi/schemas/setup';
@@ -49,6 +51,35 @@ export const getSetup = contract({
   params: SetupParams,
   query: LengthQuery,
   answers: { 200: { description: 'The setup.', json: Setup } },
+});
+
+export const getSetupChecks = contract({
+  id: 'getSetupChecks',
+  method: 'get',
+  path: '/projects/{projectId}/setups/{setupId}/checks',
+  tag: 'Setups',
+  summary: 'Checks of a setup over time',
+  description:
+    'All checks since the fit, oldest first, with their differences and the drift of the instrument by marks of the fit; when it last agreed, and until when it is valid.',
+  access: 'setups:read',
+  params: SetupParams,
+  query: LengthQuery,
+  answers: { 200: { description: 'The checks.', json: SetupWatch } },
+});
+
+export const getSetupAffected = contract({
+  id: 'getSetupAffected',
+  method: 'get',
+  path: '/projects/{projectId}/setups/{setupId}/affected',
+  tag: 'Setups',
+  summary: 'What hangs on a setup',
+  description:
+    'Releases, bench checks and grade checks from this setup and its refits since its last check that agreed: what is affected where it is withdrawn or has moved.',
+  access: 'setups:read',
+  params: SetupParams,
+  query: PageQuery,
+  answers: { 200: { description: 'What is affected.', json: Affected } },
+  problems: ['cursor_invalid'],
 });
 
 export const refitSetup = contract({

@@ -91,6 +91,10 @@ export const BenchCheck = z
     reasons: z.array(Note),
     instruction: z.string(),
     cautions: z.array(z.string()),
+    void: Note.nullable().meta({
+      description:
+        'Why it does not count any more: its setup was withdrawn, refitted or found wrong. Null where it stands, and in receipts, which tell how it came in.',
+    }),
     uploadId: Id,
     units: AnswerUnits,
   })

@@ -45,6 +45,87 @@ const AdjustmentId = Id.nullable().meta({
   description: 'The adjustment that the version comes from; null where it was sent in.',
 });
 
+const maybe = z.number().nullable();
+
+export const ControlStatusAct = z
+  .object({
+    by: z.object({
+      kind: z.enum(['person', 'key', 'job']).meta({ description: 'job: the hub itself.' }),
+      name: z.string(),
+    }),
+    at: Moment,
+    text: z.string().meta({ description: 'Why, in the words of whoever did it.' }),
+    lastGoodAt: Moment.nullable().meta({
+      description: 'Where the hub suspected it: when it was last seen in its place; null where it never was.',
+    }),
+  })
+  .meta({ id: 'ControlStatusAct' });
+
+export const ControlHealth = z
+  .object({
+    finding: z.enum(['steady', 'moved', 'unknown']).meta({
+      description:
+        'moved: two setups at least show it elsewhere, while the other marks agree and nothing else explains it as well. unknown: no setup tells.',
+    }),
+    text: z.string(),
+    action: z.string().optional(),
+    displacement: z
+      .object({
+        easting: z.number(),
+        northing: z.number(),
+        elevation: maybe,
+        horizontal: z.number(),
+        azimuth: z.number().meta({ description: 'Of the horizontal displacement, degrees from grid north.' }),
+        standardDeviations: z.object({ easting: z.number(), northing: z.number(), elevation: maybe }),
+      })
+      .nullable()
+      .meta({
+        description:
+          'Where it stands minus where it was published, by the other marks: in all setups, or in those since it moved.',
+      }),
+    test: z.object({ value: z.number(), critical: z.number(), degreesOfFreedom: z.int() }).nullable().meta({
+      description:
+        '∇ᵀQ⁻¹∇ of the displacement against χ²: under one look in a hundred at control that stands finds anything.',
+    }),
+    movedBetween: z
+      .object({ after: Moment.nullable(), before: Moment })
+      .nullable()
+      .meta({ description: 'When it was last seen in its place, if ever, and first seen elsewhere.' }),
+    sightings: z
+      .array(
+        z.object({
+          setupId: Id.nullable(),
+          levelRunId: Id.nullable(),
+          station: z.string().meta({ description: 'Of the setup; the clientId of a level run.' }),
+          observedAt: Moment,
+          crew: z
+            .string()
+            .nullable()
+            .meta({ description: 'Who or what sent the setup in; null for a level run.' }),
+          moved: z.boolean().meta({ description: 'It agrees with the mark having moved.' }),
+          difference: z
+            .object({ easting: z.number(), northing: z.number(), elevation: maybe })
+            .nullable()
+            .meta({
+              description:
+                'Place of the mark by all the others minus published; null where they do not determine it.',
+            }),
+          standardDeviations: z
+            .object({ easting: z.number(), northing: z.number(), elevation: maybe })
+            .nullable(),
+        }),
+      )
+      .meta({
+        description:
+          'Setups that are heard on it, the newest 40 at most, and level runs between it and other marks that they saw; newest first.',
+      }),
+  })
+  .meta({
+    id: 'ControlHealth',
+    description:
+      'What setups show of a control point in its present version, all of them in one adjustment, its published standard deviation counted once. Setups that a fault of their own explains are not heard.',
+  });
+
 export const ControlPoint = z
   .object({
     name: z.string(),
@@ -58,10 +139,17 @@ export const ControlPoint = z
     description: z.string().nullable(),
     adjustmentId: AdjustmentId,
     version: z.int(),
+    statusAct: ControlStatusAct.nullable().meta({
+      description: 'Who set the status last, and why; null as long as nobody did.',
+    }),
     units: AnswerUnits,
     updatedAt: Moment,
   })
   .meta({ id: 'ControlPoint' });
+
+export const ControlPointSheet = ControlPoint.extend({ health: ControlHealth }).meta({
+  id: 'ControlPointSheet',
+});
 
 export const ControlReceipt = z
   .object({

@@ -81,6 +81,10 @@ export const GradeCheck = z
     offset: maybe,
     surface: z.object({ id: Id, sha256: z.string() }),
     setupId: Id.nullable(),
+    void: Note.nullable().meta({
+      description:
+        'Why it does not count any more: its setup was withdrawn, refitted or found wrong. Null where it stands, and in receipts, which tell how it came in.',
+    }),
     uploadId: Id,
     units: AnswerUnits,
   })

@@ -36,6 +36,29 @@ export const SetupCheckTarget = z
   })
   .meta({ id: 'SetupCheckTarget' });
 
+const measured = (description: string) =>
+  z.object({ value: figure, standardDeviation: figure }).meta({ description });
+
+export const SetupDrift = z
+  .object({
+    marks: z.array(z.string()).meta({ description: 'Marks of the fit that were shot again.' }),
+    easting: measured('How the instrument has shifted.').nullable(),
+    northing: measured('How the instrument has shifted.').nullable(),
+    height: measured('How the instrument has risen.').nullable(),
+    orientationArcsec: measured('How its circle has turned, clockwise.'),
+    test: z.object({ value: figure, critical: figure, degreesOfFreedom: z.int() }).meta({
+      description: 'Of the whole drift against χ² at 99 %.',
+    }),
+    significant: z.boolean(),
+    text: z.string(),
+    action: z.string().optional(),
+  })
+  .meta({
+    id: 'SetupDrift',
+    description:
+      'How the instrument stands against the fit: later minus first. A shift is told by two marks or more; with one the instrument is taken to stand on its place.',
+  });
+
 export const SetupCheck = z
   .object({
     id: Id,
@@ -48,6 +71,10 @@ export const SetupCheck = z
     observedAt: Moment,
     agreed: z.boolean(),
     targets: z.array(SetupCheckTarget),
+    drift: SetupDrift.nullable().meta({
+      description:
+        'Null where no mark of the fit was shot again, and for checks from before it was computed.',
+    }),
     setupVerdict: Verdict.meta({ description: 'The setup’s verdict with this check.' }),
     carriedFrom: Id.nullable().meta({
       description: 'The check that this is, where a refit judged its shots again; null as it came in.',
@@ -107,6 +134,7 @@ export const Explanation = z
       'stationMoved',
       'instrumentHeight',
       'wrongFoot',
+      'instrumentMoved',
       'unexplained',
     ]),
     subject: z.string().nullable().meta({ description: 'The mark, or the two marks, that it concerns.' }),
@@ -241,6 +269,20 @@ export const Setup = z
 
 export const SetupPage = page('SetupPage', Setup);
 
+export const SetupWatch = z
+  .object({
+    setupId: Id,
+    station: z.string(),
+    status: SetupStatus,
+    observedAt: Moment,
+    validUntil: Moment.nullable(),
+    lastAgreed: z.object({ checkId: Id, observedAt: Moment }).nullable(),
+    reasons: z.array(Note).meta({ description: 'What the checks say of the setup as it stands now.' }),
+    checks: z.array(SetupCheck),
+    units: AnswerUnits,
+  })
+  .meta({ id: 'SetupWatch', description: 'The checks of a setup over time, oldest first.' });
+
 export const RefitCreate = z
   .strictObject({
     exclude: z.array(z.string().min(1).max(128)).min(1).max(500).meta({ description: 'clientIds of shots.' }),
@@ -301,6 +343,9 @@ export const Acknowledgement = z
     setupId: Id,
     station: z.string(),
     text: z.string(),
+    withdrawnBy: z.string().meta({ description: 'Who withdrew the setup.' }),
+    withdrawnAt: Moment,
+    reason: z.string().nullable().meta({ description: 'Why, as whoever withdrew it said.' }),
     openedAt: Moment,
     acknowledgedAt: Moment.nullable(),
     acknowledgedBy: z.string().nullable(),

@@ -197,7 +197,7 @@ describe('check shots', () => {
     await post('apart-u', check('apart-c', 'apart', 'HT-5', moved)).expect(201);
     const { verdict, reasons } = await read(setup.id);
     expect(verdict).toBe('hold');
-    expect(codes(reasons)).toEqual(['check_disagrees', 'not_checked']);
+    expect(codes(reasons)).toEqual(['check_disagrees']);
   });
 
   it('find their setup by client id or id, also one of the same upload', async () => {

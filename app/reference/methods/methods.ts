@@ -2,6 +2,7 @@ import { backsight } from './content/backsight';
 import { benchCheck } from './content/benchCheck';
 import { checkShots } from './content/checkShots';
 import { collimation } from './content/collimation';
+import { controlHealth } from './content/controlHealth';
 import { distances } from './content/distances';
 import { explanations } from './content/explanations';
 import { faces } from './content/faces';
@@ -15,6 +16,7 @@ import { network } from './content/network';
 import { partialResection } from './content/partialResection';
 import { pegTest } from './content/pegTest';
 import { ray } from './content/ray';
+import { setupDrift } from './content/setupDrift';
 import { setupForecast } from './content/setupForecast';
 import { setupVerdict } from './content/setupVerdict';
 import { statistics } from './content/statistics';
@@ -37,11 +39,13 @@ export const METHODS: readonly Method[] = [
   leaveOneOut,
   setupVerdict,
   checkShots,
+  setupDrift,
   explanations,
   setupForecast,
   levelRun,
   pegTest,
   network,
+  controlHealth,
   surfaces,
   gradeCheck,
   lots,

@@ -53,3 +53,13 @@ export class SingularError extends Error {
     this.name = 'SingularError';
   }
 }
+
+/** The answer of an attempt, null where the observations do not determine it. */
+export function ifDetermined<T>(attempt: () => T): T | null {
+  try {
+    return attempt();
+  } catch (error) {
+    if (error instanceof SingularError) return null;
+    throw error;
+  }
+}

@@ -1,4 +1,4 @@
-import { type MeanReading, meanFaces, meanOf } from './faces';
+import { meanFaces, meanOf } from './faces';
 import type { InstrumentAccuracy } from './instrument';
 import { polarCovariance, polarJacobian, polarPoint, STATION_UNKNOWNS, type Station } from './polarPoint';
 import type { ControlMark, Shot } from './shots';
@@ -33,47 +33,89 @@ export interface CheckDifference {
   vertical: CheckOutcome | null;
 }
 
-/**
- * Differences of check shots against published control, with the uncertainty of setup, shot and mark combined.
- * A mark that was in the fit is correlated with the station; that correlation is in u.
- *
- * @param crossCovariance covariance (5 × 3) of the station with the published coordinates of marks of its fit
- * @param scale σ₀ that the station's covariance was multiplied by: it holds for the marks of the fit as well
- */
-export function checkDifferences(input: {
+/** A reflector that was shot later, with its mark as published. */
+export interface LaterSight {
+  mark: ControlMark;
+  targetHeight: number;
+  /** Ids of its shots. */
+  shots: string[];
+  reading: { direction: number; zenith: number; distance: number };
+  /** Of the readings' means and of the reflector as it stood; what single faces leave in is not among them. */
+  sigmas: { direction: number; zenith: number; distance: number; targetHeight: number; centring: number };
+  /** Directions, zenith angles that were read in one face only keep the instrument's collimation and index. */
+  singleFace: { direction: boolean; zenith: boolean };
+}
+
+export interface LaterShots {
   shots: readonly Shot[];
   control: ReadonlyMap<string, ControlMark>;
-  station: Station;
-  heightDetermined: boolean;
-  crossCovariance: ReadonlyMap<string, ArrayLike<number>>;
-  scale: number;
   accuracy: InstrumentAccuracy;
-  surroundings: Surroundings;
   ppm: number | null;
-  tolerance: Tolerance;
-}): CheckDifference[] {
-  const { control, station, accuracy, surroundings, tolerance } = input;
-  const { erections, readings } = meanFaces(input.shots, accuracy, input.ppm);
-  return erections.flatMap((erection, index): CheckDifference[] => {
+}
+
+/** Shots from a setup that stands, meaned by the reflector as it stood; those that were not fully read say nothing. */
+export function laterSights({ shots, control, accuracy, ppm }: LaterShots): LaterSight[] {
+  const { erections, readings } = meanFaces(shots, accuracy, ppm);
+  return erections.flatMap((erection, index): LaterSight[] => {
     const mark = control.get(erection.target);
     const own = readings.filter((reading) => reading.erection === index);
     const direction = meanOf(own, 'direction');
     const zenith = meanOf(own, 'zenith');
     const distance = meanOf(own, 'distance');
     if (!mark || !direction || !zenith || !distance) return [];
-    const reading = { direction: direction.value, zenith: zenith.value, distance: distance.value };
-    const point = polarPoint(station, { ...reading, targetHeight: erection.targetHeight }, surroundings);
-    const collimation = (mean: MeanReading) => (mean.single ? accuracy.collimation : 0);
-    const scale = input.ppm === null ? surroundings.unknownAtmospherePpm * 1e-6 * distance.value : 0;
+    const { targetHeight } = erection;
+    return [
+      {
+        mark,
+        targetHeight,
+        shots: shots.flatMap((shot) =>
+          shot.target === mark.name && shot.targetHeight === targetHeight ? shot.id : [],
+        ),
+        reading: { direction: direction.value, zenith: zenith.value, distance: distance.value },
+        sigmas: {
+          direction: direction.sigma,
+          zenith: zenith.sigma,
+          distance: distance.sigma,
+          targetHeight: erection.heightSigma,
+          centring: erection.centringSigma,
+        },
+        singleFace: { direction: direction.single, zenith: zenith.single },
+      },
+    ];
+  });
+}
+
+/** A fitted setup, as later shots are compared with it. */
+export interface FittedSetup {
+  station: Station;
+  heightDetermined: boolean;
+  /** Covariance (5 × 3) of the station with the published coordinates of marks of its fit. */
+  crossCovariance: ReadonlyMap<string, ArrayLike<number>>;
+  /** σ₀ that the station's covariance was multiplied by: it holds for the marks of the fit as well. */
+  scale: number;
+  surroundings: Surroundings;
+}
+
+/**
+ * Differences of check shots against published control, with the uncertainty of setup, shot and mark combined.
+ * A mark that was in the fit is correlated with the station; that correlation is in u.
+ */
+export function checkDifferences(
+  input: LaterShots & FittedSetup & { tolerance: Tolerance },
+): CheckDifference[] {
+  const { station, accuracy, surroundings, tolerance } = input;
+  return laterSights(input).map(({ mark, targetHeight, shots, reading, sigmas, singleFace }) => {
+    const point = polarPoint(station, { ...reading, targetHeight }, surroundings);
+    const collimation = (single: boolean) => (single ? accuracy.collimation : 0);
+    const scale = input.ppm === null ? surroundings.unknownAtmospherePpm * 1e-6 * reading.distance : 0;
     const covariance = polarCovariance(
       station,
       reading,
       {
-        direction: Math.hypot(direction.sigma, collimation(direction) / Math.sin(zenith.value)),
-        zenith: Math.hypot(zenith.sigma, collimation(zenith)),
-        distance: Math.hypot(distance.sigma, scale),
-        targetHeight: erection.heightSigma,
-        centring: erection.centringSigma,
+        ...sigmas,
+        direction: Math.hypot(sigmas.direction, collimation(singleFace.direction) / Math.sin(reading.zenith)),
+        zenith: Math.hypot(sigmas.zenith, collimation(singleFace.zenith)),
+        distance: Math.hypot(sigmas.distance, scale),
       },
       surroundings,
     );
@@ -89,22 +131,18 @@ export function checkDifferences(input: {
       (covariance[0] + covariance[4]) / 2 + Math.hypot((covariance[0] - covariance[4]) / 2, covariance[1]);
     const uHorizontal = Math.sqrt(worst);
     const uVertical = up === null ? null : Math.sqrt(covariance[8]);
-    return [
-      {
-        target: mark.name,
-        version: mark.version,
-        inFit: cross !== undefined,
-        status: mark.status,
-        published: { easting: mark.easting, northing: mark.northing, elevation: mark.elevation },
-        shots: input.shots.flatMap(({ id, target, targetHeight }) =>
-          target === mark.name && targetHeight === erection.targetHeight ? id : [],
-        ),
-        difference: { easting: east, northing: north, elevation: up },
-        uncertainty: { horizontal: uHorizontal, vertical: uVertical },
-        horizontal: outcome(Math.hypot(east, north), uHorizontal, tolerance.horizontal),
-        vertical: up === null || uVertical === null ? null : outcome(up, uVertical, tolerance.vertical),
-      },
-    ];
+    return {
+      target: mark.name,
+      version: mark.version,
+      inFit: cross !== undefined,
+      status: mark.status,
+      published: { easting: mark.easting, northing: mark.northing, elevation: mark.elevation },
+      shots,
+      difference: { easting: east, northing: north, elevation: up },
+      uncertainty: { horizontal: uHorizontal, vertical: uVertical },
+      horizontal: outcome(Math.hypot(east, north), uHorizontal, tolerance.horizontal),
+      vertical: up === null || uVertical === null ? null : outcome(up, uVertical, tolerance.vertical),
+    };
   });
 }
 

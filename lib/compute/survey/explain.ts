@@ -1,6 +1,6 @@
 import { Cofactors } from '@/lib/compute/adjustment/cofactors';
 import { globalTest } from '@/lib/compute/adjustment/globalTest';
-import { SingularError } from '@/lib/compute/adjustment/model';
+import { ifDetermined } from '@/lib/compute/adjustment/model';
 import { type Solution, solve } from '@/lib/compute/adjustment/solve';
 import { suspiciousStart, withSuspicions } from '@/lib/compute/adjustment/suspicions';
 import { CRITICAL_W } from '@/lib/compute/statistics/distributions';
@@ -25,6 +25,8 @@ export interface Explanation {
   size: number | null;
   /** Only a part of the fault shows in the shots: it may be larger. */
   atLeast?: boolean;
+  /** Turn of an instrument that moved, rad; `size` is null where it has only turned. */
+  turn?: number;
   weight: number;
 }
 
@@ -40,6 +42,7 @@ export const ODDS: Record<Fault, number> = {
   targetsSwapped: 0.01,
   distanceScale: 0.005,
   wrongFoot: 0.005,
+  instrumentMoved: 0.03,
   singleFace: 0.005,
   stationMoved: 0.02,
   instrumentHeight: 0.03,
@@ -61,13 +64,14 @@ export function markToBlame([first]: readonly Explanation[]): string | null {
 /** What common faults move a station by they move the start by as well, m. */
 const DRAGGED = 0.1;
 
-interface Candidate {
-  fault: Fault;
-  subject: string[];
-  size: number | null;
-  atLeast?: boolean;
+export interface Candidate extends Omit<Explanation, 'weight'> {
   evidence: number;
 }
+
+/** The only explanation where everything fits. */
+export const NOTHING_TO_EXPLAIN: readonly Explanation[] = [
+  { fault: 'none', subject: [], size: null, weight: 1 },
+];
 
 /**
  * What would explain residuals that do not fit: single faults, each tried as further unknowns of the same adjustment
@@ -81,19 +85,30 @@ export function explain(adjusted: AdjustedStation, standardised: Float64Array): 
   const { weightedSquares, degreesOfFreedom } = solution;
   const outlying = standardised.some((w) => Math.abs(w) > CRITICAL_W);
   const fits = solution.converged && !outlying && globalTest(weightedSquares, degreesOfFreedom).passed;
-  if (fits) return [{ fault: 'none', subject: [], size: null, weight: 1 }];
+  if (fits) return [...NOTHING_TO_EXPLAIN];
 
-  const bare = { subject: [], size: null };
-  const candidates: Candidate[] = [
-    { ...bare, fault: 'none', evidence: logEvidence(weightedSquares) },
-    { ...bare, fault: 'unexplained', evidence: logEvidenceOfSpread(weightedSquares, degreesOfFreedom) },
+  return weighed([
+    ...noSingleFault(weightedSquares, degreesOfFreedom),
     ...suspicionsOf(adjusted).flatMap((suspicion) => tried(adjusted, suspicion) ?? []),
     ...exchangesOf(adjusted).map(({ weightedSquares: squares, ...exchange }) => ({
       ...exchange,
       size: null,
       evidence: logEvidence(squares),
     })),
+  ]);
+}
+
+/** Nothing but chance, and nothing in particular. */
+export function noSingleFault(weightedSquares: number, degreesOfFreedom: number): Candidate[] {
+  const bare = { subject: [], size: null };
+  return [
+    { ...bare, fault: 'none', evidence: logEvidence(weightedSquares) },
+    { ...bare, fault: 'unexplained', evidence: logEvidenceOfSpread(weightedSquares, degreesOfFreedom) },
   ];
+}
+
+/** Candidates with their shares of the belief, the weighty ones named. */
+export function weighed(candidates: readonly Candidate[]): Explanation[] {
   const countOf = (fault: Fault) => candidates.filter((candidate) => candidate.fault === fault).length;
   const weights = shares(
     candidates.map(({ fault, evidence }) => ({ evidence, odds: ODDS[fault] / countOf(fault) })),
@@ -106,14 +121,14 @@ function tried({ model, solution }: AdjustedStation, suspicion: Suspicion): Cand
   const { fault, subject, entries, usual, sizeOf, atLeast } = suspicion;
   const suspicious = withSuspicions(model, usual.length, entries);
   const attempts = beginnings(model, solution).flatMap((from) => {
-    const attempt = orNull(() => solve(suspicious, suspiciousStart(model, from, usual.length)));
+    const attempt = ifDetermined(() => solve(suspicious, suspiciousStart(model, from, usual.length)));
     return attempt?.converged ? attempt : [];
   });
   if (attempts.length === 0) return null;
   const attempt = attempts.reduce((a, b) => (b.weightedSquares < a.weightedSquares ? b : a));
   const estimate = usual.map((_, i) => attempt.unknowns[model.shared + i]);
   const covariance = covarianceOfFaults(attempt, model.shared, usual.length);
-  const evidence = orNull(() =>
+  const evidence = ifDetermined(() =>
     logEvidenceOfFaults(attempt.weightedSquares, { estimate, covariance, usual }),
   );
   return evidence === null ? null : { fault, subject, size: sizeOf(estimate), atLeast, evidence };
@@ -132,15 +147,6 @@ function covarianceOfFaults(solution: Solution, first: number, count: number): F
   return Float64Array.from({ length: count * count }, (_, i) =>
     cofactors.of(first + Math.floor(i / count), first + (i % count)),
   );
-}
-
-function orNull<T>(attempt: () => T): T | null {
-  try {
-    return attempt();
-  } catch (error) {
-    if (error instanceof SingularError) return null;
-    throw error;
-  }
 }
 
 /** The weighty ones, heaviest first; `none` and `unexplained` always, with what the light ones weigh. */

@@ -10,4 +10,5 @@ export type Fault =
   | 'stationMoved'
   | 'instrumentHeight'
   | 'wrongFoot'
+  | 'instrumentMoved'
   | 'unexplained';

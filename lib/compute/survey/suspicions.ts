@@ -31,6 +31,10 @@ export const USUAL = {
   height: 0.15,
   /** Collimation or index after a knock, rad. */
   face: 60 * ARCSECOND,
+  /** A tripod that was kicked or sinks, m sideways and in height, and how far the circle turns with it, rad. */
+  shift: 0.02,
+  sinking: 0.01,
+  turn: 60 * ARCSECOND,
 };
 
 const single = ([estimate]: readonly number[]) => estimate;

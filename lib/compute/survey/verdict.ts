@@ -110,7 +110,9 @@ export function judgeSetup(
   const singleFace = fit.marks.some((mark) =>
     mark.readings.some((r) => r.kind !== 'distance' && r.faces !== 'both'),
   );
-  if (wanted.length > 0 || singleFace) reasons.push({ code: 'not_checked', independent: wanted, singleFace });
+  // A check on a mark outside the fit that did not confirm the setup is told of itself.
+  const unseen = wanted.filter((axis) => !checks.some((check) => isOutside(check) && check[axis] !== null));
+  if (unseen.length > 0 || singleFace) reasons.push({ code: 'not_checked', independent: unseen, singleFace });
   return { verdict, verdicts, reasons };
 }
 
@@ -223,7 +225,7 @@ function judgeProof(
   }
   if (!limits.checkRequired) return;
   for (const check of checks) {
-    if (check.inFit || check.status !== 'trusted') continue;
+    if (!isOutside(check)) continue;
     for (const axis of AXES) {
       if (independent(checks, axis)) continue;
       const { target } = check;
@@ -268,7 +270,11 @@ function judgeLeaveOneOut(fit: StationFit, axis: Axis, limit: number, lower: Low
 
 /** An agreed check on a trusted mark that took no part in the fit. */
 function independent(checks: readonly CheckDifference[], axis: Axis): boolean {
-  return checks.some((check) => !check.inFit && check.status === 'trusted' && check[axis] === 'agreed');
+  return checks.some((check) => isOutside(check) && check[axis] === 'agreed');
+}
+
+function isOutside({ inFit, status }: CheckDifference): boolean {
+  return !inFit && status === 'trusted';
 }
 
 function unconfirmed(reasons: readonly SetupReason[], axis: Axis): boolean {

@@ -1,11 +1,12 @@
 import { and, eq } from 'drizzle-orm';
-import { acknowledgements, setups } from '@/db/schema';
+import { acknowledgements } from '@/db/schema';
 import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { loadProject } from '@/lib/services/projects/load';
 import { record } from '@/lib/services/record';
 import type { JsonOf, ParamsOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/setups';
+import { selectAcknowledgements } from './load';
 import { presentAcknowledgement } from './present';
 
 type Answer = typeof contract.answerAcknowledgement;
@@ -22,16 +23,7 @@ export async function answerAcknowledgement(
     eq(acknowledgements.organizationId, organizationId),
     eq(acknowledgements.id, params.acknowledgementId),
   );
-  const [found] = await tenant.db
-    .select({ row: acknowledgements, station: setups.station })
-    .from(acknowledgements)
-    .innerJoin(
-      setups,
-      and(
-        eq(setups.organizationId, acknowledgements.organizationId),
-        eq(setups.id, acknowledgements.setupId),
-      ),
-    )
+  const [found] = await selectAcknowledgements(tenant)
     .where(and(mine, eq(acknowledgements.projectId, project.id)))
     .for('update', { of: acknowledgements });
   if (!found) throw new Problem('not_found', 'There is no such acknowledgement in this project.');
@@ -49,5 +41,5 @@ export async function answerAcknowledgement(
     projectId: project.id,
     data: { machine, setupId },
   });
-  return presentAcknowledgement({ ...found.row, ...answer }, found.station);
+  return presentAcknowledgement({ ...found, row: { ...found.row, ...answer } });
 }

@@ -1,10 +1,11 @@
 import { and, desc, eq, isNotNull, isNull, lt } from 'drizzle-orm';
-import { acknowledgements, setups } from '@/db/schema';
+import { acknowledgements } from '@/db/schema';
 import type { VerbContext } from '@/lib/services/context';
 import { pageOf, readCursor } from '@/lib/services/paging';
 import { loadProject } from '@/lib/services/projects/load';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/setups';
+import { selectAcknowledgements } from './load';
 import { presentAcknowledgement } from './present';
 
 type List = typeof contract.listAcknowledgements;
@@ -21,16 +22,7 @@ export async function listAcknowledgements(
     true: isNull(acknowledgements.acknowledgedAt),
     false: isNotNull(acknowledgements.acknowledgedAt),
   };
-  const rows = await tenant.db
-    .select({ row: acknowledgements, station: setups.station })
-    .from(acknowledgements)
-    .innerJoin(
-      setups,
-      and(
-        eq(setups.organizationId, acknowledgements.organizationId),
-        eq(setups.id, acknowledgements.setupId),
-      ),
-    )
+  const rows = await selectAcknowledgements(tenant)
     .where(
       and(
         eq(acknowledgements.organizationId, organizationId),
@@ -41,11 +33,5 @@ export async function listAcknowledgements(
     )
     .orderBy(desc(acknowledgements.id))
     .limit(query.limit + 1);
-  return pageOf(
-    rows,
-    query.limit,
-    list,
-    ({ row }) => row.id,
-    ({ row, station }) => presentAcknowledgement(row, station),
-  );
+  return pageOf(rows, query.limit, list, ({ row }) => row.id, presentAcknowledgement);
 }

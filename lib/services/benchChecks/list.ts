@@ -4,6 +4,7 @@ import type { VerbContext } from '@/lib/services/context';
 import { Lengths } from '@/lib/services/lengths';
 import { pageOf, readCursor } from '@/lib/services/paging';
 import { loadProject } from '@/lib/services/projects/load';
+import { voidOf } from '@/lib/services/setups/standing';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/grade';
 import { selectBenchChecks } from './load';
@@ -27,12 +28,13 @@ export async function listBenchChecks(
   const rows = await selectBenchChecks(tenant, wanted)
     .orderBy(desc(benchChecks.id))
     .limit(query.limit + 1);
+  const voided = await voidOf(tenant, caller.organizationId, rows);
   const length = new Lengths(query.length ?? project.lengthUnit);
   return pageOf(
     rows,
     query.limit,
     list,
     (row) => row.id,
-    (row) => presentBenchCheck(row, length),
+    (row) => presentBenchCheck(row, length, voided(row)),
   );
 }

@@ -1,13 +1,17 @@
 import type * as z from 'zod';
 import type { Lengths } from '@/lib/services/lengths';
 import { asMoment } from '@/lib/services/moments';
-import { RELEASE_CAUTIONS } from '@/lib/services/setups/words';
+import { RELEASE_CAUTIONS, type Words } from '@/lib/services/setups/words';
 import type { BenchCheck } from '@/openapi/schemas/benchCheck';
 import { benchInstruction, offersCorrection } from './instruction';
 import type { BenchCheckRow } from './load';
 import { wordsOfBenchReason } from './words';
 
-export function presentBenchCheck(row: BenchCheckRow, length: Lengths): z.output<typeof BenchCheck> {
+export function presentBenchCheck(
+  row: BenchCheckRow,
+  length: Lengths,
+  voided: Words | null = null,
+): z.output<typeof BenchCheck> {
   return {
     id: row.id,
     clientId: row.clientId,
@@ -32,6 +36,7 @@ export function presentBenchCheck(row: BenchCheckRow, length: Lengths): z.output
     reasons: row.reasons.map((code) => wordsOfBenchReason(code, row, length)),
     instruction: benchInstruction(row, length),
     cautions: [...RELEASE_CAUTIONS],
+    void: voided,
     uploadId: row.uploadId,
     units: { length: length.unit },
   };

@@ -4,6 +4,7 @@ import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { Lengths } from '@/lib/services/lengths';
 import { loadProject } from '@/lib/services/projects/load';
+import { voidOf } from '@/lib/services/setups/standing';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/grade';
 import { selectBenchChecks } from './load';
@@ -23,5 +24,6 @@ export async function readBenchCheck(
   );
   const [row] = await selectBenchChecks(tenant, wanted);
   if (!row) throw new Problem('not_found', 'There is no such bench check in this project.');
-  return presentBenchCheck(row, new Lengths(query.length ?? project.lengthUnit));
+  const voided = await voidOf(tenant, caller.organizationId, [row]);
+  return presentBenchCheck(row, new Lengths(query.length ?? project.lengthUnit), voided(row));
 }

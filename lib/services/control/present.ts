@@ -1,10 +1,10 @@
 import type { InferSelectModel } from 'drizzle-orm';
 import type * as z from 'zod';
-import type { controlPointVersions } from '@/db/schema';
+import type { controlPointVersions, StatusAct } from '@/db/schema';
 import type { LengthUnit } from '@/lib/compute/units/table';
 import { Lengths } from '@/lib/services/lengths';
-import { asMoment } from '@/lib/services/moments';
-import type { ControlPoint } from '@/openapi/schemas/control';
+import { asMoment, asMomentOrNull } from '@/lib/services/moments';
+import type { ControlPoint, ControlStatusAct } from '@/openapi/schemas/control';
 import type { CurrentControl } from './load';
 
 type VersionRow = InferSelectModel<typeof controlPointVersions>;
@@ -29,6 +29,17 @@ export function presentCoordinates(version: VersionRow, unit: LengthUnit) {
   };
 }
 
+function presentStatusAct(act: StatusAct | null): z.output<typeof ControlStatusAct> | null {
+  return (
+    act && {
+      by: { kind: act.by.kind, name: act.by.name },
+      at: asMoment(act.at),
+      text: act.note,
+      lastGoodAt: asMomentOrNull(act.seen?.lastGoodAt ?? null),
+    }
+  );
+}
+
 export function presentControlPoint(
   { point, version }: CurrentControl,
   unit: LengthUnit,
@@ -38,6 +49,7 @@ export function presentControlPoint(
     status: point.status,
     ...presentCoordinates(version, unit),
     version: version.version,
+    statusAct: presentStatusAct(point.statusAct),
     units: { length: unit },
     updatedAt: asMoment(point.updatedAt),
   };

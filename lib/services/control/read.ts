@@ -1,9 +1,11 @@
 import type { Tenant } from '@/db/tenant';
 import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
+import { Lengths } from '@/lib/services/lengths';
 import { loadProject } from '@/lib/services/projects/load';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/control';
+import { loadHealth, presentHealth } from './health';
 import { byNames, type CurrentControl, currentControl } from './load';
 import { presentControlPoint } from './present';
 
@@ -27,5 +29,10 @@ export async function readControlPoint(
 ) {
   const project = await loadProject(tenant, caller.organizationId, params.projectId);
   const row = await loadControlPoint(tenant, caller.organizationId, project.id, params.pointName);
-  return presentControlPoint(row, query.length ?? project.lengthUnit);
+  const unit = query.length ?? project.lengthUnit;
+  const found = await loadHealth(tenant, project, row);
+  return {
+    ...presentControlPoint(row, unit),
+    health: presentHealth(found, row.point.name, new Lengths(unit)),
+  };
 }

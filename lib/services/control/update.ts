@@ -1,5 +1,5 @@
 import { and, eq } from 'drizzle-orm';
-import { controlPoints } from '@/db/schema';
+import { controlPoints, type StatusAct } from '@/db/schema';
 import type { VerbContext } from '@/lib/services/context';
 import { loadProject } from '@/lib/services/projects/load';
 import { record } from '@/lib/services/record';
@@ -19,9 +19,15 @@ export async function updateControlPoint(
   const project = await loadProject(tenant, caller.organizationId, params.projectId);
   const row = await loadControlPoint(tenant, caller.organizationId, project.id, params.pointName);
   const updatedAt = runtime.now().toISOString();
+  const statusAct: StatusAct = {
+    by: { kind: caller.kind, name: caller.name },
+    at: updatedAt,
+    note: body.note,
+    seen: null,
+  };
   await tenant.db
     .update(controlPoints)
-    .set({ status: body.status, updatedAt })
+    .set({ status: body.status, statusAct, updatedAt })
     .where(
       and(
         eq(controlPoints.organizationId, caller.organizationId),
@@ -35,6 +41,6 @@ export async function updateControlPoint(
     projectId: project.id,
     data: { from: row.point.status, to: body.status, note: body.note },
   });
-  const point = { ...row.point, status: body.status, updatedAt };
+  const point = { ...row.point, status: body.status, statusAct, updatedAt };
   return presentControlPoint({ ...row, point }, query.length ?? project.lengthUnit);
 }

@@ -5,6 +5,7 @@ import { layerFacts } from '@/lib/services/layers/facts';
 import { Lengths } from '@/lib/services/lengths';
 import { pageOf, readCursor } from '@/lib/services/paging';
 import { loadProject } from '@/lib/services/projects/load';
+import { voidOf } from '@/lib/services/setups/standing';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/grade';
 import { presentGradeCheck } from './present';
@@ -33,8 +34,9 @@ export async function listGradeChecks(
     .orderBy(desc(gradeChecks.id))
     .limit(query.limit + 1);
   const layerOf = await layerFacts(tenant, project, rows);
+  const voided = await voidOf(tenant, caller.organizationId, rows);
   const length = new Lengths(query.length ?? project.lengthUnit);
   const present = (row: (typeof rows)[number]) =>
-    presentGradeCheck(row, layerOf(row), length, project.displayDecimals);
+    presentGradeCheck(row, layerOf(row), length, project.displayDecimals, voided(row));
   return pageOf(rows, query.limit, list, (row) => row.id, present);
 }

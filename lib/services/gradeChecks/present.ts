@@ -5,6 +5,7 @@ import { gradeLabel } from '@/lib/compute/grade/label';
 import type { LayerFacts } from '@/lib/services/layers/facts';
 import type { Lengths } from '@/lib/services/lengths';
 import { asMoment } from '@/lib/services/moments';
+import type { Words } from '@/lib/services/setups/words';
 import type { GradeCheck } from '@/openapi/schemas/gradeCheck';
 import { wordsOfGradeReason } from './words';
 
@@ -15,6 +16,7 @@ export function presentGradeCheck(
   layer: LayerFacts,
   length: Lengths,
   decimals: number,
+  voided: Words | null = null,
 ): z.output<typeof GradeCheck> {
   const design = row.designElevation;
   return {
@@ -44,6 +46,7 @@ export function presentGradeCheck(
     offset: null,
     surface: { id: row.surfaceId, sha256: layer.surfaceSha256 },
     setupId: row.setupId,
+    void: voided,
     uploadId: row.uploadId,
     units: { length: length.unit },
   };

@@ -5,6 +5,7 @@ import type { VerbContext } from '@/lib/services/context';
 import { layerFacts } from '@/lib/services/layers/facts';
 import { Lengths } from '@/lib/services/lengths';
 import { loadProject } from '@/lib/services/projects/load';
+import { voidOf } from '@/lib/services/setups/standing';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/grade';
 import { presentGradeCheck } from './present';
@@ -28,10 +29,12 @@ export async function readGradeCheck(
     );
   if (!row) throw new Problem('not_found', 'There is no such grade check in this project.');
   const layerOf = await layerFacts(tenant, project, [row]);
+  const voided = await voidOf(tenant, caller.organizationId, [row]);
   return presentGradeCheck(
     row,
     layerOf(row),
     new Lengths(query.length ?? project.lengthUnit),
     project.displayDecimals,
+    voided(row),
   );
 }

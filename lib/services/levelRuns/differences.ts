@@ -13,7 +13,9 @@ export function sectionDeviation({ sigma, arm }: HeightDifference, line: SightLi
 
 /** A levelled difference as an observation of a network, and where it stands. */
 export interface RunDifference extends LevelDifference {
-  run: Pick<LevelRunRow, 'id' | 'clientId' | 'verdict' | 'observedAt'>;
+  run: Pick<LevelRunRow, 'id' | 'clientId' | 'verdict' | 'observedAt' | 'createdAt'>;
+  /** Versions of the control points that it touched. */
+  control: readonly { name: string; version: number }[];
   section: HeightDifference;
 }
 
@@ -44,14 +46,15 @@ export async function runDifferences(
     row.result.differences
       .filter(({ from, to }) => from !== to)
       .map((section): RunDifference => {
-        const { id, clientId, verdict, observedAt } = row;
+        const { id, clientId, verdict, observedAt, createdAt } = row;
         return {
           id: `${id}/${section.lines[0]}-${section.lines[1]}`,
           from: section.from,
           to: section.to,
           difference: section.difference,
           weight: { by: 'sigma', sigma: sectionDeviation(section, row.result.line) },
-          run: { id, clientId, verdict, observedAt },
+          run: { id, clientId, verdict, observedAt, createdAt },
+          control: row.result.control,
           section,
         };
       }),

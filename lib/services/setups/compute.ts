@@ -1,4 +1,7 @@
 import { type CheckDifference, checkDifferences } from '@/lib/compute/survey/checkShots';
+import { type Drift, driftOf } from '@/lib/compute/survey/drift';
+import type { Explanation } from '@/lib/compute/survey/explain';
+import { explainLater } from '@/lib/compute/survey/explainLater';
 import type { Identification } from '@/lib/compute/survey/identify';
 import { identificationAfter, judgeIdentification } from '@/lib/compute/survey/identifyVerdict';
 import type { InstrumentAccuracy } from '@/lib/compute/survey/instrument';
@@ -31,19 +34,24 @@ export interface SetupTask {
   notes: readonly SetupNote[];
 }
 
-/** Differences of the setup's own check shots of one purpose. */
-export interface OwnCheck {
-  purpose: 'check' | 'closing';
+/** What check shots show: the difference at each mark, and how the instrument has drifted. */
+export interface Compared {
   targets: CheckDifference[];
+  drift: Drift | null;
+}
+
+/** The setup's own check shots of one purpose. */
+export interface OwnCheck extends Compared {
+  purpose: 'check' | 'closing';
 }
 
 const PURPOSES = ['check', 'closing'] as const;
 
-/** A setup's result, and the differences of its own and of its later checks. */
+/** A setup's result, and what its own and its later checks show. */
 export interface ComputedSetup {
   result: SetupResult;
   checks: OwnCheck[];
-  later: CheckDifference[][];
+  later: Compared[];
 }
 
 /**
@@ -57,17 +65,15 @@ export function computeSetup(task: SetupTask): ComputedSetup {
   const used = orienting.filter((shot) => !isQuarantined(shot, control));
   const fit = fitStation({ shots: used, control, accuracy, surroundings, ppm, occupied: task.occupied });
   const work = accuracyAtWork(fit.station, accuracy.zenith, limits.work.radius, surroundings);
-  const checks = PURPOSES.flatMap((purpose): OwnCheck[] => {
-    const targets = compare(
-      fit,
-      task.shots.filter((shot) => shot.purpose === purpose),
-      task,
-    );
-    return targets.length === 0 ? [] : [{ purpose, targets }];
+  const own = PURPOSES.map((purpose) => task.shots.filter((shot) => shot.purpose === purpose));
+  const checks = PURPOSES.flatMap((purpose, i): OwnCheck[] => {
+    const compared = compare(fit, own[i], task);
+    return compared.targets.length === 0 ? [] : [{ purpose, ...compared }];
   });
   const { later = [] } = task;
   const laterChecks = later.map((shots) => compare(fit, shots, task));
-  const differences = latestOf([...checks.map(({ targets }) => targets), ...laterChecks]);
+  const differences = latestOf([...checks, ...laterChecks].map(({ targets }) => targets));
+  const last = [...own, ...later].findLast((shots) => compare(fit, shots, task).targets.length > 0);
   const unused = quarantinedIn([...task.shots, ...later.flat()], control);
   const { identification = null } = task;
   const found = identification ? notesOfIdentification(identification) : [];
@@ -94,6 +100,7 @@ export function computeSetup(task: SetupTask): ComputedSetup {
     geometry: fit.geometry,
     faceErrors: fit.faceErrors,
     explanations: fit.explanations,
+    laterExplanations: explainCheck(fit, last ?? [], task),
     marks: fit.marks.map(keepMark),
     leftOut: quarantinedIn(orienting, control).map((name) => {
       const { version, easting, northing, elevation } = control.get(name)!;
@@ -123,7 +130,8 @@ export function judgeWithCheck(
   later: readonly CheckDifference[][],
 ): { result: SetupResult; check: CheckResult } {
   const fit = fitOf(result);
-  const targets = compare(fit, shots, { ...result, control });
+  const compared = compare(fit, shots, { ...result, control });
+  const { targets } = compared;
   const identification = identificationAfter(result.identification, shots, targets, result);
   const judged = judgeIdentification(
     judgeSetup(fit, result.limits, latestOf([...earlier, targets, ...later]), result.work),
@@ -135,27 +143,41 @@ export function judgeWithCheck(
     ...result.notes,
     ...unused.map((target): SetupNote => ({ code: 'mark_quarantined', target })),
   ];
+  // The check that was observed last tells how the setup stands now.
+  const laterExplanations =
+    later.length > 0 ? result.laterExplanations : explainCheck(fit, shots, { ...result, control });
   return {
-    result: { ...result, ...judged, identification, notes },
-    check: { targets, tolerance: result.limits.residual, verdict: judged.verdict },
+    result: { ...result, ...judged, identification, notes, laterExplanations },
+    check: { ...compared, tolerance: result.limits.residual, verdict: judged.verdict },
   };
 }
 
-/** Differences of check shots against a fit; shots to quarantined marks take no part. */
-function compare(
+type Compares = Pick<SetupTask, 'control' | 'accuracy' | 'surroundings' | 'ppm' | 'limits'>;
+
+/** Check shots against a fit; shots to quarantined marks take no part. */
+function compare(fit: StationFit, shots: readonly Shot[], task: Compares): Compared {
+  // Without an orientation nothing can be said of a direction.
+  if (!fit.orientationDetermined) return { targets: [], drift: null };
+  const input = laterInput(fit, shots, task);
+  return {
+    targets: checkDifferences({ ...input, tolerance: task.limits.residual }),
+    drift: driftOf(input),
+  };
+}
+
+/** What would explain a check that does not agree with a setup whose own shots do; empty where it agrees. */
+function explainCheck(fit: StationFit, shots: readonly Shot[], task: Compares): Explanation[] {
+  if (!fit.orientationDetermined) return [];
+  const explanations = explainLater(laterInput(fit, shots, task));
+  return explanations.length === 1 ? [] : explanations;
+}
+
+function laterInput(
   fit: StationFit,
   shots: readonly Shot[],
-  {
-    control,
-    accuracy,
-    surroundings,
-    ppm,
-    limits,
-  }: Pick<SetupTask, 'control' | 'accuracy' | 'surroundings' | 'ppm' | 'limits'>,
-): CheckDifference[] {
-  // Without an orientation nothing can be said of a direction.
-  if (!fit.orientationDetermined) return [];
-  return checkDifferences({
+  { control, accuracy, surroundings, ppm }: Compares,
+) {
+  return {
     shots: shots.filter((shot) => !isQuarantined(shot, control)),
     control,
     station: fit.station,
@@ -165,8 +187,7 @@ function compare(
     accuracy,
     surroundings,
     ppm,
-    tolerance: limits.residual,
-  });
+  };
 }
 
 function isQuarantined({ target }: Shot, control: ReadonlyMap<string, ControlMark>): boolean {

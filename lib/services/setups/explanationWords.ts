@@ -116,6 +116,18 @@ export function wordsOfExplanation(explanation: Explanation, length: Lengths): E
         confirm: `Look up the unit in which ${mark} was published, and shoot one more mark.`,
         act: `Check the foot of ${mark}: its coordinates look converted by the other one.`,
       };
+    case 'instrumentMoved': {
+      const seconds = toArcseconds(Math.abs(explanation.turn ?? 0)).toFixed(0);
+      const turned = `its circle has turned by ${seconds}″`;
+      const what = size === null ? turned : `it has shifted ${fine(amount)} and ${turned}`;
+      return {
+        size: size === null ? toArcseconds(explanation.turn ?? 0) : length.out(amount),
+        unit: size === null ? 'arcsec' : length.unit,
+        text: `The instrument has moved since the first shots: ${what}.`,
+        confirm: 'Shoot one more mark of the fit: it will be off in the same way.',
+        act: `Set up anew: the instrument has moved since the first shots, ${what}.`,
+      };
+    }
     case 'unexplained':
       return {
         size: null,

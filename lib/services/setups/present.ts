@@ -11,6 +11,7 @@ import type {
   SetupStatus,
   SetupTarget,
 } from '@/openapi/schemas/setup';
+import { presentDrift } from './driftWords';
 import { wordsOfExplanation } from './explanationWords';
 import type { CheckRow, LoadedSetup, ReleaseRow, SetupRow } from './load';
 import {
@@ -22,7 +23,7 @@ import {
   presentReductions,
 } from './presentDetail';
 import { presentIdentification, straysAsTargets } from './presentIdentification';
-import type { KeptMark, SetupResult } from './result';
+import { explanationsOf, type KeptMark, type SetupResult } from './result';
 import { RELEASE_CAUTIONS, radioOfSetup, wordsOfNote, wordsOfReasons } from './words';
 
 /** The state of a setup now: expiry is derived, never stored. */
@@ -40,6 +41,7 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
   const { result } = row;
   const { station } = result;
   const status = statusOf(setup, now);
+  const explanations = explanationsOf(result);
   const deviation = (i: number) => Math.sqrt(station.covariance[i * 6]);
   const { heightDetermined: hasHeight, orientationDetermined: oriented } = result;
   const presentedChecks = checks
@@ -56,13 +58,13 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
     status,
     verdict: result.verdict,
     verdicts: result.verdicts,
-    reasons: wordsOfReasons(result.reasons, result.explanations, length),
+    reasons: wordsOfReasons(result.reasons, explanations, length),
     notes: result.notes.map((note) => wordsOfNote(note, length)),
     radio: radioOfSetup(
       setup.station,
       result.verdict,
       result.reasons,
-      result.explanations,
+      explanations,
       setup.toleranceClass,
       status,
       length,
@@ -133,7 +135,7 @@ export function presentSetup(loaded: LoadedSetup, length: Lengths, now: Date): z
       ...presentedChecks.filter((check) => check.clientId === null).flatMap(targetsOfCheck),
     ],
     checks: presentedChecks,
-    explanations: result.explanations.map((explanation) => presentExplanation(explanation, length)),
+    explanations: explanations.map((explanation) => presentExplanation(explanation, length)),
     identification:
       result.identification &&
       presentIdentification(
@@ -289,6 +291,7 @@ export function presentCheck(row: CheckRow, length: Lengths): z.output<typeof Se
       horizontal: t.horizontal,
       vertical: t.vertical,
     })),
+    drift: result.drift ? presentDrift(result.drift, length) : null,
     setupVerdict: result.verdict,
     carriedFrom: row.carriedFromId,
     units: { length: length.unit },

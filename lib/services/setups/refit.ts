@@ -2,7 +2,6 @@ import { and, eq, sql } from 'drizzle-orm';
 import { bulkInsert } from '@/db/bulk';
 import { setupChecks, setupResults, setups, toleranceClasses } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
-import type { CheckDifference } from '@/lib/compute/survey/checkShots';
 import { IdentificationError } from '@/lib/compute/survey/identify';
 import { ControlIndex } from '@/lib/compute/survey/identifyControl';
 import type { ControlMark, Shot } from '@/lib/compute/survey/shots';
@@ -17,7 +16,7 @@ import { record } from '@/lib/services/record';
 import type { JsonOf, ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/setups';
 import { problemItem } from '@/openapi/problemItem';
-import { computeSetup, isAgreed, type SetupTask } from './compute';
+import { type Compared, computeSetup, isAgreed, type SetupTask } from './compute';
 import { identifyTargets, wordsOfNoIdentification } from './identification';
 import { type CheckRow, type LoadedSetup, loadSetup, type SetupRow } from './load';
 import { isNamed, type LaterCheck, loadObserved, type ObservedShot } from './observed';
@@ -199,25 +198,25 @@ async function write(
     computedAt: now,
   };
   type Origin = Pick<CheckRow, 'uploadId' | 'clientId' | 'purpose' | 'observedAt' | 'carriedFromId'>;
-  const judged = (origin: Origin, targets: CheckDifference[]): CheckRow => ({
+  const judged = (origin: Origin, { targets, drift }: Compared): CheckRow => ({
     ...origin,
     organizationId,
     id: runtime.uuid(),
     projectId: setup.projectId,
     setupId: id,
     agreed: isAgreed(targets),
-    result: { targets, tolerance: result.limits.residual, verdict: result.verdict },
+    result: { targets, drift, tolerance: result.limits.residual, verdict: result.verdict },
     resultVersion: 1,
   });
   const { uploadId, observedAt } = setup;
   const own = { uploadId, observedAt, clientId: null, carriedFromId: null };
   const checkRows = [
-    ...checks.map(({ purpose, targets }) => judged({ ...own, purpose }, targets)),
+    ...checks.map((check) => judged({ ...own, purpose: check.purpose }, check)),
     ...carried.flatMap(({ check }, i) => {
       const { uploadId, clientId, purpose, observedAt } = check;
       const origin = { uploadId, clientId, purpose, observedAt, carriedFromId: check.id };
       // Its marks may be quarantined by now: then it says nothing any more.
-      return later[i].length === 0 ? [] : judged(origin, later[i]);
+      return later[i].targets.length === 0 ? [] : judged(origin, later[i]);
     }),
   ];
   await insert(tenant, { setups: [setup], setupResults: [resultRow], setupChecks: checkRows });

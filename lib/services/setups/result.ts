@@ -4,6 +4,7 @@ import type { BacksightCheck } from '@/lib/compute/survey/backsights';
 import type { CheckDifference } from '@/lib/compute/survey/checkShots';
 import type { DangerCircle } from '@/lib/compute/survey/dangerCircle';
 import type { DirectionSets } from '@/lib/compute/survey/directionSets';
+import type { Drift } from '@/lib/compute/survey/drift';
 import type { Explanation } from '@/lib/compute/survey/explain';
 import type { FaceErrors } from '@/lib/compute/survey/faces';
 import type { SightGeometry } from '@/lib/compute/survey/geometry';
@@ -100,7 +101,10 @@ export interface SetupResult extends SetupVerdict {
   limits: SetupLimits;
   geometry: SightGeometry;
   faceErrors: FaceErrors | null;
+  /** Of the fit itself. */
   explanations: Explanation[];
+  /** Of the check that was observed last, where it does not agree; empty where it does, not there in old results. */
+  laterExplanations?: Explanation[];
   marks: KeptMark[];
   /** Marks that took no part because they are quarantined. */
   leftOut: Pick<FittedMark, 'name' | 'version' | 'published' | 'shots'>[];
@@ -126,9 +130,20 @@ export interface Air {
 
 export interface CheckResult {
   targets: CheckDifference[];
+  /** Not there in old results; null where no mark of the fit was shot again. */
+  drift?: Drift | null;
   tolerance: { horizontal: number; vertical: number };
   /** The setup's verdict with this check. */
   verdict: SetupVerdict['verdict'];
+}
+
+/**
+ * What would explain what does not fit: the faults of the fit, or, where its own shots agree, those of the last check.
+ */
+export function explanationsOf({ explanations, laterExplanations = [] }: SetupResult): Explanation[] {
+  const [first] = explanations;
+  const fits = first?.fault === 'none' && first.weight === 1;
+  return fits && laterExplanations.length > 0 ? laterExplanations : explanations;
 }
 
 export function keepMark(mark: FittedMark): KeptMark {

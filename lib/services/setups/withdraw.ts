@@ -83,7 +83,9 @@ export async function withdrawSetup(
   const length = new Lengths(query.length ?? project.lengthUnit);
   return {
     setup: presentSetup({ ...loaded, setup: { ...setup, ...state } }, length, runtime.now()),
-    acknowledgements: opened.map((row) => presentAcknowledgement(row, setup.station)),
+    acknowledgements: opened.map((row) =>
+      presentAcknowledgement({ row, station: setup.station, withdrawnBy: caller.name }),
+    ),
     caution: WITHDRAWAL_CAUTION,
   };
 }

@@ -192,6 +192,8 @@ const SYMPTOMS: ReadonlySet<SetupReason['code']> = new Set([
   'target_residual_over',
   'backsight_over',
   'spread_too_large',
+  'check_over',
+  'check_disagrees',
 ]);
 
 /**

@@ -5,6 +5,7 @@ import type { RawBody } from '@/lib/formats/body';
 import { invalidItems, Problem } from '@/lib/problem';
 import { answerOnce } from '@/lib/services/answerOnce';
 import type { CallerContext, VerbContext } from '@/lib/services/context';
+import { isStriking, watchControl } from '@/lib/services/control/watch';
 import { Lengths, otherFoot } from '@/lib/services/lengths';
 import { openSurface } from '@/lib/services/surfaces/open';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
@@ -23,7 +24,7 @@ import { loadReceipt, presentReceipt } from './receipt';
 import { draftSetupChecks } from './setupChecks';
 import { draftSetups } from './setups';
 import { loadSite, type Site } from './site';
-import { writeUpload } from './write';
+import { isOvertaken, writeUpload } from './write';
 
 type Create = typeof contract.createUpload;
 type Input = { params: ParamsOf<Create>; query: QueryOf<Create> };
@@ -92,7 +93,7 @@ async function process(
   read: ReadDocument,
   site: Site | null,
 ) {
-  const { tenant, runtime } = context;
+  const { tenant } = context;
   const document = read.value;
   if (document === null) throw refusal(read);
   if (!site) throw new Problem('not_found', 'There is no such project.');
@@ -111,14 +112,12 @@ async function process(
   const { asSent = (item: ProblemItem) => item } = read;
   if (foot) throw invalidItems([asSent(foot)]);
 
-  const draft = newDraft(runtime.uuid(), document, read, site);
-  draftSetups(draft, context);
-  draftSetupChecks(draft, context);
-  draftGradeShots(draft, context, await openLayers(context, site, document));
-  draftBenchChecks(draft, context);
-  draftPegTests(draft, context);
-  draftLevelRuns(draft, context);
-  refuseUncomputed(draft);
+  let draft = await drafted(context, document, read, site);
+  while (await isOvertaken(tenant, context.caller.organizationId, draft)) {
+    const now = await loadSite(tenant, params.projectId, needsOf(document));
+    if (!now) throw new Problem('not_found', 'There is no such project.');
+    draft = await drafted(context, document, read, now);
+  }
   const { setups, checks, gradeRows, benchRows, levelRows, pegRows } = draft;
   const refused = draft.refused.map(asSent);
   const kinds = [setups, checks, gradeRows, benchRows, levelRows, pegRows];
@@ -136,6 +135,7 @@ async function process(
     refusals: refused,
   });
   writeUpload(tenant, context, draft, kept);
+  await watchStriking(context, draft);
   const parts = {
     upload: kept.uploadRow,
     raw: kept.facts,
@@ -147,8 +147,33 @@ async function process(
     levelRuns: levelRows,
     pegTests: pegRows,
   };
-  const layerOf = (row: { layerName: string }) => site.layers.get(row.layerName)!;
+  const layerOf = (row: { layerName: string }) => draft.site.layers.get(row.layerName)!;
   return { status: 201, receipt: presentReceipt(parts, layerOf, length, site.project.displayDecimals) };
+}
+
+/** What becomes of a document where the project stands as it was read. */
+async function drafted(
+  context: VerbContext,
+  document: Document,
+  read: ReadDocument,
+  site: Site,
+): Promise<Draft> {
+  const draft = newDraft(context.runtime.uuid(), document, read, site);
+  draftSetups(draft, context);
+  draftSetupChecks(draft, context);
+  draftGradeShots(draft, context, await openLayers(context, site, document));
+  draftBenchChecks(draft, context);
+  draftPegTests(draft, context);
+  draftLevelRuns(draft, context);
+  refuseUncomputed(draft);
+  return draft;
+}
+
+/** Looks at the marks of setups that do not fit well: one of them may have moved. What was just written is seen. */
+async function watchStriking(context: VerbContext, { setups, site }: Draft): Promise<void> {
+  const striking = setups.filter(({ result }) => isStriking(result.result));
+  const names = striking.flatMap(({ result }) => result.result.marks.map(({ name }) => name));
+  await watchControl(context, site.project, [...new Set(names)]);
 }
 
 /** A document of which nothing is left: each item was bad, or something beside the items. */

@@ -65,3 +65,12 @@ export function findSetup(draft: Draft, ref: string): SiteSetup | null {
   }
   return draft.site.setups.find(({ setup }) => setup.clientId === ref || setup.id === ref) ?? null;
 }
+
+/** The setup that refits have put in place of a superseded one; null for one that stands. */
+export function successorOf({ site }: Draft, { setup }: SiteSetup): SiteSetup | null {
+  if (setup.state !== 'superseded') return null;
+  return (
+    site.setups.find((other) => other.setup.rootId === setup.rootId && other.setup.state !== 'superseded') ??
+    null
+  );
+}

@@ -6,7 +6,7 @@ import { METHOD_VERSION, methodOf } from '@/lib/services/setups/result';
 import { problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 import type { Document } from './document';
-import { type Draft, findSetup, pointerOf } from './draft';
+import { type Draft, findSetup, pointerOf, successorOf } from './draft';
 import {
   asEngineShot,
   incompleteChecks,
@@ -15,7 +15,7 @@ import {
   observationRow,
   pointerIn,
 } from './shotsOfSetup';
-import type { Site } from './site';
+import type { Site, SiteSetup } from './site';
 
 type CheckItem = Document['setupChecks'][number];
 
@@ -28,7 +28,7 @@ export function draftSetupChecks(draft: Draft, context: CallerContext): void {
 
 function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, pointer: string): ProblemItem[] {
   const { site, document, rows } = draft;
-  const { caller, runtime } = context;
+  const { runtime } = context;
   if (site.taken.checks.has(item.clientId)) {
     return [
       problemItem(
@@ -43,8 +43,7 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
     return [
       problemItem(`${pointer}/setup`, 'setup_unknown', `There is no setup ${item.setup} in this project.`),
     ];
-  const { setup, result, checks } = found;
-  if (!result.orientationDetermined) {
+  if (!found.result.orientationDetermined) {
     const detail = `No direction was read in ${item.setup}.`;
     return [problemItem(`${pointer}/setup`, 'setup_without_orientation', detail)];
   }
@@ -59,27 +58,62 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
 
   const observedAt =
     item.observedAt === undefined ? runtime.now().toISOString() : utcInstant(item.observedAt);
-  const before = checks.filter((check) => new Date(check.observedAt) <= new Date(observedAt));
+  const origin: CheckOrigin = {
+    uploadId: draft.uploadId,
+    clientId: item.clientId,
+    purpose: item.purpose,
+    observedAt,
+    carriedFromId: null,
+  };
+  const check = judge(draft, context, found, origin, shots);
+  draft.checks.push(check);
+  // A refit does not leave behind what comes late: the shots judge what stands in the setup's place too.
+  const successor = successorOf(draft, found);
+  if (successor) judge(draft, context, successor, { ...origin, carriedFromId: check.id }, shots);
+  const { organizationId, projectId, id: checkId } = check;
+  shots.forEach((shot, seq) => {
+    rows.observations.push(
+      observationRow(shot, seq, {
+        organizationId,
+        projectId,
+        setupId: found.setup.rootId,
+        checkId,
+        identified: false,
+      }),
+    );
+  });
+  site.taken.checks.add(item.clientId);
+  return [];
+}
+
+type CheckOrigin = Pick<CheckRow, 'uploadId' | 'clientId' | 'purpose' | 'observedAt' | 'carriedFromId'>;
+
+/** Judges one setup with check shots; what follows in this upload sees it as it is then. */
+function judge(
+  draft: Draft,
+  { caller, runtime }: CallerContext,
+  found: SiteSetup,
+  origin: CheckOrigin,
+  shots: readonly NormalShot[],
+): CheckRow {
+  const { site, rows } = draft;
+  const { setup, result, checks } = found;
+  const before = checks.filter((check) => new Date(check.observedAt) <= new Date(origin.observedAt));
   const after = checks.filter((check) => !before.includes(check));
   const [earlier, later] = [before, after].map((some) => some.map((check) => check.result.targets));
   const judged = judgeWithCheck(result, shots.map(asEngineShot), site.control, earlier, later);
   const resultVersion = setup.resultVersion + 1;
   const check: CheckRow = {
+    ...origin,
     organizationId: caller.organizationId,
     id: runtime.uuid(),
     projectId: site.project.id,
     setupId: setup.id,
-    uploadId: draft.uploadId,
-    clientId: item.clientId,
-    purpose: item.purpose,
     agreed: isAgreed(judged.check.targets),
     result: judged.check,
-    observedAt,
     resultVersion,
-    carriedFromId: null,
   };
   rows.setupChecks.push(check);
-  draft.checks.push(check);
   // In the order that they were observed in, as they are read later.
   checks.splice(before.length, 0, check);
   const resultRow = {
@@ -92,19 +126,6 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
     computedAt: runtime.now().toISOString(),
   };
   rows.setupResults.push(resultRow);
-  const { organizationId, projectId, id: checkId } = check;
-  shots.forEach((shot, seq) => {
-    rows.observations.push(
-      observationRow(shot, seq, {
-        organizationId,
-        projectId,
-        setupId: setup.rootId,
-        checkId,
-        identified: false,
-      }),
-    );
-  });
-  // What follows in this upload sees the setup as it is now.
   setup.resultVersion = resultVersion;
   setup.verdict = judged.result.verdict;
   const made = draft.setups.find((loaded) => loaded.setup.id === setup.id);
@@ -114,14 +135,13 @@ function draftCheck(draft: Draft, context: CallerContext, item: CheckItem, point
     found.shotIds.push(...shots.map(({ sent }) => sent.clientId));
     draft.rejudged.set(setup.id, setup);
   }
-  site.taken.checks.add(item.clientId);
   draft.happenings.push({
     type: 'setup.checked',
     subject: setup.id,
-    projectId,
+    projectId: site.project.id,
     data: { station: setup.station, agreed: check.agreed, verdict: judged.result.verdict },
   });
-  return [];
+  return check;
 }
 
 /** A check says something by one mark at least that may be used. */

@@ -213,8 +213,8 @@ function accept(draft: Draft, context: CallerContext, item: SetupItem, parts: Co
     result,
     computedAt: now,
   };
-  const checks = computed.checks.map(({ purpose, targets }): CheckRow => {
-    const kept: CheckResult = { targets, tolerance: result.limits.residual, verdict: result.verdict };
+  const checks = computed.checks.map(({ purpose, targets, drift }): CheckRow => {
+    const kept: CheckResult = { targets, drift, tolerance: result.limits.residual, verdict: result.verdict };
     return {
       organizationId,
       id: runtime.uuid(),

@@ -209,7 +209,12 @@ const RELEASE = `${camel('e', [
   ...['seq', 'action', 'machine', 'layer_name', 'layer_version', 'effective_at', 'valid_until'],
 ])}, e."offset", encode(e.surface_sha256, 'hex') as "surfaceSha256"`;
 
+/** The setups that are named, and those that refits have put in their place. */
 const SETUPS = `select to_json(x) as setup, r.result, x.checks, x.releases, x."shotIds" from (
+    with recursive named(id, next) as (
+      select n.id, n.superseded_by_id from setups n where n.organization_id = ${TENANT} and n.project_id = $1
+        and (n.client_id = any($6::text[]) or n.id = any($7::uuid[]))
+      union select h.id, h.superseded_by_id from setups h, named where h.organization_id = ${TENANT} and h.id = named.next)
     select ${SETUP},
       ${list(`select ${CHECK} from setup_checks c where c.organization_id = s.organization_id and c.setup_id = s.id
         order by c.observed_at, c.id`)} as checks,
@@ -217,8 +222,7 @@ const SETUPS = `select to_json(x) as setup, r.result, x.checks, x.releases, x."s
         order by e.seq`)} as releases,
       (select coalesce(json_agg(b.client_id), '[]') from observations b
         where b.organization_id = s.organization_id and b.setup_id = s.root_id) as "shotIds"
-    from setups s where s.organization_id = ${TENANT} and s.project_id = $1
-      and (s.client_id = any($6::text[]) or s.id = any($7::uuid[]))) x
+    from setups s join named on named.id = s.id where s.organization_id = ${TENANT}) x
   join setup_results r on r.organization_id = ${TENANT} and r.setup_id = x.id and r.version = x."resultVersion"`;
 
 const taken = (table: string, parameter: number) =>

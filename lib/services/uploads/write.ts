@@ -1,4 +1,4 @@
-import { and, eq } from 'drizzle-orm';
+import { and, asc, eq, inArray } from 'drizzle-orm';
 import { bulkInsert } from '@/db/bulk';
 import {
   auditEntries,
@@ -71,4 +71,27 @@ export function writeUpload(
         .execute(),
     );
   }
+}
+
+/**
+ * Whether somebody has refitted or checked a setup since it was read that this upload judges anew. Until the end of the
+ * transaction nobody else does so.
+ */
+export async function isOvertaken(
+  { db }: Pick<Tenant, 'db'>,
+  organizationId: string,
+  { rejudged, rows }: Draft,
+): Promise<boolean> {
+  if (rejudged.size === 0) return false;
+  const standing = await db
+    .select({ id: setups.id, resultVersion: setups.resultVersion, supersededById: setups.supersededById })
+    .from(setups)
+    .where(and(eq(setups.organizationId, organizationId), inArray(setups.id, [...rejudged.keys()])))
+    .orderBy(asc(setups.id))
+    .for('update');
+  return standing.some(({ id, resultVersion, supersededById }) => {
+    const read = rejudged.get(id)!;
+    const added = rows.setupResults.filter(({ setupId }) => setupId === id).length;
+    return resultVersion + added !== read.resultVersion || supersededById !== read.supersededById;
+  });
 }

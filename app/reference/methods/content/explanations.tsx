@@ -15,9 +15,9 @@ const NAMES: Readonly<Record<string, string>> = {
   distanceScale: 'a scale of all distances',
   wrongFoot: 'a mark in the other foot',
   singleFace: 'one face',
+  instrumentMoved: 'an instrument that moved after the first shots',
   stationMoved: 'an instrument that stands beside its mark',
   instrumentHeight: 'an instrument height misread',
-  instrumentMoved: 'an instrument that moved after its fit',
   unexplained: 'none of these',
 };
 
@@ -34,6 +34,7 @@ export const explanations: Method = {
           {[
             'As further unknowns: a constant or a scale of all distances; collimation or index of single faces; a mark that stands elsewhere; a height of target or mark; over a mark, an instrument beside it or its height. The adjustment estimates their size beside the station.',
             'As the same shots to other marks: two targets with each other’s name, or a mark whose coordinates came in the other foot.',
+            'Where a setup’s own shots agree and its last check does not: shift, rise and turn of the instrument, common to all later shots, against each mark that moved alone.',
             'None: chance alone. And unexplained: all standard deviations are larger than stated, by any factor.',
           ]}
         </Points>
@@ -79,6 +80,9 @@ export const explanations: Method = {
           { what: 'and up or down', figure: `${figure(USUAL.lifted)} m` },
           { what: 'height of a target', figure: `${figure(USUAL.height)} m` },
           { what: 'one face', figure: arcseconds(USUAL.face) },
+          { what: 'a kicked instrument, each way', figure: `${figure(USUAL.shift)} m` },
+          { what: 'its sinking', figure: `${figure(USUAL.sinking)} m` },
+          { what: 'its turn', figure: arcseconds(USUAL.turn) },
         ]}
       />
     </div>

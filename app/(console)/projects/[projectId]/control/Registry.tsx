@@ -71,6 +71,15 @@ export function Registry({ projectId, points, more }: Props) {
             value: (point) => point.status,
             cell: (point) => <State tone={CONTROL_TONE[point.status]}>{point.status}</State>,
           },
+          {
+            name: 'Why',
+            wide: true,
+            value: (point) => (point.status === 'trusted' ? null : (point.statusAct?.text ?? null)),
+            cell: (point) =>
+              point.status === 'trusted' || point.statusAct === null ? null : (
+                <span className="block max-w-[30rem] text-ink-second">{point.statusAct.text}</span>
+              ),
+          },
           { name: 'Description', wide: true, value: (point) => point.description },
         ]}
       />

@@ -34,8 +34,14 @@ export function Answered({ projectId, rows, more }: Listed) {
           {
             name: 'Withdrawn',
             wide: true,
-            value: (row) => row.openedAt,
-            cell: (row) => moment(row.openedAt),
+            value: (row) => row.withdrawnAt,
+            cell: (row) => `${moment(row.withdrawnAt)} by ${row.withdrawnBy}`,
+          },
+          {
+            name: 'Why',
+            wide: true,
+            value: (row) => row.reason,
+            cell: (row) => <span className="block max-w-[34rem] text-ink-second">{row.reason}</span>,
           },
           {
             name: 'Answered',

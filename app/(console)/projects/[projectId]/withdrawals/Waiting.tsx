@@ -35,7 +35,7 @@ export function Waiting({ projectId, rows, more }: Listed) {
               </div>
               <Radio>{withdrawal.text}</Radio>
               <p className="mt-3 text-[13.5px] text-ink-second">
-                Withdrawn {moment(withdrawal.openedAt)}.{' '}
+                Withdrawn {moment(withdrawal.withdrawnAt)} by {withdrawal.withdrawnBy}.{' '}
                 <Link href={`/projects/${projectId}/setups/${withdrawal.setupId}`} className="underline">
                   See {withdrawal.station}
                 </Link>

@@ -1,6 +1,7 @@
 'use client';
 
 import Link from 'next/link';
+import { AffectedList } from '@/app/ui/AffectedList';
 import { CONTROL_TONE } from '@/app/ui/controlState';
 import { useRead } from '@/app/ui/data/queries';
 import { useCan } from '@/app/ui/data/whoami';
@@ -13,6 +14,7 @@ import { COORDINATE, fixed, moment, signed, unitName, unitSign } from '@/app/ui/
 import { State } from '@/app/ui/State';
 import { Table } from '@/app/ui/table/Table';
 import type * as contracts from '@/openapi/contracts/control';
+import { Health } from './Health';
 import { Trust } from './Trust';
 
 /** One point: what is known of it, what it showed in every setup, and whether it is trusted. */
@@ -146,6 +148,7 @@ export function PointSheet({ projectId, pointName }: { projectId: string; pointN
               ]}
             />
           </section>
+          {status === 'trusted' ? null : <AffectedList projectId={projectId} of={{ pointName }} />}
         </div>
         <div className="space-y-9">
           <Ledger
@@ -157,6 +160,7 @@ export function PointSheet({ projectId, pointName }: { projectId: string; pointN
               length('Elevation', now.elevation, now.sigma.vertical),
             ]}
           />
+          <Health projectId={projectId} pointName={pointName} />
           {mayWrite ? <Trust projectId={projectId} pointName={pointName} status={status} /> : null}
         </div>
       </div>

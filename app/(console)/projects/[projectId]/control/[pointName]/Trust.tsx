@@ -32,7 +32,9 @@ export function Trust({
       refresh(
         client,
         '/projects/{projectId}/control-points',
+        '/projects/{projectId}/control-points/{pointName}',
         '/projects/{projectId}/control-points/{pointName}/history',
+        '/projects/{projectId}/control-points/{pointName}/affected',
       ),
   });
   function submit(event: FormEvent<HTMLFormElement>) {

@@ -10,6 +10,9 @@ import type { ShownSetup } from './SetupSheet';
 export function Checks({ setup }: { setup: ShownSetup }) {
   const unit = unitSign(setup.units.length);
   const rows = setup.checks.flatMap((check) => check.targets.map((target) => ({ check, target })));
+  const drifts = setup.checks.flatMap(({ id, observedAt, drift }) =>
+    drift === null ? [] : [{ id, observedAt, drift }],
+  );
   return (
     <section>
       <h2 className="mb-3 font-head text-[19px]">
@@ -71,6 +74,18 @@ export function Checks({ setup }: { setup: ShownSetup }) {
             },
           ]}
         />
+      )}
+      {drifts.length === 0 ? null : (
+        <ul className="mt-3">
+          {drifts.map(({ id, observedAt, drift }) => (
+            <li key={id} className="border-b border-rule py-3">
+              <p className={drift.significant ? 'font-semibold' : 'text-ink-second'}>
+                {moment(observedAt)}. {drift.text}
+              </p>
+              {drift.action ? <p className="text-ink-second">{drift.action}</p> : null}
+            </li>
+          ))}
+        </ul>
       )}
     </section>
   );

@@ -1,6 +1,7 @@
 'use client';
 
 import type * as z from 'zod';
+import { AffectedList } from '@/app/ui/AffectedList';
 import { useRead } from '@/app/ui/data/queries';
 import { SetupPlan } from '@/app/ui/draw/SetupPlan';
 import { Crumb, PageHead } from '@/app/ui/frame/PageHead';
@@ -37,6 +38,8 @@ export function SetupSheet({ projectId, setupId }: { projectId: string; setupId:
   );
   if (error) return <Failure error={error} retry={refetch} />;
   if (!data) return <Skeleton lines={8} />;
+  // What hangs on it matters once nobody should work from it any more.
+  const hangs = data.status === 'withdrawn' || (data.verdict === 'fail' && data.release !== null);
   const marks = data.targets.filter((target) => target.used).length;
   return (
     <>
@@ -72,6 +75,7 @@ export function SetupSheet({ projectId, setupId }: { projectId: string; setupId:
             <Explanations setup={data} />
             <ReasonList reasons={data.reasons} notes={data.notes} />
             <Checks setup={data} />
+            {hangs ? <AffectedList projectId={projectId} of={{ setupId: data.id }} /> : null}
             <Provenance setup={data} projectId={projectId} />
           </div>
           <Acts setup={data} projectId={projectId} />

@@ -32,6 +32,7 @@ export function WithdrawDialog({
       refresh(
         client,
         '/projects/{projectId}/setups/{setupId}',
+        '/projects/{projectId}/setups/{setupId}/affected',
         '/projects/{projectId}/setups',
         '/projects/{projectId}/acknowledgements',
         '/audit-entries',
