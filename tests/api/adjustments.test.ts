@@ -65,6 +65,8 @@ describe('a network adjustment', () => {
   const pointOf = (adjustment: { result: { points: Point[] } }, name: string) =>
     adjustment.result.points.find((point) => point.name === name) as Point;
   const held = { setups: 'all', datum: { kind: 'held', points: STEADY } };
+  /** HT-2 is named, for the hub suspects it by itself by now and would leave it out. */
+  const weighted = { setups: 'all', datum: { kind: 'weighted', points: SEEN } };
 
   it('finds where a mark stands from the others, changes nothing, and says how sure it is', async () => {
     const adjustment = await adjust({ name: 'Spring', ...held });
@@ -129,7 +131,7 @@ describe('a network adjustment', () => {
   });
 
   it('takes a published coordinate out that contradicts the observations, and holds', async () => {
-    const adjustment = await adjust({ setups: 'all', datum: { kind: 'weighted' } });
+    const adjustment = await adjust(weighted);
     expect(adjustment.verdict).toBe('hold');
     const { reasons, removed } = adjustment.result;
     const disagrees = reasons.find(({ code }: { code: string }) => code === 'control_disagrees');
@@ -204,7 +206,7 @@ describe('a network adjustment', () => {
   it('on hold is applied with a note by another person alone', async () => {
     const of = await newSiteOrganization();
     await surveyed(of);
-    const { path, verdict } = await adjust({ setups: 'all', datum: { kind: 'weighted' } }, of);
+    const { path, verdict } = await adjust(weighted, of);
     expect(verdict).toBe('hold');
     const note = 'HT-2 was hit; seen on site.';
     const surveyor = of.as(of.people.surveyor.key);
