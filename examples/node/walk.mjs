@@ -34,7 +34,7 @@ async function call(method, path, body, step = path) {
     const response = await fetch(`${hub}/api/v1${path}`, { method, headers, body }).catch((error) => error);
     const failed = response instanceof Error;
     const pause = failed ? 1 : response.headers.get('retry-after');
-    if (pause !== null && tries < 3) {
+    if (!response.ok && pause !== null && tries < 3) {
       await wait(pause * 1000);
       continue;
     }

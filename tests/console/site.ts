@@ -15,7 +15,7 @@ export async function walkedOrganization() {
 }
 
 export async function walkOn(url: string, key: string): Promise<WalkedSite> {
-  const { code, out, problem } = await walk('node', { HUBTACK_URL: url, HUBTACK_KEY: key });
+  const { code, out, problem } = await walk('walk', 'node', { HUBTACK_URL: url, HUBTACK_KEY: key });
   if (code !== 0) throw new Error(`The walk ended with ${code}.\n${problem}`);
   return JSON.parse(out.trimEnd().split('\n').at(-1) ?? '');
 }

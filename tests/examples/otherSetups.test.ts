@@ -7,7 +7,7 @@ import { newOrganization } from '@/tests/setup/organization';
 import { DATA_FOLDER } from './generator/files';
 import { ANGLES_ONLY, OVER_MARK, UNNAMED } from './generator/setups';
 
-/** The setups of examples/data that no walk posts: other ways to set up on the same site. */
+/** The setups of examples/data beside resections: other ways to set up on the same site. */
 const setups = new Map<string, z.output<typeof Setup>>();
 
 beforeAll(async () => {

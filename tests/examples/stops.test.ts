@@ -12,38 +12,48 @@ const spoilt = `${mkdtempSync(join(tmpdir(), 'hubtack-examples-'))}/`;
 beforeAll(async () => {
   organization = await newOrganization();
   cpSync(EXAMPLES, spoilt, { recursive: true });
-  const setup = `${spoilt}data/setup-good.json`;
-  writeFileSync(setup, readFileSync(setup, 'utf8').replace('"face": "left"', '"face": "right"'));
+  for (const name of ['setup-good', 'setup-backsight']) {
+    const setup = `${spoilt}data/${name}.json`;
+    writeFileSync(setup, readFileSync(setup, 'utf8').replace('"face": "left"', '"face": "right"'));
+  }
 });
 
 afterAll(() => rmSync(spoilt, { recursive: true }));
 
-describe.each(LANGUAGES)('the walk in %s stops', (language) => {
+const WALKS = (['walk', 'control-walk'] as const).flatMap((name) =>
+  LANGUAGES.map((language) => [name, language] as const),
+);
+
+describe.each(WALKS)('the %s in %s stops', (name, language) => {
   it('where a setting is missing, and names it', async () => {
-    const { code, problem } = await walk(language, { HUBTACK_URL: organization.hub.url });
+    const { code, problem } = await walk(name, language, { HUBTACK_URL: organization.hub.url });
     expect(code).toBe(1);
     expect(problem).toMatch(/HUBTACK_KEY.*README/);
   });
 
   it('where no hub answers, and says so', async () => {
     const settings = { HUBTACK_URL: 'http://127.0.0.1:1', HUBTACK_KEY: organization.key };
-    const { code, problem } = await walk(language, settings);
+    const { code, problem } = await walk(name, language, settings);
     expect(code).toBe(1);
     expect(problem).toContain('http://127.0.0.1:1 does not answer');
   });
 
   it('where the key may not do it, and prints the code and the detail', async () => {
     const key = await organization.newKey(['projects:read']);
-    const { code, problem } = await walk(language, { HUBTACK_URL: organization.hub.url, HUBTACK_KEY: key });
+    const { code, problem } = await walk(name, language, {
+      HUBTACK_URL: organization.hub.url,
+      HUBTACK_KEY: key,
+    });
     expect(code).toBe(1);
-    expect(problem).toMatch(/^POST \/projects: 403 \w+\. .*projects:write/m);
+    expect(problem).toMatch(/^POST (\/api\/v1)?\/projects: 403 \w+\. .*projects:write/m);
   });
 
   it('at an item that is refused, and prints pointer, code, detail and fix', async () => {
     const settings = { HUBTACK_URL: organization.hub.url, HUBTACK_KEY: organization.key };
-    const { code, out, problem } = await walk(language, settings, spoilt);
+    const { code, out, problem } = await walk(name, language, settings, spoilt);
     expect(code).toBe(1);
-    expect(out).not.toContain('Released');
+    expect(out).toContain('Level run');
+    expect(out).not.toMatch(/Setup|Released/);
     expect(problem).toMatch(/\/setups\/0\/shots\/0\/\w+ \(face_mismatch\): .+ .+/);
   });
 });

@@ -27,7 +27,7 @@ beforeAll(async () => {
   const { hub, key } = await newOrganization();
   const { get } = api(hub.url, key);
   for (const language of LANGUAGES) {
-    const walked = await walk(language, { HUBTACK_URL: hub.url, HUBTACK_KEY: key });
+    const walked = await walk('walk', language, { HUBTACK_URL: hub.url, HUBTACK_KEY: key });
     if (walked.code !== 0) throw new Error(`${language} ended with ${walked.code}.\n${walked.problem}`);
     const [, name, projectId] = /^Project: (.+), (\S+)$/m.exec(walked.out)!;
     const of = async (path: string) => (await get(`/projects/${projectId}${path}`).expect(200)).body;

@@ -1,5 +1,6 @@
 import { control, controlCsv, finish, instrument, layer } from './design';
 import { level, levelRun } from './levelling';
+import { adjustment, setupForecast } from './network';
 import {
   anglesOnlySetup,
   backsightSetup,
@@ -29,6 +30,8 @@ export function dataFiles(): Record<string, string> {
     'setup-backsight': backsightSetup(),
     'setup-angles-only': anglesOnlySetup(),
     'setup-identify': unnamedSetup(),
+    'setup-forecast': setupForecast(),
+    adjustment: adjustment(),
     release: release(),
     'bench-before': benchBefore(),
     'setup-check': laterCheck(),
