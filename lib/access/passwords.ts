@@ -1,31 +1,13 @@
 import { hash, verify } from '@node-rs/argon2';
+import { Turns } from '@/lib/turns';
 
 /** OWASP's second choice for argon2id: 19 MiB, two passes. */
 const OPTIONS = { memoryCost: 19_456, timeCost: 2, parallelism: 1 } as const;
-/** Hashes waiting behind the one that runs; more are turned away, so that sign-ins cannot eat the machine. */
-const MAX_WAITING = 32;
-
-/** So many attempts wait already that another would not be answered in time. */
-export class BusyError extends Error {
-  override readonly name = 'BusyError';
-}
-
-let tail: Promise<unknown> = Promise.resolve();
-let waiting = 0;
-
-/** One hash at a time in a process. */
-function inTurn<T>(work: () => Promise<T>): Promise<T> {
-  if (waiting >= MAX_WAITING) return Promise.reject(new BusyError('Too many sign-ins at once.'));
-  waiting++;
-  const turn = tail.then(work).finally(() => {
-    waiting--;
-  });
-  tail = turn.catch(() => undefined);
-  return turn;
-}
+/** One hash at a time in a process; so many wait at most that sign-ins cannot eat the machine. */
+const turns = new Turns(32, 'Too many sign-ins at once.');
 
 export function hashPassword(password: string): Promise<string> {
-  return inTurn(() => hash(password.normalize('NFKC'), OPTIONS));
+  return turns.take(() => hash(password.normalize('NFKC'), OPTIONS));
 }
 
 let dummy: Promise<string> | undefined;
@@ -37,7 +19,7 @@ let dummy: Promise<string> | undefined;
 export async function verifyPassword(password: string, passwordHash: string | null): Promise<boolean> {
   dummy ??= hashPassword('no account has this password');
   const against = passwordHash ?? (await dummy);
-  const matches = await inTurn(() => verify(against, password.normalize('NFKC'), OPTIONS));
+  const matches = await turns.take(() => verify(against, password.normalize('NFKC'), OPTIONS));
   return matches && passwordHash !== null;
 }
 

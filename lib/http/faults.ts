@@ -1,9 +1,9 @@
 import { databaseFault } from '@/db/faults';
 import { RolledBackError } from '@/db/tenant';
-import { BusyError } from '@/lib/access/passwords';
 import { BodyError } from '@/lib/formats/body';
 import { JsonError } from '@/lib/formats/strictJson';
 import { Problem } from '@/lib/problem';
+import { BusyError } from '@/lib/turns';
 
 const RETRY_SECONDS = 2;
 

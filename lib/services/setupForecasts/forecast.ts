@@ -10,9 +10,10 @@ import {
 } from '@/lib/compute/survey/forecast';
 import { invalid } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
+import { Turns } from '@/lib/turns';
 import type { ParamsOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/setupForecasts';
-import { candidatePlaces, type ForecastPlace, gridOf, gridPlaces } from './places';
+import { candidatePlaces, type ForecastGrid, type ForecastPlace, gridOf, gridPlaces } from './places';
 import { type ForecastBody, type ForecastPlan, readPlan } from './plan';
 import { presentForecasts } from './present';
 
@@ -38,6 +39,8 @@ const MOST_SIGHTS = 30_000;
 const MOST_MARKS = 50;
 /** Places after which other requests have their turn: some ten milliseconds. */
 const SLICE = 32;
+/** A map holds a connection while it is computed: two of the eight at most are lent to maps. */
+const maps = new Turns(2, 'Other forecasts of many places are being computed.');
 /** Best cells of a grid that are told in full. */
 const BEST_CELLS = 5;
 
@@ -49,21 +52,42 @@ export async function forecastSetups(
   const plan = await readPlan(context, params.projectId, body);
   const grid = body.grid ? gridOf(body.grid, plan) : null;
   const places = grid ? gridPlaces(grid, plan) : candidatePlaces(body.candidates ?? [], plan);
-  const marks = places.map((place) => inSight(place, plan.task).length);
+  const compute = () => forecastPlaces(places, grid, plan, body);
+  return places.length > SLICE ? maps.take(compute) : compute();
+}
+
+async function forecastPlaces(
+  places: readonly ForecastPlace[],
+  grid: ForecastGrid | null,
+  plan: ForecastPlan,
+  body: ForecastBody,
+) {
+  const marks = await inSlices(places, (place) => inSight(place, plan.task).length);
   requireFewSights(marks, plan);
-  const forecasted: Forecasted[] = [];
-  for (const [i, place] of places.entries()) {
-    if (i % SLICE === SLICE - 1) await setImmediate();
+  const forecasted = await inSlices(places, (place, i): Forecasted => {
     const forecast = forecastSetup(place, plan.task);
     const none = 'code' in forecast ? forecast.code : null;
-    forecasted.push({ place, marks: marks[i], forecast: 'code' in forecast ? null : forecast, none });
-  }
+    return { place, marks: marks[i], forecast: 'code' in forecast ? null : forecast, none };
+  });
   const ranked = byMerit(forecasted, plan);
   const told = (grid ? wellApart(ranked, grid.spacing) : ranked).map((one): ToldForecast => {
     const forecast = forecastInFull(one.place, plan.task);
     return { ...one, forecast: 'code' in forecast ? null : forecast };
   });
   return presentForecasts({ plan, body, ranked, told, grid: grid && { ...grid, cells: forecasted } });
+}
+
+/** Something of every place, other requests having their turn in between. */
+async function inSlices<T>(
+  places: readonly ForecastPlace[],
+  of: (place: ForecastPlace, i: number) => T,
+): Promise<T[]> {
+  const all: T[] = [];
+  for (const [i, place] of places.entries()) {
+    if (i % SLICE === SLICE - 1) await setImmediate();
+    all.push(of(place, i));
+  }
+  return all;
 }
 
 /** @param marks in range of each place */

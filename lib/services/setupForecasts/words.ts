@@ -95,9 +95,7 @@ export function summaryOf(ranked: readonly Forecasted[], plan: ForecastPlan): st
     `Stand at ${called(best, length)}: ${good(best)} at 95 %, and a point at ${radius} is good to ${fine(length, work.horizontal)} in plan${height}.`,
   ];
   if (verdict.verdict !== 'pass') parts.push(`Even there ${plan.className} would be on hold.`);
-  const worst = standing.reduce((a, b) =>
-    b.forecast!.fit.ellipse95.semiMajor > a.forecast!.fit.ellipse95.semiMajor ? b : a,
-  );
+  const worst = standing[standing.length - 1];
   if (worst !== best) parts.push(`At ${called(worst, length)}: ${good(worst)}.`);
   const none = ranked.length - standing.length;
   if (none > 0) {
