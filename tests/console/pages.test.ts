@@ -84,7 +84,7 @@ const PAGES: Record<string, (project: string) => string> = {
   missing: () => '/no-such-page',
 };
 /** Pages of one layout: most are looked at wide by light and narrow by dark, the longest like every other. */
-const alike = (name: string) => name.startsWith('method-') && name !== 'method-resection';
+const alike = (name: string) => name.startsWith('method-') && name !== 'method-free-station';
 const pagesAt = (colorScheme: string, width: number) =>
   Object.keys(PAGES).filter((name) => !alike(name) || (colorScheme === 'light') === width > 1000);
 
