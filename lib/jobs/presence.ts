@@ -30,7 +30,7 @@ export class Presence {
   /** A worker of this process. */
   async add(id: string): Promise<void> {
     this.ids.add(id);
-    if (this.client) await this.client.query(`select pg_advisory_lock(${KEY})`, [id]);
+    if (this.client) await hold(this.client, id);
   }
 
   /** Opens the session, and looks after the dead from now on. */
@@ -57,8 +57,8 @@ export class Presence {
       if (this.client === client) this.client = null;
     });
     await client.connect();
+    for (const id of this.ids) await hold(client, id);
     this.client = client;
-    for (const id of this.ids) await client.query(`select pg_advisory_lock(${KEY})`, [id]);
     return client;
   }
 
@@ -70,6 +70,16 @@ export class Presence {
     } catch (error) {
       log().warn(loggable(error), 'presence not checked');
     }
+  }
+}
+
+/** Holds a worker's lock; a session that cannot have it is closed, or the living would be taken for dead in it. */
+async function hold(client: pg.Client, id: string): Promise<void> {
+  try {
+    await client.query(`select pg_advisory_lock(${KEY})`, [id]);
+  } catch (error) {
+    await client.end().catch(() => undefined);
+    throw error;
   }
 }
 

@@ -92,7 +92,9 @@ export const post: Post = async (target, headers, body, options) => {
     if (faultOfTarget(target, reach) !== null) throw new Failed('target_refused');
     const url = new URL(target);
     address = await checkedAddress(hostOf(url), reach, resolve, either);
-    return done(await send(url, address, headers, body, either), null);
+    // Not the answer's body: with its head the message has arrived.
+    const response = await Promise.race([send(url, address, headers, body, either), whenAborted(either)]);
+    return done(await readAnswer(response), null);
   } catch (error) {
     if (signal.aborted) return done(null, 'interrupted');
     if (deadline.aborted) return done(null, 'timed_out');
@@ -133,13 +135,14 @@ function pinnedTo(address: string): LookupFunction {
   };
 }
 
+/** Sends a message and answers the head of what comes back; its body has not been read yet. */
 function send(
   url: URL,
   address: string,
   headers: Record<string, string>,
   body: string,
   signal: AbortSignal,
-): Promise<PostAnswer> {
+): Promise<IncomingMessage> {
   const secure = url.protocol === 'https:';
   return new Promise((resolve, reject) => {
     const request: ClientRequest = (secure ? httpsRequest : httpRequest)(url, {
@@ -151,9 +154,15 @@ function send(
       headers: { ...headers, 'content-length': String(Buffer.byteLength(body)), connection: 'close' },
     });
     request.on('error', (error: NodeJS.ErrnoException) => reject(new Failed(failureOf(error))));
-    request.once('response', (response) => {
-      readAnswer(response).then(resolve, reject);
+    request.once('response', resolve);
+    // An answer 101 is one like others: nothing is to be spoken but HTTP.
+    request.once('upgrade', (response, socket) => {
+      socket.destroy();
+      response.destroy();
+      resolve(response);
     });
+    // Whatever else there may be that ends a request without an answer and without an error.
+    request.once('close', () => reject(new Failed('connection_failed')));
     request.end(body);
   });
 }

@@ -3,10 +3,11 @@ import { auditEntries, events } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
 import { type Actor, callerId } from '@/lib/access/actor';
 import type { Runtime } from '@/lib/runtime';
+import type { EventSubject } from '@/openapi/eventSubjects';
 
 export interface Happening {
   /** What happened, as `entity.participle`: the event's type and the audit entry's action. */
-  type: `${string}.${string}`;
+  type: `${EventSubject}.${string}`;
   /** Id or name of what it happened to. */
   subject: string;
   projectId?: string;

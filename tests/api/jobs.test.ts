@@ -89,6 +89,12 @@ describe('a job', () => {
     const asked = await site.admin.post(`/jobs/${body.id}/cancel`).expect(200);
     expect(asked.body).toMatchObject({ status: 'running', cancelRequested: true });
     expect(asked.headers['retry-after']).toBe('1');
+    await site.admin.post(`/jobs/${body.id}/cancel`).expect(200);
+    const requested = { action: 'job.cancelRequested', actor: { kind: 'key' } };
+    expect(await eventsAbout(body.id)).toMatchObject([requested]);
+    const { body: feed } = await site.admin.get('/events?type=job.cancelRequested&limit=200').expect(200);
+    const told = feed.data.filter(({ subject }: { subject: string }) => subject === body.id);
+    expect(told).toMatchObject([{ projectId: site.projectId, data: { kind: 'adjustment' } }]);
     expect(await runJobOf(site, body.id)).toBe('nothing to do');
     expect((await read(body.id)).body).toMatchObject({ status: 'cancelled', result: null });
   });

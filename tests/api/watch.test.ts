@@ -280,7 +280,7 @@ describe('a control point over many setups', () => {
     site.admin.patch(site.at('/control-points/HT-3'), { status, note }).expect(200);
   const suspicions = async () => {
     const { body } = await site.admin.get('/audit-entries?limit=200').expect(200);
-    return body.data.filter(({ action }: { action: string }) => action === 'control_point.suspected');
+    return body.data.filter(({ action }: { action: string }) => action === 'control.suspect');
   };
 
   it('is steady where all see it in its place', async () => {
@@ -331,7 +331,7 @@ describe('a control point over many setups', () => {
     expect(more).toEqual([]);
     expect(entry).toMatchObject({ subject: 'HT-3', actor: { kind: 'job', id: null, name: 'Hubtack' } });
     const { body } = await site.admin.get('/events?limit=200').expect(200);
-    expect(body.data.some(({ type }: { type: string }) => type === 'control_point.suspected')).toBe(true);
+    expect(body.data.some(({ type }: { type: string }) => type === 'control.suspect')).toBe(true);
   });
 
   it('names what hangs on it since it was last seen in its place', async () => {
@@ -386,7 +386,7 @@ describe('a control point over many setups', () => {
     await Promise.all([1, 2, 3].map((index) => seen(index, MOVED, other)));
     await seen(4, MOVED, other);
     const { body } = await other.admin.get('/audit-entries?limit=200').expect(200);
-    const acts = body.data.filter(({ action }: { action: string }) => action === 'control_point.suspected');
+    const acts = body.data.filter(({ action }: { action: string }) => action === 'control.suspect');
     expect(acts.map(({ subject }: { subject: string }) => subject)).toEqual(['HT-3']);
   });
 });

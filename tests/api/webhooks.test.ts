@@ -50,6 +50,12 @@ describe('webhooks', () => {
     hand.catchUp();
     return name;
   };
+  const formerSecret = async (id: string) => {
+    const { rows } = await withClient(site.hub.superuserUrl, (client) =>
+      client.query('select previous_secret_sealed as sealed from webhook_endpoints where id = $1', [id]),
+    );
+    return rows[0].sealed;
+  };
   const subjects = () => hand.got.map(({ subject }) => subject);
 
   describe('an endpoint', () => {
@@ -102,8 +108,13 @@ describe('webhooks', () => {
       expectProblem(await caller.patch(at, { enabled: true }), 'forbidden');
     });
 
-    it('is refused beyond fifty', async () => {
-      for (let i = 0; i < 50; i++) await make();
+    it('is refused beyond fifty, also where several are made at once', async () => {
+      for (let i = 0; i < 47; i++) await make();
+      const body = { url: `https://${host}/` };
+      const atOnce = await Promise.all(
+        Array.from({ length: 8 }, () => site.admin.post('/webhook-endpoints', body)),
+      );
+      expect(atOnce.map(({ status }) => status).sort()).toEqual([201, 201, 201, 409, 409, 409, 409, 409]);
       expectProblem(await site.admin.post('/webhook-endpoints', { url: `https://${host}/` }), 'conflict');
     });
   });
@@ -148,8 +159,9 @@ describe('webhooks', () => {
     });
 
     it('carry both signatures while secrets overlap, and then the new one alone', async () => {
-      const { at, secret: old } = await make();
+      const { at, id, secret: old } = await make();
       const { body } = await site.admin.post(`${at}/rotate`, { overlapMinutes: 60 }).expect(201);
+      expect(await formerSecret(id)).not.toBeNull();
       expect(body.endpoint.secret.previousEndsAt).not.toBeNull();
       const verifies = (secret: string, message: (typeof hand.got)[number]) => {
         // The package has a clock of its own.
@@ -170,6 +182,8 @@ describe('webhooks', () => {
         [true, true],
         [false, true],
       ]);
+      // What signs no longer is not kept.
+      expect(await formerSecret(id)).toBeNull();
       const { body: again } = await site.admin.post(`${at}/rotate`, { overlapMinutes: 0 }).expect(201);
       await happen();
       await hand.until(3);
@@ -199,6 +213,34 @@ describe('webhooks', () => {
         await hand.round();
         expect(subjects().slice(1).sort()).toEqual([after, 'late'].sort());
       });
+    });
+
+    it('come where another organization’s cannot be made', async () => {
+      const other = await newSiteOrganization();
+      await other.admin.post('/webhook-endpoints', { url: `https://${host}/other` }).expect(201);
+      await make();
+      await withClient(site.hub.superuserUrl, async (client) => {
+        await client.query(`
+          create function refuse() returns trigger language plpgsql as $$ begin raise 'refused'; end $$;
+          create trigger refuse before update on webhook_endpoints for each row
+            when (new.organization_id = '${other.organizationId}') execute function refuse()`);
+        try {
+          await other.admin.post(other.at('/instruments'), { name: 'L', kind: 'level' }).expect(201);
+          const name = await happen();
+          // Another organization is first each time: in one of these rounds it is the one that fails.
+          await hand.until(1);
+          for (let i = 0; i < 10; i++) await hand.round();
+          expect(subjects()).toEqual([name]);
+          expect(await hand.courier.round()).toBe(false);
+        } finally {
+          await client.query('drop trigger refuse on webhook_endpoints; drop function refuse()');
+        }
+      });
+      // Nothing of it is lost.
+      await hand.until(2);
+      expect(await hand.courier.round()).toBe(true);
+      const { body } = await other.admin.get('/webhook-endpoints').expect(200);
+      for (const { id } of body.data) await other.admin.delete(`/webhook-endpoints/${id}`).expect(204);
     });
 
     it('of many, some at a time: a receiver that hangs leaves the others their places', async () => {
@@ -393,6 +435,19 @@ describe('webhooks', () => {
       expectProblem(await site.admin.post(`${at}/deliveries/${body.id}/replay`), 'conflict');
     });
 
+    it('a test that gets through leaves an endpoint failing', async () => {
+      const { at, read } = await make();
+      hand.answerWith(({ type }) => ({ status: type === 'webhook.test' ? 200 : 500 }));
+      await happen();
+      await hand.until(1);
+      const { failingSince } = await read();
+      await site.admin.post(`${at}/test`).expect(202);
+      hand.catchUp();
+      while (!hand.got.some(({ type }) => type === 'webhook.test')) await hand.until(hand.got.length + 1);
+      expect(failingSince).not.toBeNull();
+      expect(await read()).toMatchObject({ status: 'failing', failingSince, lastDeliveredAt: null });
+    });
+
     it('a message is replayed under its own id, as a delivery of its own', async () => {
       const { at, deliveries } = await make();
       await happen();
@@ -433,6 +488,36 @@ describe('webhooks', () => {
       expectProblem(await site.admin.post(`${at}/replays`, { since: until, until: since }), 'invalid', [
         '/until time_out_of_order',
       ]);
+    });
+
+    it('a time range with too much in it is refused, and told what there is too much of', async () => {
+      const other = await newSiteOrganization();
+      const from = '2001-01-01T00:00:00Z';
+      await withClient(site.hub.superuserUrl, (client) =>
+        client.query(
+          `insert into events (organization_id, id, type, subject, data, occurred_at)
+            select $1, (lpad(to_hex((extract(epoch from at) * 1000)::bigint), 12, '0') || '70008000' ||
+                lpad(to_hex(n), 12, '0'))::uuid, 'old.happened', 'old', '{}', at
+              from generate_series(0, 100000) n, lateral (select $2::timestamptz + n * interval '1 second' as at) t`,
+          [other.organizationId, from],
+        ),
+      );
+      const replay = async (eventTypes: string[], seconds: number) => {
+        const sent = { url: `https://${host}/`, eventTypes };
+        const { body } = await other.admin.post('/webhook-endpoints', sent).expect(201);
+        const at = `/webhook-endpoints/${body.endpoint.id}`;
+        const until = new Date(Date.parse(from) + seconds * 1000).toISOString();
+        const answer = await other.admin.post(`${at}/replays`, { since: from, until });
+        await other.admin.delete(at).expect(204);
+        return answer;
+      };
+      expect((await replay(['setup.*'], 100_000)).body.count).toBe(0);
+      const many = await replay(['setup.*'], 100_001);
+      expectProblem(many, 'conflict');
+      expect(many.body.detail).toContain('100000 events of any kind');
+      const wanted = await replay(['old.*'], 10_001);
+      expectProblem(wanted, 'conflict');
+      expect(wanted.body.detail).toContain('10000 messages');
     });
 
     it('a list of deliveries comes by page, status and type', async () => {

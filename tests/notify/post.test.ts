@@ -108,12 +108,51 @@ describe('a post', () => {
     expect((await send('http://slow.example/', { timeoutMs, resolve: never })).failure).toBe('timed_out');
   });
 
+  it('takes 101 for an answer like others, and speaks nothing else', async () => {
+    let ended = false;
+    const port = await listen(
+      createTcpServer((socket) => {
+        socket
+          .on('error', () => undefined)
+          .on('close', () => {
+            ended = true;
+          });
+        socket.once('data', () => {
+          socket.write(
+            'HTTP/1.1 101 Switching Protocols\r\nConnection: Upgrade\r\nUpgrade: x\r\nServer: s\r\n\r\n',
+          );
+        });
+      }),
+    );
+    const { answer, failure } = await send(`http://127.0.0.1:${port}/`);
+    expect([answer?.status, answer?.headers, answer?.body, failure]).toEqual([
+      101,
+      { server: 's' },
+      '',
+      null,
+    ]);
+    while (!ended) await new Promise((resolve) => setTimeout(resolve, 5));
+  });
+
+  it('keeps the head of an answer whose body does not end in time', async () => {
+    const port = await serve((_, response) => {
+      response.writeHead(200).write('half');
+    });
+    const { answer, failure } = await send(`http://127.0.0.1:${port}/`, { timeoutMs: 150 });
+    expect([answer?.status, answer?.body, answer?.truncated, failure]).toEqual([200, 'half', true, null]);
+  });
+
   it('is broken off from outside', async () => {
     const silent = await serve(() => undefined);
     const stop = new AbortController();
     const posting = send(`http://127.0.0.1:${silent}/`, { signal: stop.signal });
     setTimeout(() => stop.abort(), 50);
     expect((await posting).failure).toBe('interrupted');
+    const unnamed = new AbortController();
+    const never: Resolve = () => new Promise(() => undefined);
+    const waiting = send('http://slow.example/', { signal: unnamed.signal, resolve: never });
+    unnamed.abort();
+    expect((await waiting).failure).toBe('interrupted');
   });
 
   it('says what stood between', async () => {

@@ -1,6 +1,7 @@
 import type * as z from 'zod';
 import { moment } from '@/app/ui/numbers';
 import type { Tone } from '@/app/ui/State';
+import { EVENT_SUBJECTS, type EventSubject } from '@/openapi/eventSubjects';
 import type { WebhookDelivery, WebhookEndpoint } from '@/openapi/schemas/webhook';
 
 export type Hook = z.output<typeof WebhookEndpoint>;
@@ -42,16 +43,36 @@ export function answerOf({ lastAttempt }: Delivery): string {
   return answer ? String(answer.status) : (failure?.text ?? 'none');
 }
 
+/** The making of an organization is over before it has a hook. */
+type Told = Exclude<EventSubject, 'organization'>;
+
+const WORDS: Record<Told, string> = {
+  setup: 'Setups: computed, checked, refitted, released, withdrawn',
+  withdrawal: 'Withdrawals: a crew has answered',
+  grade: 'Grade checks',
+  bench: 'Bench checks of blades',
+  levelRun: 'Level runs',
+  pegTest: 'Two-peg tests of levels',
+  adjustment: 'Adjustments: requested, computed, applied to the control',
+  upload: 'Uploads: processed, refused',
+  control: 'Control: imported, revised, suspect, trusted again',
+  instrument: 'Instruments: registered, calibrated',
+  surface: 'Surfaces',
+  layer: 'Layers: created, revised',
+  job: 'Jobs: done, failed, cancelled',
+  project: 'Projects: created, changed',
+  person: 'People: invited, accepted, changed',
+  session: 'Sessions: opened, closed',
+  apiKey: 'Keys: created, rotated, revoked',
+  webhookEndpoint: 'Hooks: changed, ended',
+};
+
+const isTold = (subject: EventSubject): subject is Told => subject !== 'organization';
+
 /** Events by what they are about; whoever wants single types asks for them over the API. */
-export const SUBJECTS = [
-  { types: 'setup.*', name: 'Setups: computed, checked, released, withdrawn' },
-  { types: 'withdrawal.*', name: 'Withdrawals: a crew has answered' },
-  { types: 'grade.*', name: 'Grade checks' },
-  { types: 'bench.*', name: 'Bench checks of blades' },
-  { types: 'levelRun.*', name: 'Level runs' },
-  { types: 'upload.*', name: 'Uploads: processed, refused' },
-  { types: 'control.*', name: 'Control: imported, revised, suspect' },
-  { types: 'webhookEndpoint.*', name: 'Hooks: changed, ended' },
-] as const;
+export const SUBJECTS = EVENT_SUBJECTS.filter(isTold).map((subject) => ({
+  types: `${subject}.*`,
+  name: WORDS[subject],
+}));
 
 export const hostOf = ({ url }: Hook) => new URL(url).host;

@@ -30,7 +30,10 @@ export async function computeNetwork(input: NetworkInput): Promise<NetworkResult
   if (observationCount(input) < BLINK) return adjustNetwork(input);
   const thread = new Worker(ENTRY, { eval: true, workerData: { input, module: MODULE } });
   try {
-    const [outcome] = (await once(thread, 'message')) as [Outcome];
+    const ended = once(thread, 'exit').then(([code]) => {
+      throw new Error(`The thread ended with ${code} before its result.`);
+    });
+    const [outcome] = (await Promise.race([once(thread, 'message'), ended])) as [Outcome];
     if ('result' in outcome) return outcome.result;
     const { code, points, sources } = outcome.refused;
     throw new NetworkError(code, points, sources);

@@ -74,7 +74,7 @@ export async function watchControl(
       context,
       { kind: 'job', organizationId, name: HUB },
       {
-        type: 'control_point.suspected',
+        type: 'control.suspect',
         subject: row.point.name,
         projectId: project.id,
         data: { from: 'trusted', to: 'suspect', note: statusAct.note, setups: statusAct.seen!.setups },

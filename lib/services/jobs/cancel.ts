@@ -1,5 +1,6 @@
 import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
+import { record } from '@/lib/services/record';
 import type { ParamsOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/jobs';
 import { endJob, updateJob } from './end';
@@ -16,7 +17,12 @@ export async function cancelJob(context: VerbContext, { params }: { params: Para
   if (hasEnded(job))
     throw new Problem('job_finished', `The job ${job.status === 'failed' ? 'failed' : 'is done'}.`);
   if (job.status === 'queued') return presentJob(await endJob(context, caller, job, { status: 'cancelled' }));
-  return presentJob(
-    await updateJob(tenant, job, { cancelRequestedAt: job.cancelRequestedAt ?? runtime.now().toISOString() }),
-  );
+  if (job.cancelRequestedAt !== null) return presentJob(job);
+  record(context, caller, {
+    type: 'job.cancelRequested',
+    subject: job.id,
+    projectId: job.projectId ?? undefined,
+    data: { kind: job.kind, about: job.subjectId },
+  });
+  return presentJob(await updateJob(tenant, job, { cancelRequestedAt: runtime.now().toISOString() }));
 }

@@ -2,6 +2,7 @@ import { eq } from 'drizzle-orm';
 import { directory } from '@/db/schema';
 import { directoryTransaction } from '@/db/tenant';
 import { log } from '@/lib/log/log';
+import { loggable } from '@/lib/log/loggable';
 import { type Post, post } from '@/lib/notify/post';
 import { signedHeaders } from '@/lib/notify/signature';
 import type { Runtime } from '@/lib/runtime';
@@ -39,7 +40,9 @@ export class Courier {
   private turn = 0;
   private timer: NodeJS.Timeout | undefined;
   private looking: Promise<void> = Promise.resolve();
-  private troubled = false;
+  /** Organizations whose turn failed when it last came. */
+  private readonly troubled = new Set<string>();
+  private away = false;
 
   constructor(
     private readonly runtime: Runtime,
@@ -68,19 +71,19 @@ export class Courier {
       const now = this.runtime.now().getTime();
       const tip = await oldestTransaction();
       if (tip === this.seen && now - this.lookedAt < LOOK_ANYWAY_MS) return;
-      await this.round(tip !== this.seen);
-      this.seen = tip;
+      if (await this.round(tip !== this.seen)) this.seen = tip;
       this.lookedAt = now;
       if (now - this.sweptAt > SWEEP_MS) {
         this.sweptAt = now;
-        for (const organizationId of await organizationsWithEndpoints())
-          await sweepDeliveries(organizationId, this.runtime);
+        await this.each(await organizationsWithEndpoints(), (organizationId) =>
+          sweepDeliveries(organizationId, this.runtime),
+        );
       }
-      this.troubled = false;
+      this.away = false;
     } catch (error) {
       // The database is away: what is due stays due. Said once, not twice a second.
-      if (!this.troubled) log().warn({ task: 'webhooks', error: (error as Error).name }, 'webhooks wait');
-      this.troubled = true;
+      if (!this.away) log().warn({ task: 'webhooks', error: (error as Error).name }, 'webhooks wait');
+      this.away = true;
     }
   }
 
@@ -88,15 +91,39 @@ export class Courier {
    * Once through all organizations that have endpoints: what is new becomes deliveries, what is due is sent.
    *
    * @param anythingNew where nothing was committed, no event need be looked for
+   * @returns whether every organization had its turn; what was new to one that had not is still to be looked for
    */
-  async round(anythingNew = true): Promise<void> {
+  async round(anythingNew = true): Promise<boolean> {
     const organizationIds = await organizationsWithEndpoints();
     // Another one is first each time.
     const first = this.turn++ % Math.max(organizationIds.length, 1);
-    for (const organizationId of [...organizationIds.slice(first), ...organizationIds.slice(0, first)]) {
+    const inTurn = [...organizationIds.slice(first), ...organizationIds.slice(0, first)];
+    return this.each(inTurn, async (organizationId) => {
       while (anythingNew && (await fanOut(organizationId, this.runtime)));
       await this.takeDue(organizationId);
+    });
+  }
+
+  /** Gives every organization its turn, and answers whether all went well: the trouble of one is not the others'. */
+  private async each(
+    organizationIds: readonly string[],
+    turn: (organizationId: string) => Promise<void>,
+  ): Promise<boolean> {
+    let well = true;
+    for (const organizationId of organizationIds) {
+      if (this.stopping.signal.aborted) return false;
+      try {
+        await turn(organizationId);
+        this.troubled.delete(organizationId);
+      } catch (error) {
+        well = false;
+        // Said once, not at every look.
+        if (!this.troubled.has(organizationId))
+          log().warn({ task: 'webhooks', organizationId, ...loggable(error) }, 'webhooks of one wait');
+        this.troubled.add(organizationId);
+      }
     }
+    return well;
   }
 
   /** Waits until nothing is under way. */

@@ -69,8 +69,13 @@ export async function replayWebhookEvents(
     )
     .orderBy(asc(events.id))
     .limit(MAX_EVENTS + 1);
+  if (rows.length > MAX_EVENTS)
+    throw new Problem(
+      'conflict',
+      `More than ${MAX_EVENTS} events of any kind happened in that range, more than are looked at at once: name a shorter range.`,
+    );
   const wanted = rows.filter((event) => wants(endpoint, event));
-  if (rows.length > MAX_EVENTS || wanted.length > MAX_MESSAGES)
+  if (wanted.length > MAX_MESSAGES)
     throw new Problem(
       'conflict',
       `More than ${MAX_MESSAGES} messages are not sent at once: name a shorter range.`,

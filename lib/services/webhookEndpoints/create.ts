@@ -1,4 +1,4 @@
-import { count, eq } from 'drizzle-orm';
+import { count, eq, sql } from 'drizzle-orm';
 import { directory, webhookEndpoints } from '@/db/schema';
 import { sha256 } from '@/lib/access/secrets';
 import { Problem } from '@/lib/problem';
@@ -25,15 +25,7 @@ export async function createWebhookEndpoint(
   requireEventScope(context);
   requireTarget(body.url);
   await requireKnownProjects(context, body.projectIds);
-  const [{ endpoints }] = await tenant.db
-    .select({ endpoints: count() })
-    .from(webhookEndpoints)
-    .where(eq(webhookEndpoints.organizationId, organizationId));
-  if (endpoints >= MAX_ENDPOINTS)
-    throw new Problem(
-      'conflict',
-      `There are ${MAX_ENDPOINTS} endpoints, which is the most: delete one first.`,
-    );
+  await requireRoom(context);
   const at = runtime.now().toISOString();
   const id = runtime.uuid();
   const { secret, secretSealed } = makeSecret({ organizationId, id }, runtime);
@@ -68,6 +60,21 @@ export async function createWebhookEndpoint(
     data: { host: new URL(url).host, eventTypes, projectIds },
   });
   return { endpoint: presentEndpoint(row, runtime.now()), secret };
+}
+
+/** Endpoints of an organization are made one after the other: two at once would not see each other. */
+async function requireRoom({ tenant, caller: { organizationId } }: VerbContext): Promise<void> {
+  const making = `${organizationId}/webhook endpoints`;
+  await tenant.db.execute(sql`select pg_advisory_xact_lock(hashtextextended(${making}, 0))`);
+  const [{ endpoints }] = await tenant.db
+    .select({ endpoints: count() })
+    .from(webhookEndpoints)
+    .where(eq(webhookEndpoints.organizationId, organizationId));
+  if (endpoints >= MAX_ENDPOINTS)
+    throw new Problem(
+      'conflict',
+      `There are ${MAX_ENDPOINTS} endpoints, which is the most: delete one first.`,
+    );
 }
 
 /** Under which the directory keeps an endpoint: whoever delivers finds the organizations that have any. */

@@ -2,6 +2,7 @@ import { and, eq, type InferSelectModel } from 'drizzle-orm';
 import { webhookEndpoints } from '@/db/schema';
 import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
+import { withoutEndedSecret } from './secret';
 
 export type EndpointRow = InferSelectModel<typeof webhookEndpoints>;
 
@@ -29,10 +30,8 @@ export async function changeEndpoint(
   row: EndpointRow,
   change: Partial<EndpointRow>,
 ): Promise<EndpointRow> {
-  const changed = { ...row, ...change, updatedAt: runtime.now().toISOString() };
-  await tenant.db
-    .update(webhookEndpoints)
-    .set({ ...change, updatedAt: changed.updatedAt })
-    .where(sameEndpoint(caller.organizationId, row.id));
-  return changed;
+  const now = runtime.now();
+  const changed = { ...withoutEndedSecret(row, now), ...change, updatedAt: now.toISOString() };
+  await tenant.db.update(webhookEndpoints).set(changed).where(sameEndpoint(caller.organizationId, row.id));
+  return { ...row, ...changed };
 }

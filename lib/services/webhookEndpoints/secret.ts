@@ -14,6 +14,15 @@ export function makeSecret(whose: Whose, runtime: Runtime): { secret: string; se
   return { secret, secretSealed: seal(secret, placeOf(whose), getConfig().secret, runtime) };
 }
 
+/** What takes the former secret off an endpoint whose overlap is over at a moment; null where there is none such. */
+export function withoutEndedSecret(
+  { previousSecretEndsAt: endsAt }: Pick<EndpointRow, 'previousSecretEndsAt'>,
+  now: Date,
+): Pick<EndpointRow, 'previousSecretSealed' | 'previousSecretEndsAt'> | null {
+  const ended = endsAt !== null && new Date(endsAt) <= now;
+  return ended ? { previousSecretSealed: null, previousSecretEndsAt: null } : null;
+}
+
 /**
  * The secrets that a message is signed with at a moment: the newest first, and the one before it while they overlap.
  *
