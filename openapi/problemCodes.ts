@@ -282,11 +282,17 @@ export const REQUEST_PROBLEMS = {
     'Only a finished adjustment that converged, whose verdict is not fail, is applied, and once.',
     'Read its verdict and do what it says; then adjust again.',
   ),
+  adjustment_too_large: problem(
+    422,
+    'Too much for one adjustment',
+    'The setups and level runs asked for have more than 10,000 shots and levelled differences.',
+    'Name fewer setups, or narrow `since` and `until`; adjust parts of the site that share control points.',
+  ),
   adjustment_outdated: problem(
     409,
-    'Control changed after the adjustment',
-    'A point has a newer version than the one that the adjustment started from; the errors say which.',
-    'Adjust again with the present control, then apply that.',
+    'What was adjusted changed after the adjustment',
+    'A setup was withdrawn, refitted or checked, or a control point has another version or status than the adjustment took; the errors say which.',
+    'Adjust again with what stands now, then apply that.',
   ),
   adjustment_not_finished: problem(
     409,
@@ -657,6 +663,24 @@ export const ITEM_PROBLEMS = {
     'Observations that are not kept yet',
     'The hub does not keep observations of that kind in a form that can be adjusted.',
     'Leave the field out.',
+  ),
+  setup_repeated: problem(
+    422,
+    'Two setups of the same shots',
+    'A setup and its refits share their shots: observations enter an adjustment once.',
+    'Name one of them, the last refit as a rule.',
+  ),
+  setup_ambiguous: problem(
+    422,
+    'The targets of the setup are not known',
+    'More than one assignment of targets fits its shots; adjusted with the wrong one, it would bend the network.',
+    'Let a check by name decide, or leave the setup out.',
+  ),
+  setup_changed: problem(
+    422,
+    'A setup changed meanwhile',
+    'It was withdrawn, refitted or checked after the adjustment was computed.',
+    'Adjust again with the setups that stand now.',
   ),
   control_point_changed: problem(
     422,

@@ -101,6 +101,26 @@ export function bodyEndpoint<C extends Contract>(
 
 const REPLAYED = { 'Idempotency-Replayed': 'true' };
 
+/**
+ * A reading operation that takes long to compute: the verb reads, and what it gives is called when its transaction has
+ * ended, so that no connection waits for it.
+ */
+export function computedEndpoint<C extends Contract>(
+  operation: C,
+  verb: (context: VerbContext, input: Omit<Input<C>, 'body'>) => Promise<() => AnswerOf<C>>,
+): Handler {
+  return callerHandler(operation, {
+    prepare: async () => undefined,
+    run: async (context, { params, query }) => {
+      const compute = await verb(context, { params, query });
+      return () => {
+        const reply = new Reply(successStatus(operation), compute());
+        return jsonResponse(reply.status, replyText(operation, reply), context.requestId);
+      };
+    },
+  });
+}
+
 /** An operation that keeps the bytes it gets whatever becomes of them. */
 export interface RawOperation<C extends Contract, P, A> {
   /** Reads the bytes; what is wrong with them is part of the answer, not thrown. */
@@ -140,7 +160,13 @@ export function rawEndpoint<C extends Contract, P, A>(operation: C, steps: RawOp
 interface CallerSteps<C extends Contract, P, A> {
   prepare(arrived: Arrived<C>): Promise<P>;
   ahead?(tenant: Tenant, arrived: Arrived<C>, prepared: P): Promise<A> | null;
-  run(context: VerbContext, arrived: Arrived<C>, prepared: P, ahead: Promise<A> | null): Promise<Response>;
+  /** Answers, or says how to when the transaction has ended. */
+  run(
+    context: VerbContext,
+    arrived: Arrived<C>,
+    prepared: P,
+    ahead: Promise<A> | null,
+  ): Promise<Response | (() => Response)>;
   refused?(context: CallerContext, arrived: Arrived<C>, prepared: P, problem: Problem): Promise<void>;
 }
 
@@ -186,7 +212,8 @@ function callerHandler<C extends Contract, P, A>(operation: C, steps: CallerStep
       });
     for (let repeats = 0; ; repeats++) {
       try {
-        return await once();
+        const answer = await once();
+        return typeof answer === 'function' ? answer() : answer;
       } catch (error) {
         // Others wrote the same at the same moment; what they wrote is seen now.
         if (databaseFault(error)?.kind === 'unique' && repeats < MAX_REPEATS) continue;

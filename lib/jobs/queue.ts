@@ -19,10 +19,13 @@ export function prepareQueue(): Promise<void> {
   return runMigrations({ connectionString: getConfig().databaseUrl });
 }
 
-/** Adds a job to the queue within the transaction that writes its row: both are there, or neither. */
+/**
+ * Adds a job to the queue within the transaction that writes its row: both are there, or neither. Jobs of one
+ * organization are done one after another: however many it asks for, another's is next at a free hand.
+ */
 export async function enqueue({ db }: Tenant, job: QueuedJob): Promise<void> {
   await db.execute(
     sql`select graphile_worker.add_job(${JOB_TASK}, ${JSON.stringify(job)}::json,
-      max_attempts := ${QUEUE_TRIES}, job_key := ${job.jobId})`,
+      queue_name := ${job.organizationId}, max_attempts := ${QUEUE_TRIES}, job_key := ${job.jobId})`,
   );
 }

@@ -23,7 +23,7 @@ export const AdjustmentCreate = z
     name: Title.optional().meta({ description: 'The day and time by default.' }),
     setups: ids.meta({
       description:
-        'Ids of setups, or `all`: those neither withdrawn nor superseded. Shots that a refit left out stay out; checks take part with the shots of their setup. Empty for a network of level runs alone.',
+        'Ids of setups, or `all`: those neither withdrawn nor superseded, and whose targets are known. A setup and its refit have the same shots: name one of them. Shots that a refit left out stay out; checks take part with the shots of their setup. Empty for a network of level runs alone.',
     }),
     levelRuns: ids.optional().meta({
       description:

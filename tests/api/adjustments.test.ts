@@ -1,5 +1,6 @@
 import { beforeAll, describe, expect, it } from 'vitest';
 import { runJobOf } from '@/tests/setup/jobs';
+import { whileHeld, withClient } from './fixtures/database';
 import type { Stand } from './fixtures/geometry';
 import { book, levelRun } from './fixtures/levels';
 import { minutesAgo } from './fixtures/moments';
@@ -203,6 +204,111 @@ describe('a network adjustment', () => {
     expect(point.version).toBe(1);
   });
 
+  it('is not applied after a setup that it used was withdrawn, refitted or checked', async () => {
+    const of = await newSiteOrganization();
+    const [first, second] = await surveyed(of);
+    const surveyor = of.as(of.people.surveyor.key);
+    const refused = async (path: string, id: string, says: RegExp) => {
+      const answer = await surveyor.post(`${path}/apply`, { note: 'Seen.' });
+      const problem = expectProblem(answer, 'adjustment_outdated', [`/setups/${id} setup_changed`]);
+      expect(problem.detail).toMatch(says);
+    };
+    const both = await adjust(held, of);
+    const moved = { easting: 3 };
+    const late = {
+      clientId: 'late',
+      setup: 'st-1',
+      purpose: 'check',
+      observedAt: minutesAgo(60),
+      shots: shotsTo('BM-1', { purpose: 'check', clientId: 'late', moved }),
+    };
+    await of.upload(document('late', { setupChecks: [late] })).expect(201);
+    await refused(both.path, first, /st-1 was checked since: its verdict was \w+ and is fail now\./);
+
+    const alone = await adjust({ ...held, setups: [second] }, of);
+    const exclude = ['orient-HT-2/left', 'orient-HT-2/right'];
+    const refit = await of.admin
+      .post(of.at(`/setups/${second}/refits`), { exclude, reason: 'Moved.' })
+      .expect(201);
+    await refused(alone.path, second, /st-2 was refitted since\./);
+
+    const { id } = refit.body;
+    const again = await adjust({ ...held, setups: [id] }, of);
+    await of.admin.post(of.at(`/setups/${id}/release`), {}).expect(200);
+    await of.admin.post(of.at(`/setups/${id}/withdraw`), {}).expect(200);
+    await refused(again.path, id, /st-2\.r1 was withdrawn since\./);
+    const { body: point } = await of.admin.get(of.at('/control-points/HT-2')).expect(200);
+    expect(point.version).toBe(1);
+  });
+
+  it('is refused where a point is revised at the moment in which it is applied', async () => {
+    const of = await newSiteOrganization();
+    await surveyed(of);
+    const { path } = await adjust(held, of);
+    const which = `project_id = '${of.projectId}' and name = 'HT-4'`;
+    const columns = `easting, northing, elevation, sigma_horizontal, sigma_vertical, kind, description, submitted,
+      created_by, created_at`;
+    const lock = `select from control_points where ${which} for update`;
+    const change = `
+      insert into control_point_versions (organization_id, project_id, name, version, ${columns})
+        select organization_id, project_id, name, 2, ${columns} from control_point_versions where ${which};
+      update control_points set current_version = 2 where ${which}`;
+    const answer = await whileHeld(of.hub.superuserUrl, { lock, change }, 1, async () =>
+      of.admin.post(`${path}/apply`, {}),
+    );
+    const problem = expectProblem(answer, 'adjustment_outdated', ['/points/HT-4 control_point_changed']);
+    expect(problem.errors?.[0].detail).toContain('version 2');
+  });
+
+  it('takes no more shots than a worker has memory for', async () => {
+    const of = await newSiteOrganization();
+    const [setup] = await surveyed(of);
+    await withClient(of.hub.superuserUrl, (client) =>
+      client.query(
+        `insert into observations
+          select (jsonb_populate_record(o, jsonb_build_object('client_id', o.client_id || n))).*
+            from observations o, generate_series(1, 1000) n where o.setup_id = $1`,
+        [setup],
+      ),
+    );
+    const { body: job } = await of.admin.post(of.at('/adjustments'), held).expect(202);
+    expect(await runJobOf(of, job.id)).toBe('failed');
+    const { body: ended } = await of.admin.get(`/jobs/${job.id}`).expect(200);
+    expect(ended.problem.type).toContain('adjustment_too_large');
+    expect(ended.problem.detail).toMatch(/^10020 shots/);
+    const { body: other } = await of.admin
+      .post(of.at('/adjustments'), { ...held, setups: [setup], until: minutesAgo(600) })
+      .expect(202);
+    expect(await runJobOf(of, other.id)).toBe('failed');
+    const { body: none } = await of.admin.get(`/jobs/${other.id}`).expect(200);
+    expect(none.problem.type).toContain('adjustment_not_computable');
+  });
+
+  it('calls the targets that the hub found as the refit does, not as the first result did', async () => {
+    const of = await newSiteOrganization();
+    const shots = SEEN.flatMap((mark) => shotsTo(mark)).map((shot) => ({ ...shot, target: null }));
+    const setups = [resection('unnamed', { method: 'identify', shots })];
+    const { body } = await of.upload(document('unnamed', { setups })).expect(201);
+    // HT-2 is taken out of use; a mark by another name has its place.
+    await of.admin
+      .patch(of.at('/control-points/HT-2'), { status: 'quarantined', note: 'Renamed.' })
+      .expect(200);
+    const points = [{ name: 'HT-2A', ...MARKS['HT-2'], sigma: { horizontal: 0.002, vertical: 0.002 } }];
+    await of.admin.post(of.at('/control-points'), { units: { length: 'ft' }, points }).expect(201);
+    const exclude = ['orient-HT-3/left', 'orient-HT-3/right'];
+    const refit = await of.admin
+      .post(of.at(`/setups/${body.setups[0].id}/refits`), { exclude, reason: 'Shimmer.' })
+      .expect(201);
+    const targets = refit.body.targets.map(({ target }: { target: string }) => target);
+    expect(targets).toContain('HT-2A');
+    const { path } = await adjust({ setups: 'all', datum: { kind: 'weighted' } }, of);
+    const { body: list } = await of.admin.get(`${path}/observations?limit=200`).expect(200);
+    const seen = list.data.flatMap(({ kind, to }: { kind: string; to: string }) =>
+      kind === 'direction' ? to : [],
+    );
+    expect(seen.sort()).toEqual(targets.sort());
+  });
+
   it('on hold is applied with a note by another person alone', async () => {
     const of = await newSiteOrganization();
     await surveyed(of);
@@ -264,16 +370,25 @@ describe('a network adjustment', () => {
       survey('c', STAND, { observedAt: minutesAgo(100) }),
     ];
     const { body } = await of.upload(document('times', { setups })).expect(201);
-    const [, b, c] = body.setups.map(({ id }: { id: string }) => id) as string[];
+    const [a, b, c] = body.setups.map(({ id }: { id: string }) => id) as string[];
     const exclude = ['orient-HT-2/left', 'orient-HT-2/right'];
     const refit = await of.admin
       .post(of.at(`/setups/${b}/refits`), { exclude, reason: 'Bumped.' })
       .expect(201);
+    const both = { ...held, setups: [b, refit.body.id] };
+    const problem = expectProblem(await of.admin.post(of.at('/adjustments'), both), 'invalid', [
+      '/setups/1 setup_repeated',
+    ]);
+    expect(problem.errors?.[0].detail).toContain('b.r1 has the same shots as b');
+    const superseded = await adjust({ ...held, setups: [a, b] }, of);
+    const notes = superseded.result.notes.filter(
+      ({ code }: { code: string }) => code === 'setups_taken_back',
+    );
+    expect(notes[0].text).toMatch(/^b: /);
     const usedBy = async (request: object) => {
       const adjustment = await adjust({ ...held, ...request }, of);
       return adjustment.result.provenance.setups.map(({ id }: { id: string }) => id);
     };
-    const [a] = body.setups.map(({ id }: { id: string }) => id) as string[];
     expect(await usedBy({})).toEqual([a, refit.body.id, c]);
     expect(await usedBy({ since: minutesAgo(250) })).toEqual([refit.body.id, c]);
     expect(await usedBy({ until: minutesAgo(250) })).toEqual([a]);

@@ -1,4 +1,5 @@
 import { beforeAll, describe, expect, it } from 'vitest';
+import { runJobOf } from '@/tests/setup/jobs';
 import { type Place, type Stand, sight } from './fixtures/geometry';
 import {
   document,
@@ -196,6 +197,24 @@ describe('on a square of stakes', () => {
     expect(reasons[0]).toMatchObject({ code: 'identification_ambiguous' });
     expect(reasons[0].action).toContain(`Shoot ${target} by name as a check`);
     expect(radio).toContain(`Shoot ${target}`);
+  });
+
+  it('takes no part in a network while its targets are not known', async () => {
+    const [{ id }] = (await send(inSquare('sq-network'))).setups;
+    const datum = { kind: 'weighted' };
+    const named = await site.admin.post(site.at('/adjustments'), { setups: [id], datum }).expect(422);
+    expect(refusals(named.body)).toEqual(['/setups/0 setup_ambiguous']);
+    const { body: job } = await site.admin
+      .post(site.at('/adjustments'), { setups: 'all', datum })
+      .expect(202);
+    expect(await runJobOf(site, job.id)).toBe('succeeded');
+    const { body: ended } = await site.admin.get(`/jobs/${job.id}`).expect(200);
+    const path = ended.result.replace('/api/v1', '');
+    const { result } = (await site.admin.get(path).expect(200)).body;
+    const used = result.provenance.setups.map((setup: { id: string }) => setup.id);
+    expect(used).not.toContain(id);
+    const notes = result.notes.filter(({ code }: { code: string }) => code === 'setups_ambiguous');
+    expect(notes[0].text).toContain('sq-network');
   });
 
   it('is released by nobody', async () => {

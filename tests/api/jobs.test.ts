@@ -57,6 +57,14 @@ describe('a job', () => {
     ]);
   });
 
+  it('stands in the queue of its organization, so that nobody waits for all jobs of another', async () => {
+    const begun = await start();
+    const { rows } = await withClient(site.hub.superuserUrl, (client) =>
+      client.query('select queue_name from graphile_worker.jobs where key = $1', [begun.body.id]),
+    );
+    expect(rows).toEqual([{ queue_name: site.organizationId }]);
+  });
+
   it('is begun once by an Idempotency-Key, and its repetition says where it is too', async () => {
     const once = () => site.admin.post(site.at('/adjustments'), NETWORK).set('Idempotency-Key', 'network-1');
     const [first, second] = [await once().expect(202), await once().expect(202)];

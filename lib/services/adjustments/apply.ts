@@ -1,13 +1,13 @@
-import { and, eq } from 'drizzle-orm';
+import { and, asc, eq, inArray } from 'drizzle-orm';
 import type * as z from 'zod';
 import { bulkInsert } from '@/db/bulk';
-import { adjustments, controlPoints, controlPointVersions } from '@/db/schema';
+import { adjustments, controlPoints, controlPointVersions, setups } from '@/db/schema';
 import { standardEllipse } from '@/lib/compute/adjustment/ellipse';
 import { greatMove } from '@/lib/compute/survey/controlMove';
 import { invalid, invalidItems, Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { differences } from '@/lib/services/control/differences';
-import { byNames, type CurrentControl, currentControl } from '@/lib/services/control/load';
+import { type CurrentControl, lockedControl } from '@/lib/services/control/load';
 import { moveText } from '@/lib/services/control/moves';
 import { Lengths } from '@/lib/services/lengths';
 import { loadProject } from '@/lib/services/projects/load';
@@ -16,9 +16,10 @@ import type { JsonOf, ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/adjustments';
 import { problemItem } from '@/openapi/problemItem';
 import type { AdjustmentApplied } from '@/openapi/schemas/adjustment';
-import { type AdjustmentResultRow, type LoadedAdjustment, loadResult } from './load';
+import type { ProblemItem } from '@/openapi/schemas/problem';
+import { type AdjustmentResultRow, type LoadedResult, loadResult } from './load';
 import { presentCoordinates } from './present';
-import type { KeptPoint } from './result';
+import { type KeptPoint, TAKEN_BACK, type UsedSetup } from './result';
 import { APPLY_CAUTIONS } from './words';
 
 type Apply = typeof contract.applyAdjustment;
@@ -40,7 +41,12 @@ export async function applyAdjustment(
   const loaded = await loadResult(tenant, organizationId, project.id, params.adjustmentId, true);
   const { adjustment, result } = loaded;
   requireApplicable(loaded, caller.personId, body);
-  const present = await presentControl(context, project.id, result);
+  // Setups before control, as uploads lock them.
+  const changedSetups = await setupsChanged(context, result);
+  const names = result.input.control.map(({ name }) => name);
+  const locked = await lockedControl(tenant, organizationId, project.id, names);
+  const present = new Map(locked.map((row) => [row.point.name, row]));
+  requireCurrent([...changedSetups, ...controlChanged(result, present)]);
   const length = new Lengths(query.length ?? project.lengthUnit);
   const points = chosenPoints(result, body.points);
   const now = runtime.now().toISOString();
@@ -111,11 +117,7 @@ export async function applyAdjustment(
 }
 
 /** A pass may be applied by whoever asked for it; a hold by another person with a note; a fail never; all once. */
-function requireApplicable(
-  { adjustment, result }: LoadedAdjustment & { result: AdjustmentResultRow },
-  personId: string,
-  { note }: Body,
-): void {
+function requireApplicable({ adjustment, result }: LoadedResult, personId: string, { note }: Body): void {
   const refuse = (detail: string) => new Problem('adjustment_not_applicable', detail);
   if (adjustment.appliedAt !== null) throw refuse(`${adjustment.appliedBy} has applied it already.`);
   if (result.verdict === 'fail' || !result.result.converged) throw refuse('The adjustment fails.');
@@ -127,21 +129,55 @@ function requireApplicable(
   }
 }
 
-/** The control that was used, locked, as it still is. @throws Problem where any of it has changed */
-async function presentControl(
+/** Setups that were used and do not stand as they did; they are locked. Level runs never change. */
+async function setupsChanged(
   { tenant, caller }: VerbContext,
-  projectId: string,
   { input }: AdjustmentResultRow,
-): Promise<Map<string, CurrentControl>> {
-  const { control } = input;
-  const rows = await currentControl(
-    tenant,
-    caller.organizationId,
-    projectId,
-    byNames(control.map(({ name }) => name)),
-  ).for('update', { of: controlPoints });
-  const present = new Map(rows.map((row) => [row.point.name, row]));
-  const errors = control.flatMap(({ name, version, status }) => {
+): Promise<ProblemItem[]> {
+  if (input.setups.length === 0) return [];
+  const rows = await tenant.db
+    .select({
+      id: setups.id,
+      resultVersion: setups.resultVersion,
+      state: setups.state,
+      verdict: setups.verdict,
+    })
+    .from(setups)
+    .where(
+      and(
+        eq(setups.organizationId, caller.organizationId),
+        inArray(
+          setups.id,
+          input.setups.map(({ id }) => id),
+        ),
+      ),
+    )
+    .orderBy(asc(setups.id))
+    .for('share');
+  const present = new Map(rows.map((row) => [row.id, row]));
+  return input.setups.flatMap((used) => {
+    const change = changeOf(used, present.get(used.id)!);
+    return change ? problemItem(`/setups/${used.id}`, 'setup_changed', `${used.clientId} ${change}`) : [];
+  });
+}
+
+function changeOf(
+  used: UsedSetup,
+  { state, resultVersion, verdict }: Pick<UsedSetup, 'state' | 'resultVersion' | 'verdict'>,
+): string | null {
+  if (state !== used.state && TAKEN_BACK.has(state))
+    return state === 'withdrawn' ? 'was withdrawn since.' : 'was refitted since.';
+  if (resultVersion !== used.resultVersion)
+    return `was checked since: its verdict was ${used.verdict} and is ${verdict} now.`;
+  return null;
+}
+
+/** Control that was used and has another version or status now. */
+function controlChanged(
+  { input }: AdjustmentResultRow,
+  present: ReadonlyMap<string, CurrentControl>,
+): ProblemItem[] {
+  return input.control.flatMap(({ name, version, status }) => {
     const { point } = present.get(name)!;
     const says = (detail: string) => problemItem(`/points/${name}`, 'control_point_changed', detail);
     if (point.currentVersion !== version)
@@ -151,11 +187,12 @@ async function presentControl(
     if (point.status !== status) return says(`${name} was ${status} and is ${point.status} now.`);
     return [];
   });
-  if (errors.length > 0) {
-    const names = errors.map(({ pointer }) => pointer.slice('/points/'.length)).join(', ');
-    throw new Problem('adjustment_outdated', `Changed since: ${names}.`, { errors });
-  }
-  return present;
+}
+
+function requireCurrent(errors: readonly ProblemItem[]): void {
+  if (errors.length === 0) return;
+  const details = errors.map(({ detail }) => detail).join(' ');
+  throw new Problem('adjustment_outdated', details, { errors: [...errors] });
 }
 
 /** Points of the control that were found, all or those named. */

@@ -11,25 +11,32 @@ import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/adjustments';
 import type { AdjustmentComparison } from '@/openapi/schemas/adjustment';
 import { observationCount } from './count';
-import { loadResult } from './load';
+import { type LoadedResult, loadResult } from './load';
 import { presentCoordinates, presentEllipse } from './present';
 import type { AdjustmentInput } from './result';
 import { wordsOfError } from './words';
 
 type Compare = typeof contract.compareAdjustments;
 
-/** Which points moved between two adjustments of a project. */
+/** Which points moved between two adjustments of a project: computed when both are read. */
 export async function compareAdjustments(
   { tenant, caller }: VerbContext,
   { params, query }: { params: ParamsOf<Compare>; query: QueryOf<Compare> },
-): Promise<z.output<typeof AdjustmentComparison>> {
+): Promise<() => z.output<typeof AdjustmentComparison>> {
   const project = await loadProject(tenant, caller.organizationId, params.projectId);
   const load = (id: string) => loadResult(tenant, caller.organizationId, project.id, id);
   const later = await load(params.adjustmentId);
   const earlier = await load(query.with);
   requireSmall(earlier.result.input, later.result.input);
+  return () => presentComparison(earlier, later, new Lengths(query.length ?? project.lengthUnit));
+}
+
+function presentComparison(
+  earlier: LoadedResult,
+  later: LoadedResult,
+  length: Lengths,
+): z.output<typeof AdjustmentComparison> {
   const found = compare(earlier.result.input, later.result.input);
-  const length = new Lengths(query.length ?? project.lengthUnit);
   return {
     earlier: earlier.adjustment.id,
     later: later.adjustment.id,

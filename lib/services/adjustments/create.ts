@@ -1,5 +1,5 @@
-import { and, eq, inArray } from 'drizzle-orm';
-import { type AdjustmentRequest, adjustments, levelRuns, setups } from '@/db/schema';
+import { and, eq, inArray, sql } from 'drizzle-orm';
+import { type AdjustmentRequest, adjustments, levelRuns, setupResults, setups } from '@/db/schema';
 import { invalid, invalidItems } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { byNames, currentControl } from '@/lib/services/control/load';
@@ -25,7 +25,7 @@ export async function createAdjustment(
   const project = await loadProject(tenant, organizationId, params.projectId);
   const problems = [
     ...unavailable(body),
-    ...(await unknownSetups(context, project, body.setups)),
+    ...(await unfitSetups(context, project, body.setups)),
     ...(await unfitRuns(context, project, body.levelRuns)),
     ...(await unfitPoints(context, project, body.datum.points)),
   ];
@@ -88,15 +88,29 @@ function unavailable({ setups, levelRuns, roverPoints }: JsonOf<Create>): Proble
   ];
 }
 
-async function unknownSetups(
+/** Setups that do not exist, share their shots with one named before, or whose targets are not known. */
+async function unfitSetups(
   { tenant, caller }: VerbContext,
   project: ProjectRow,
   ids: JsonOf<Create>['setups'],
 ): Promise<ProblemItem[]> {
   if (ids === 'all' || ids.length === 0) return [];
   const rows = await tenant.db
-    .select({ id: setups.id })
+    .select({
+      id: setups.id,
+      rootId: setups.rootId,
+      clientId: setups.clientId,
+      ambiguous: sql<boolean>`coalesce((${setupResults.result} #>> '{identification,ambiguous}')::boolean, false)`,
+    })
     .from(setups)
+    .innerJoin(
+      setupResults,
+      and(
+        eq(setupResults.organizationId, setups.organizationId),
+        eq(setupResults.setupId, setups.id),
+        eq(setupResults.version, setups.resultVersion),
+      ),
+    )
     .where(
       and(
         eq(setups.organizationId, caller.organizationId),
@@ -104,12 +118,23 @@ async function unknownSetups(
         inArray(setups.id, ids),
       ),
     );
-  const known = new Set(rows.map(({ id }) => id));
-  return ids.flatMap((id, i) =>
-    known.has(id.toLowerCase())
-      ? []
-      : problemItem(`/setups/${i}`, 'setup_unknown', `There is no setup ${id} in this project.`),
-  );
+  const known = new Map(rows.map((row) => [row.id, row]));
+  const byRoot = new Map<string, (typeof rows)[number]>();
+  return ids.flatMap((id, i) => {
+    const pointer = `/setups/${i}`;
+    const setup = known.get(id.toLowerCase());
+    if (!setup) return problemItem(pointer, 'setup_unknown', `There is no setup ${id} in this project.`);
+    const { rootId, clientId } = setup;
+    const other = byRoot.get(rootId) ?? setup;
+    byRoot.set(rootId, other);
+    if (other !== setup) {
+      const detail = `${clientId} has the same shots as ${other.clientId}: one is a refit of the other, and they would seem to check each other.`;
+      return problemItem(pointer, 'setup_repeated', detail);
+    }
+    return setup.ambiguous
+      ? problemItem(pointer, 'setup_ambiguous', `More than one assignment of targets fits ${clientId}.`)
+      : [];
+  });
 }
 
 /** Level runs that do not exist, or do not close and so hold a gross error. */

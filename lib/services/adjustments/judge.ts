@@ -2,7 +2,7 @@ import type { AdjustmentRequest } from '@/db/schema';
 import { CRITICAL_W } from '@/lib/compute/statistics/distributions';
 import type { AdjustedPoint, NetworkObservation, NetworkResult } from '@/lib/compute/survey/networkResult';
 import type { Axis, Verdict } from '@/lib/compute/survey/verdict';
-import type { AdjustmentInput } from './result';
+import { type AdjustmentInput, TAKEN_BACK } from './result';
 
 /** Why the verdict is what it is: codes with figures in SI units. */
 export type AdjustmentReason =
@@ -24,6 +24,8 @@ export type AdjustmentNote =
   | { code: 'points_not_trusted'; points: string[] }
   | { code: 'points_not_determined'; points: string[]; axis: Axis }
   | { code: 'setups_failed'; setups: string[] }
+  | { code: 'setups_taken_back'; setups: string[] }
+  | { code: 'setups_ambiguous'; setups: string[] }
   | { code: 'atmosphere_unknown'; setups: string[] }
   | { code: 'spread_small'; value: number }
   | { code: 'spread_scaled'; value: number };
@@ -47,7 +49,7 @@ const REACHING: Record<Axis, readonly NetworkObservation['kind'][]> = {
 
 /** A verdict on a network, with what decided it and what did not. */
 export function judgeAdjustment(
-  { network, setups, control, unseen }: AdjustmentInput,
+  { network, setups, control, ambiguous, unseen }: AdjustmentInput,
   { datum, snooping }: AdjustmentRequest,
   result: NetworkResult,
 ): {
@@ -133,6 +135,12 @@ export function judgeAdjustment(
     setups.filter((s) => s.verdict === 'fail').map((s) => s.clientId),
     'setups',
   );
+  list(
+    'setups_taken_back',
+    setups.filter(({ state }) => TAKEN_BACK.has(state)).map((s) => s.clientId),
+    'setups',
+  );
+  list('setups_ambiguous', ambiguous, 'setups');
   list(
     'atmosphere_unknown',
     setups.filter((s) => !s.atmosphereKnown).map((s) => s.clientId),

@@ -1,4 +1,4 @@
-import { and, eq, type InferSelectModel } from 'drizzle-orm';
+import { and, eq, type InferSelectModel, type SQL, sql } from 'drizzle-orm';
 import { adjustmentResults, adjustments, jobs } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
 import { Problem } from '@/lib/problem';
@@ -16,17 +16,58 @@ export interface LoadedAdjustment {
   result: AdjustmentResultRow | null;
 }
 
+export interface LoadedResult extends LoadedAdjustment {
+  result: AdjustmentResultRow;
+}
+
+/** Setups and level runs that observations come from. */
+export type Sources = Pick<AdjustmentInput, 'setups' | 'levelRuns'>;
+
 /**
  * @param lock until the end of the transaction
  * @throws Problem where the project has no such adjustment
  */
 export async function loadAdjustment(
-  { db }: Tenant,
+  tenant: Tenant,
   organizationId: string,
   projectId: string,
   id: string,
   lock = false,
 ): Promise<LoadedAdjustment> {
+  const row = await findAdjustment(tenant, organizationId, projectId, id, lock);
+  const [result] = await tenant.db.select().from(adjustmentResults).where(resultOf(row.adjustment));
+  return { ...row, result: (result as AdjustmentResultRow | undefined) ?? null };
+}
+
+/**
+ * Where the observations of a result come from, without the network itself, which may be large.
+ *
+ * @throws Problem where there is no result, or no such adjustment
+ */
+export async function loadSources(
+  tenant: Tenant,
+  organizationId: string,
+  projectId: string,
+  id: string,
+): Promise<Sources> {
+  const { adjustment, jobStatus } = await findAdjustment(tenant, organizationId, projectId, id);
+  const part = <K extends keyof Sources>(key: K) =>
+    sql<Sources[K]>`${adjustmentResults.input} -> ${key}::text`;
+  const [sources] = await tenant.db
+    .select({ setups: part('setups'), levelRuns: part('levelRuns') })
+    .from(adjustmentResults)
+    .where(resultOf(adjustment));
+  if (!sources) throw notFinished(jobStatus);
+  return sources;
+}
+
+async function findAdjustment(
+  { db }: Tenant,
+  organizationId: string,
+  projectId: string,
+  id: string,
+  lock = false,
+): Promise<Omit<LoadedAdjustment, 'result'>> {
   const query = db
     .select({ adjustment: adjustments, jobStatus: jobs.status })
     .from(adjustments)
@@ -40,19 +81,21 @@ export async function loadAdjustment(
     );
   const [row] = await (lock ? query.for('update', { of: adjustments }) : query);
   if (!row) throw new Problem('not_found', 'There is no such adjustment in this project.');
-  const [result] = await db
-    .select()
-    .from(adjustmentResults)
-    .where(and(eq(adjustmentResults.organizationId, organizationId), eq(adjustmentResults.adjustmentId, id)));
-  return { ...row, result: (result as AdjustmentResultRow | undefined) ?? null };
+  return row;
+}
+
+function resultOf({ organizationId, id }: AdjustmentRow): SQL | undefined {
+  return and(eq(adjustmentResults.organizationId, organizationId), eq(adjustmentResults.adjustmentId, id));
+}
+
+function notFinished(jobStatus: LoadedAdjustment['jobStatus']): Problem {
+  return new Problem('adjustment_not_finished', `Its job is ${jobStatus}.`);
 }
 
 /** @throws Problem where there is no result, or no such adjustment */
-export async function loadResult(
-  ...of: Parameters<typeof loadAdjustment>
-): Promise<LoadedAdjustment & { result: AdjustmentResultRow }> {
+export async function loadResult(...of: Parameters<typeof loadAdjustment>): Promise<LoadedResult> {
   const loaded = await loadAdjustment(...of);
   const { result, jobStatus } = loaded;
-  if (!result) throw new Problem('adjustment_not_finished', `Its job is ${jobStatus}.`);
+  if (!result) throw notFinished(jobStatus);
   return { ...loaded, result };
 }

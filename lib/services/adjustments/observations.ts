@@ -9,7 +9,7 @@ import { pageOf, readCursor } from '@/lib/services/paging';
 import { loadProject } from '@/lib/services/projects/load';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/adjustments';
-import { type LoadedAdjustment, loadResult } from './load';
+import { type LoadedAdjustment, loadSources } from './load';
 import { presentObservation } from './present';
 
 type List = typeof contract.listAdjustmentObservations;
@@ -22,8 +22,9 @@ export async function listAdjustmentObservations(
 ) {
   const { organizationId } = caller;
   const project = await loadProject(tenant, organizationId, params.projectId);
-  const { adjustment, result } = await loadResult(tenant, organizationId, project.id, params.adjustmentId);
-  const list = ['adjustmentObservations', adjustment.id, query.point, query.removed];
+  const { adjustmentId } = params;
+  const sources = await loadSources(tenant, organizationId, project.id, adjustmentId);
+  const list = ['adjustmentObservations', adjustmentId, query.point, query.removed];
   const after = readCursor(list, query.cursor, Place);
   const rows = await tenant.db
     .select()
@@ -31,7 +32,7 @@ export async function listAdjustmentObservations(
     .where(
       and(
         eq(adjustmentObservations.organizationId, organizationId),
-        eq(adjustmentObservations.adjustmentId, adjustment.id),
+        eq(adjustmentObservations.adjustmentId, adjustmentId),
         query.point === undefined
           ? undefined
           : or(
@@ -52,8 +53,7 @@ export async function listAdjustmentObservations(
     query.limit,
     list,
     ({ seq }) => String(seq),
-    ({ seq, observation }) =>
-      presentObservation(observation as NetworkObservation, seq, result.input, length),
+    ({ seq, observation }) => presentObservation(observation as NetworkObservation, seq, sources, length),
   );
 }
 

@@ -10,7 +10,7 @@ import type {
   AdjustmentPoint,
   AdjustmentResult,
 } from '@/openapi/schemas/adjustment';
-import type { AdjustmentRow, LoadedAdjustment } from './load';
+import type { AdjustmentRow, LoadedAdjustment, Sources } from './load';
 import { unitOf } from './observationUnits';
 import type { AdjustmentInput, KeptPoint, KeptResult } from './result';
 import { APPLY_CAUTIONS, wordsOfLeftOut, wordsOfNote, wordsOfReason, wordsOfRemoved } from './words';
@@ -175,14 +175,13 @@ export function presentEllipse({ semiMajor, semiMinor, azimuth }: Ellipse, lengt
 export function presentObservation(
   observation: NetworkObservation,
   seq: number,
-  input: AdjustmentInput,
+  { setups, levelRuns }: Sources,
   length: Lengths,
 ): z.output<typeof AdjustmentObservation> {
   const { kind, source, effect } = observation;
   const { unit, out } = unitOf(kind, length);
-  const setup = input.setups.find(({ id }) => id === source);
-  const run =
-    kind === 'levelDifference' ? input.levelRuns.find(({ id }) => source.startsWith(id)) : undefined;
+  const setup = setups.find(({ id }) => id === source);
+  const run = kind === 'levelDifference' ? levelRuns.find(({ id }) => source.startsWith(id)) : undefined;
   return {
     number: seq + 1,
     kind,
@@ -202,7 +201,7 @@ export function presentObservation(
     standardised: observation.standardised,
     minimalDetectable: observation.minimalDetectable === null ? null : out(observation.minimalDetectable),
     effect: effect && {
-      point: input.setups.find(({ id }) => id === effect.point)?.clientId ?? effect.point,
+      point: setups.find(({ id }) => id === effect.point)?.clientId ?? effect.point,
       easting: length.out(effect.easting),
       northing: length.out(effect.northing),
       elevation: length.out(effect.elevation),

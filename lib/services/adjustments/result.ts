@@ -1,6 +1,7 @@
 import type { NetworkInput } from '@/lib/compute/survey/networkInput';
 import type { AdjustedPoint, AdjustedSetup, NetworkResult } from '@/lib/compute/survey/networkResult';
 import type { Verdict } from '@/lib/compute/survey/verdict';
+import type { SetupRow } from '@/lib/services/setups/load';
 import type { AdjustmentNote, AdjustmentReason, PointChecks } from './judge';
 
 /** Name and version of the computation; a change of figures raises the version. */
@@ -20,9 +21,13 @@ export interface UsedSetup {
   clientId: string;
   station: string;
   resultVersion: number;
+  state: SetupRow['state'];
   verdict: Verdict;
   atmosphereKnown: boolean;
 }
+
+/** States of setups that nobody relies on any more. */
+export const TAKEN_BACK: ReadonlySet<SetupRow['state']> = new Set(['withdrawn', 'superseded']);
 
 /** A level run as the adjustment found it; its differences carry its id before a stroke. */
 export interface UsedRun {
@@ -36,6 +41,8 @@ export interface AdjustmentInput {
   control: UsedControl[];
   setups: UsedSetup[];
   levelRuns: UsedRun[];
+  /** Client ids of setups left out: more than one assignment of their targets fits. */
+  ambiguous: string[];
   /** Points named for the datum that no observation reaches. */
   unseen: string[];
 }

@@ -162,6 +162,18 @@ export function wordsOfNote(note: AdjustmentNote): Words {
         text: `${names(note.setups)}: failed when computed, and takes part all the same.`,
         action: 'If many of its observations were taken out, adjust again without it.',
       };
+    case 'setups_taken_back':
+      return {
+        code,
+        text: `${names(note.setups)}: withdrawn or superseded, and takes part because it was named.`,
+        action: 'Adjust again with the setups that stand, unless this one is meant.',
+      };
+    case 'setups_ambiguous':
+      return {
+        code,
+        text: `${names(note.setups)}: more than one assignment of targets fits the shots, so it took no part.`,
+        action: 'Let a check by name decide, then adjust again.',
+      };
     case 'atmosphere_unknown':
       return {
         code,

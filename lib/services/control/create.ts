@@ -13,7 +13,7 @@ import { problemItem } from '@/openapi/problemItem';
 import type { ControlReceipt } from '@/openapi/schemas/control';
 import { differences } from './differences';
 import type { Entries, Entry } from './entries';
-import { byNames, type CurrentControl, currentControl } from './load';
+import { lockedControl } from './load';
 import { MOVE_FIX, moveText } from './moves';
 
 const insert = bulkInsert({ controlPoints, controlPointVersions });
@@ -33,13 +33,8 @@ export async function createControlPoints(
   if (foot) throw new Problem('invalid', foot.detail, { errors: [foot] });
 
   const names = [...new Set(entries.map(({ point }) => point.name))];
-  const known = new Map<string, CurrentControl>();
-  if (names.length > 0) {
-    const rows = await currentControl(tenant, organizationId, projectId, byNames(names)).for('update', {
-      of: controlPoints,
-    });
-    for (const row of rows) known.set(row.point.name, row);
-  }
+  const present = await lockedControl(tenant, organizationId, projectId, names);
+  const known = new Map(present.map((row) => [row.point.name, row]));
   const points: z.output<typeof ControlReceipt>['points'] = [];
   const written: ReturnType<typeof versionRow>[] = [];
   const seen = new Set<string>();

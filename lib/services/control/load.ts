@@ -1,4 +1,4 @@
-import { and, eq, inArray, type SQL } from 'drizzle-orm';
+import { and, asc, eq, inArray, type SQL } from 'drizzle-orm';
 import { controlPoints, controlPointVersions } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
 import type { ControlMark } from '@/lib/compute/survey/shots';
@@ -20,6 +20,32 @@ export function currentControl(tenant: Tenant, organizationId: string, projectId
     .where(
       and(eq(controlPoints.organizationId, organizationId), eq(controlPoints.projectId, projectId), further),
     );
+}
+
+/**
+ * The same of some points, locked in the order of their names. Versions are read after the locks: a join that waits for
+ * a lock sees the new number beside the old versions, and loses the row.
+ */
+export async function lockedControl(
+  tenant: Tenant,
+  organizationId: string,
+  projectId: string,
+  names: readonly string[],
+): Promise<CurrentControl[]> {
+  if (names.length === 0) return [];
+  await tenant.db
+    .select({ name: controlPoints.name })
+    .from(controlPoints)
+    .where(
+      and(
+        eq(controlPoints.organizationId, organizationId),
+        eq(controlPoints.projectId, projectId),
+        byNames(names),
+      ),
+    )
+    .orderBy(asc(controlPoints.name))
+    .for('update');
+  return currentControl(tenant, organizationId, projectId, byNames(names));
 }
 
 export type CurrentControl = Awaited<ReturnType<typeof currentControl>>[number];

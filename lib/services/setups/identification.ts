@@ -29,12 +29,17 @@ export function identifyTargets(
   const { control } = input;
   const named = input.named.filter(({ target }) => control.get(target)?.status !== 'quarantined');
   const identification = identify(index, { ...input, named });
+  return { identification, names: targetsOf(identification) };
+}
+
+/** Name of each shot's target in the best assignment, by the shot's id; shots of strays are not in it. */
+export function targetsOf({ reflectors, best }: Identification): Map<string, string> {
   const names = new Map<string, string>();
-  identification.reflectors.forEach(({ shots }, k) => {
-    const name = identification.best.marks[k];
+  reflectors.forEach(({ shots }, k) => {
+    const name = best.marks[k];
     if (name !== null) for (const id of shots) names.set(id, name);
   });
-  return { identification, names };
+  return names;
 }
 
 /** What an identification leaves to be known, though no verdict hangs on it. */
