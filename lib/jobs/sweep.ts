@@ -1,14 +1,29 @@
 import { sql } from 'drizzle-orm';
 import { directory, idempotencyKeys, sessions } from '@/db/schema';
 import { directoryTransaction, tenantTransaction } from '@/db/tenant';
+import { log } from '@/lib/log/log';
 import type { Runtime } from '@/lib/runtime';
 
 /** Every organization that the directory knows. */
-export async function organizationIds(): Promise<string[]> {
+async function organizationIds(): Promise<string[]> {
   return directoryTransaction(async ({ db }) => {
     const rows = await db.selectDistinct({ id: directory.organizationId }).from(directory);
     return rows.map(({ id }) => id);
   });
+}
+
+/** Does `work` for every organization: what fails for one is logged, and does not keep the others from it. */
+export async function eachOrganization(
+  task: string,
+  work: (organizationId: string) => Promise<void>,
+): Promise<void> {
+  for (const organizationId of await organizationIds()) {
+    try {
+      await work(organizationId);
+    } catch (err) {
+      log().error({ task, organizationId, err }, 'job failed for an organization');
+    }
+  }
 }
 
 /**
@@ -20,7 +35,7 @@ export async function organizationIds(): Promise<string[]> {
 export async function sweep(runtime: Runtime): Promise<number> {
   const now = runtime.now().toISOString();
   let removed = 0;
-  for (const organizationId of await organizationIds()) {
+  await eachOrganization('sweep', async (organizationId) => {
     removed += await tenantTransaction(organizationId, async ({ db }) => {
       const keys = await db.delete(idempotencyKeys).where(sql`${idempotencyKeys.expiresAt} <= ${now}`);
       await db.delete(directory).where(
@@ -29,6 +44,6 @@ export async function sweep(runtime: Runtime): Promise<number> {
       );
       return keys.rowCount ?? 0;
     });
-  }
+  });
   return removed;
 }

@@ -63,9 +63,9 @@ export const ControlStatusAct = z
 
 export const ControlHealth = z
   .object({
-    finding: z.enum(['steady', 'moved', 'unknown']).meta({
+    finding: z.enum(['steady', 'moved', 'doubtful', 'unknown']).meta({
       description:
-        'moved: two setups at least show it elsewhere, while the other marks agree and nothing else explains it as well. unknown: no setup tells.',
+        'moved: two setups, or one and a level run, at least show it elsewhere, while the other marks agree and nothing else explains it as well. doubtful: something shows it elsewhere, which cannot be told yet from a misreading or from another mark that moved. unknown: nothing tells where it stands, or not closely enough to show what a mark may miss by in the class it is used for.',
     }),
     text: z.string(),
     action: z.string().optional(),
@@ -87,10 +87,10 @@ export const ControlHealth = z
       description:
         '∇ᵀQ⁻¹∇ of the displacement against χ²: under one look in a hundred at control that stands finds anything.',
     }),
-    movedBetween: z
-      .object({ after: Moment.nullable(), before: Moment })
-      .nullable()
-      .meta({ description: 'When it was last seen in its place, if ever, and first seen elsewhere.' }),
+    movedBetween: z.object({ after: Moment.nullable(), before: Moment }).nullable().meta({
+      description:
+        'When it was last seen in its place by what could have seen it off, if ever, and first seen elsewhere.',
+    }),
     sightings: z
       .array(
         z.object({
@@ -103,6 +103,9 @@ export const ControlHealth = z
             .nullable()
             .meta({ description: 'Who or what sent the setup in; null for a level run.' }),
           moved: z.boolean().meta({ description: 'It agrees with the mark having moved.' }),
+          off: z.boolean().meta({
+            description: 'By itself it shows the mark farther off than chance does.',
+          }),
           difference: z
             .object({ easting: z.number(), northing: z.number(), elevation: maybe })
             .nullable()

@@ -1,8 +1,10 @@
 import { beforeAll, describe, expect, it } from 'vitest';
+import { whileHeld, withClient } from './fixtures/database';
 import { minutesAgo } from './fixtures/moments';
 import {
   document,
   groundShot,
+  MARKS,
   type Mark,
   newLayer,
   newSiteOrganization,
@@ -299,7 +301,14 @@ describe('a control point over many setups', () => {
   it('is not named by one setup, and suspected by the hub itself at the second one', async () => {
     await seen(2, MOVED);
     expect((await point()).status).toBe('trusted');
-    expect((await point()).health.finding).toBe('steady');
+    const { health: doubt } = await point();
+    expect(doubt.finding).toBe('doubtful');
+    expect(doubt.movedBetween).toBeNull();
+    expect(doubt.text).toMatch(/^One setup, ST-3 at .*Z, finds HT-3 0\.0\d ft ± 0\.0\d ft to the north-east/);
+    expect(doubt.action).toContain('from a second setup');
+    expect(doubt.sightings.map(({ off }: { off: boolean }) => off)).toEqual([true, false, false]);
+    for (const name of ['HT-1', 'HT-2', 'HT-4', 'HT-5'])
+      expect((await point(name)).health.finding).toBe('steady');
     await seen(3, MOVED);
     const { status, statusAct, health } = await point();
     expect(status).toBe('suspect');
@@ -388,5 +397,63 @@ describe('a control point over many setups', () => {
     const { body } = await other.admin.get('/audit-entries?limit=200').expect(200);
     const acts = body.data.filter(({ action }: { action: string }) => action === 'control.suspect');
     expect(acts.map(({ subject }: { subject: string }) => subject)).toEqual(['HT-3']);
+  });
+
+  it('does not overrule whoever says that it is trusted while an upload comes in that shows it moved', async () => {
+    const other = await newSiteOrganization();
+    const { superuserUrl } = other.hub;
+    await seen(0, null, other);
+    await seen(1, MOVED, other);
+    const mark = `where organization_id = '${other.organizationId}' and name = 'HT-3'`;
+    const act = { by: { kind: 'person', name: 'Surveyor' }, at: minutesAgo(-1), note: 'Right.', seen: null };
+    await whileHeld(
+      superuserUrl,
+      {
+        lock: `select 1 from control_points ${mark} for update`,
+        change: `update control_points set status = 'trusted', status_act = '${JSON.stringify(act)}' ${mark}`,
+      },
+      1,
+      () => seen(2, MOVED, other),
+    );
+    const { body } = await other.admin.get(other.at('/control-points/HT-3')).expect(200);
+    expect(body).toMatchObject({ status: 'trusted', statusAct: { text: 'Right.' } });
+    expect(body.health.finding).toBe('moved');
+  });
+
+  it('costs no upload where it cannot be looked at', async () => {
+    const other = await newSiteOrganization();
+    const { id } = await seen(0, MOVED, other);
+    // A kept result that no witness can be made of.
+    await withClient(other.hub.superuserUrl, (client) =>
+      client.query(
+        `update setup_results set result = (result::jsonb - 'accuracy')::json where organization_id = $1 and setup_id = $2`,
+        [other.organizationId, id],
+      ),
+    );
+    const { id: next } = await seen(1, MOVED, other);
+    await other.admin.get(other.at(`/setups/${next}`)).expect(200);
+  });
+
+  it('has hanging on it the setups that stand over it, with what was released and shot from them', async () => {
+    const other = await newSiteOrganization();
+    await newLayer(other.admin, other.at);
+    const stand = { ...MARKS['BM-1'], instrumentHeight: 5.12, orientation: 12 };
+    const shots = (['HT-1', 'HT-3'] as const).flatMap((mark) => shotsTo(mark, { stand }));
+    const over = { stand, method: 'backsight', stationPoint: 'BM-1', station: 'ST-4', shots };
+    const { body } = await other.upload(document('over', { setups: [resection('over', over)] })).expect(201);
+    const [setup] = body.setups;
+    const release = { machine: 'DZ-6', layer: 'subgrade', offset: -0.5, releasedAt: minutesAgo(110) };
+    await other.admin.post(other.at(`/setups/${setup.id}/release`), release).expect(200);
+    const shot = groundShot({ easting: 5120, northing: 8150, elevation: 399.5 }, stand);
+    const grade = { clientId: 'over-1', layer: 'subgrade', setup: 'over', shot, observedAt: minutesAgo(60) };
+    await other.upload(document('over-a', { gradeShots: [grade] })).expect(201);
+    const bumped = { status: 'quarantined', note: 'Bumped by a scraper.' };
+    await other.admin.patch(other.at('/control-points/BM-1'), bumped).expect(200);
+    const affected = (await other.admin.get(other.at('/control-points/BM-1/affected')).expect(200)).body;
+    expect(affected.counts).toEqual({ setup: 1, release: 1, benchCheck: 0, gradeCheck: 1 });
+    expect(affected.data[0]).toMatchObject({ kind: 'setup', id: setup.id, station: 'ST-4' });
+    expect(affected.actions[0].action).toContain('Radio DZ-6');
+    const backsight = (await other.admin.get(other.at('/control-points/HT-1/affected')).expect(200)).body;
+    expect(backsight.counts.setup).toBe(1);
   });
 });

@@ -10,11 +10,15 @@ import { pushed, type SharedControl, setupAmong, sharedControl } from '@/tests/s
 import { asEngine } from './asEngine';
 
 const SEES = 4;
+/** What a mark may miss by, m. */
+const RESIDUAL = { horizontal: 0.015, vertical: 0.015 };
 
 function witness(observed: Observed, at: number): WitnessSetup[] {
   const input = asEngine(observed);
   const fit = fitStation(input);
-  return isWitness(fit) ? [{ id: `s${at}`, observedAt: at, adjusted: adjustStation(input) }] : [];
+  return isWitness(fit)
+    ? [{ id: `s${at}`, observedAt: at, adjusted: adjustStation(input), residual: RESIDUAL }]
+    : [];
 }
 
 const movedIn = (setups: readonly WitnessSetup[]) =>
@@ -75,6 +79,90 @@ it('a mark that settled is named by two setups, and by one setup with a level ru
   expect(sightings[movedSince!].source).toBe('s10');
   expect(names(controlHealth(before, [level(control, 11)]))).toEqual([]);
   expect(names(controlHealth(before, [level(control, 11, 0.05)]))).toEqual([]);
+});
+
+it('a mark that one setup alone ever saw, off, is in doubt, and so are both where two are equally likely', () => {
+  const chance = seededChance(78);
+  const control = sharedControl(chance);
+  const [gone] = control.published;
+  const elsewhere = {
+    ...control,
+    marks: control.marks.map((mark) =>
+      mark.name === gone.name ? { ...mark, height: mark.height - 0.05 } : mark,
+    ),
+  };
+  const [once] = witness(setupAmong(elsewhere, control.marks.length, chance), 1);
+  const alone = controlHealth([once]).find(({ name }) => name === gone.name)!;
+  expect(alone.finding).toBe('doubtful');
+  expect(alone.displacement!.elevation).toBeLessThan(-0.03);
+  expect(alone.test!.statistic).toBeGreaterThan(alone.test!.critical);
+
+  // Between setups that find it in its place: the newest leaves it in doubt, and later ones answer that.
+  const all = control.marks.length;
+  const [first] = witness(setupAmong(control, all, chance), 0);
+  const ofGone = (setups: WitnessSetup[]) => controlHealth(setups).find(({ name }) => name === gone.name)!;
+  const doubt = ofGone([first, once]);
+  expect([doubt.finding, doubt.sightings[doubt.doubted!].source]).toEqual(['doubtful', 's1']);
+  expect(doubt.sightings.map(({ off }) => off)).toEqual([false, true]);
+  const later = [2, 3, 4].flatMap((at) => witness(setupAmong(control, all, chance), at));
+  const answered = ofGone([first, once, ...later]);
+  expect([answered.finding, answered.doubted]).toEqual(['steady', null]);
+  expect(answered.sightings.map(({ off }) => off)).toEqual([false, true, false, false, false]);
+
+  // Two marks apart by another height than was published: either of them.
+  const two = { ...elsewhere, marks: elsewhere.marks.slice(0, 2), published: control.published.slice(0, 2) };
+  const level = {
+    id: 'l2',
+    from: { name: control.published[1].name, version: 1 },
+    to: { name: gone.name, version: 1 },
+    difference: control.marks[0].height - control.marks[1].height - 0.05,
+    sigma: 0.001,
+    observedAt: 20,
+  };
+  const good = [1, 2].flatMap((at) => witness(setupAmong(control, control.marks.length, chance), at));
+  const pair = controlHealth(good, [level]).filter(({ name }) =>
+    two.published.some((mark) => mark.name === name),
+  );
+  expect(pair.map(({ finding, movedSince }) => [finding, movedSince])).toEqual([
+    ['doubtful', null],
+    ['doubtful', null],
+  ]);
+});
+
+it('where a mark may miss by less than its setups can see, it is not known to stand', () => {
+  const chance = seededChance(79);
+  const control = sharedControl(chance);
+  const setups = witness(setupAmong(control, control.marks.length, chance), 1);
+  const strict = setups.map((setup) => ({ ...setup, residual: { horizontal: 0.001, vertical: 0.001 } }));
+  const findings = (of: WitnessSetup[]) => [...new Set(controlHealth(of).map(({ finding }) => finding))];
+  expect(findings(setups)).toEqual(['steady']);
+  expect(findings(strict)).toEqual(['unknown']);
+  expect(controlHealth(strict).every(({ lastInPlace }) => lastInPlace === null)).toBe(true);
+});
+
+it('a setup that could not have seen the move is not the last that found a mark in its place', () => {
+  const chance = seededChance(80);
+  const control = sharedControl(chance);
+  const all = control.marks.length;
+  const { name, control: after } = pushed(control, 0.03, chance);
+  const [good] = witness(setupAmong(control, all, chance), 1);
+  const coarse = asEngine(setupAmong(control, all, chance));
+  const { accuracy } = coarse;
+  const blind: WitnessSetup = {
+    id: 'blind',
+    observedAt: 2,
+    adjusted: adjustStation({
+      ...coarse,
+      accuracy: Object.fromEntries(
+        Object.entries(accuracy).map(([key, value]) => [key, 30 * (value as number)]),
+      ) as unknown as typeof accuracy,
+    }),
+    residual: RESIDUAL,
+  };
+  const moved = [3, 4, 5].flatMap((at) => witness(setupAmong(after, all, chance), at));
+  const health = controlHealth([good, blind, ...moved]).find((one) => one.name === name)!;
+  expect(health.finding).toBe('moved');
+  expect(health.sightings[health.lastInPlace!].source).toBe('s1');
 });
 
 describe.each([1, 2, 3])('a mark that moved 20 mm among five to eight, seed %i', (seed) => {

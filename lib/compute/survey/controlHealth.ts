@@ -6,6 +6,7 @@ import { chiSquareQuantile } from '@/lib/compute/statistics/distributions';
 import { type Displacement, DisplacementTests, quadraticForm } from './displacement';
 import type { Explanation } from './explain';
 import type { Fault } from './fault';
+import { axesMoved, isInPlace, type Place, placeOf, sees } from './inPlace';
 import {
   type JointMark,
   type JointModel,
@@ -36,18 +37,32 @@ export interface MarkSighting {
   source: string;
   observedAt: number;
   /** Its place from the other marks minus published, m; null where the others do not determine it. */
-  difference: { easting: number; northing: number; elevation: number | null } | null;
-  sigma: { easting: number; northing: number; elevation: number | null } | null;
+  difference: Place | null;
+  sigma: Place | null;
+  /** Its difference is more than chance makes of a mark in its place. */
+  off: boolean;
 }
+
+/**
+ * - `moved`: witnesses agree with its having moved, and nothing else explains them as well.
+ * - `doubtful`: something shows it elsewhere and cannot be told from a misreading or from another mark.
+ * - `unknown`: nothing tells where it stands, or not closely enough to show what a mark may miss by.
+ */
+export type Finding = 'steady' | 'moved' | 'doubtful' | 'unknown';
 
 export interface MarkHealth {
   name: string;
   version: number;
+  finding: Finding;
   sightings: MarkSighting[];
   /** Index of the first sighting of those that agree with the mark having moved; null where it has not. */
   movedSince: number | null;
+  /** Index of the newest sighting that shows it elsewhere and that no later one answers; null where none does. */
+  doubted: number | null;
+  /** Index of the last sighting that could have seen it elsewhere and found it in its place, before it moved or is doubted. */
+  lastInPlace: number | null;
   /** Where it stands minus where it was published: in all sightings, or in those since it moved. Null where unknown. */
-  displacement: { easting: number; northing: number; elevation: number | null } | null;
+  displacement: Place | null;
   /** Covariance of the displacement, 2 × 2 or 3 × 3 row by row, the published standard deviations in it once. */
   covariance: Float64Array | null;
   test: { statistic: number; critical: number; degreesOfFreedom: number } | null;
@@ -74,7 +89,8 @@ export function isWitness(fit: { converged: boolean; explanations: readonly Expl
  * The most telling alternative is taken into the model and the rest tested again (detection, identification and
  * adaptation; Teunissen, Testing Theory, ch. 4), until nothing is left that stands out.
  *
- * A mark is named where two setups at least agree with its having moved, and nothing else explains them as well.
+ * A mark is named where two witnesses at least, a setup among them, agree with its having moved, and nothing else
+ * explains them as well. What stands out and names none leaves marks in doubt.
  *
  * Where more scatter is left than the stated accuracies allow, all covariances grow by σ₀².
  */
@@ -85,19 +101,28 @@ export function controlHealth(
   if (setups.length === 0) return [];
   const model = jointModel(setups, levels);
   const alternatives = model.marks.flatMap((known) => alternativesOf(known, model.sightings.get(known)!));
-  // A misread sighting raises no alarm.
-  const tested = Math.max(1, alternatives.filter(({ since }) => since !== null).length);
+  // A misread sighting raises no alarm; each mark is tested once at least.
+  const moves = alternatives.filter(({ since }) => since !== null).length;
+  const tested = Math.max(1, model.marks.length, moves);
   const criticalOf = (axes: number) => chiSquareQuantile(1 - FALSE_ALARM / tested, axes);
 
+  const residuals = new Map(setups.map(({ id, residual }) => [id, residual]));
+
   const found: Alternative[] = [];
+  const doubts = new Set<Alternative>();
   let look = lookAt(model, found);
   while (found.length < MOST_FAULTS) {
-    const next = mostTelling(look, alternatives, found, criticalOf);
+    const { next, alike } = mostTelling(look, alternatives, found, criticalOf);
+    for (const alternative of alike) doubts.add(alternative);
     if (!next) break;
     found.push(next);
     look = lookAt(model, found);
   }
-  return model.marks.flatMap((known) => healthOf(known, look, found, criticalOf(known.axes)) ?? []);
+  return model.marks.flatMap((known) => {
+    const doubted = [...doubts].filter((alternative) => alternative.known === known);
+    const own = model.sightings.get(known)!.flatMap(({ source }) => residuals.get(source) ?? []);
+    return healthOf(known, look, found, doubted, smallest(own), criticalOf(known.axes)) ?? [];
+  });
 }
 
 interface Alternative {
@@ -162,16 +187,28 @@ function lookAt(model: JointModel, found: readonly Alternative[]): Look {
   return { model, solution, cofactors, variance: test.passed ? 1 : test.sigma0 ** 2, tests };
 }
 
-/**
- * The alternative that explains most of what is left, where that is more than chance does and it can be told from the
- * others; null where there is none.
- */
+/** What has to be seen of a mark: what it may miss by in the strictest class of those who saw it. */
+function smallest(residuals: readonly WitnessSetup['residual'][]): WitnessSetup['residual'] {
+  return {
+    horizontal: Math.min(...residuals.map(({ horizontal }) => horizontal)),
+    vertical: Math.min(...residuals.map(({ vertical }) => vertical)),
+  };
+}
+
+interface Telling {
+  /** What explains most of what is left, where it can be told from the others; null where there is none. */
+  next: Alternative | null;
+  /** Alternatives of other marks that explain it as well; with the best one, where that is not told from them. */
+  alike: Alternative[];
+}
+
+/** The alternative that explains most of what is left, where that is more than chance does. */
 function mostTelling(
   look: Look,
   alternatives: readonly Alternative[],
   found: readonly Alternative[],
   criticalOf: (axes: number) => number,
-): Alternative | null {
+): Telling {
   const taken = new Set(found);
   const candidates = alternatives.flatMap((alternative) => {
     if (taken.has(alternative)) return [];
@@ -187,44 +224,98 @@ function mostTelling(
   });
   candidates.sort((a, b) => b.beyond - a.beyond);
   const [best] = candidates;
-  if (!best || best.beyond <= 0) return null;
-  if (best.alternative.since === null) return best.alternative;
+  if (!best || best.beyond <= 0) return { next: null, alike: [] };
+  const { known, since } = best.alternative;
+  const close = candidates.filter(({ beyond }) => beyond > 0 && best.beyond - beyond < NAMED_AT);
+  const others = close.flatMap(({ alternative }) => (alternative.known === known ? [] : alternative));
+  if (since === null) return { next: best.alternative, alike: others };
   const rival = candidates.find(
-    ({ alternative: { known, since } }) => known !== best.alternative.known || since === null,
+    ({ alternative }) => alternative.known !== known || alternative.since === null,
   );
-  return !rival || best.beyond - rival.beyond >= NAMED_AT ? best.alternative : null;
+  if (!rival || best.beyond - rival.beyond >= NAMED_AT) return { next: best.alternative, alike: [] };
+  return { next: null, alike: [best.alternative, ...others] };
 }
 
 function healthOf(
   known: JointMark,
   look: Look,
   found: readonly Alternative[],
+  doubts: readonly Alternative[],
+  residual: WitnessSetup['residual'],
   critical: number,
 ): MarkHealth | null {
-  const sightings = look.model.sightings.get(known)!;
-  if (sightings.length === 0) return null;
+  const indices = new Set(look.model.sightings.get(known)!.keys());
+  if (indices.size === 0) return null;
   const { mark, axes } = known;
   const { name, version } = mark;
-  const tests = look.tests.get(known)!;
+  const others = found.filter((alternative) => alternative.known !== known);
+  const without = others.length === found.length ? look : lookAt(look.model, others);
   const moved = found.find((alternative) => alternative.known === known && alternative.since !== null);
   const whole = moved
     ? foundDisplacement(look, found, moved)
-    : tests.common(new Set(sightings.keys()), AXES.slice(0, axes));
+    : // Where all that saw it was left out as misread, that is what is known of it.
+      (look.tests.get(known)!.common(indices, AXES.slice(0, axes)) ??
+      without.tests.get(known)!.common(indices, AXES.slice(0, axes)));
+  const sightings = differencesOf(known, without, look.variance, critical);
+  const displacement = whole && placeOf(whole.estimate, 0, axes);
+  const covariance = whole?.covariance.map((value) => value * look.variance) ?? null;
+  const sigma = covariance && placeOf(covariance.map(Math.sqrt), 0, axes, axes + 1);
+  const statistic = whole ? whole.statistic / look.variance : 0;
+
+  const movedSince = moved?.since ?? null;
+  const telling: Place = {
+    easting: residual.horizontal,
+    northing: residual.horizontal,
+    elevation: axes === 3 ? residual.vertical : null,
+  };
+  const misread = found.filter((alternative) => alternative.known === known && alternative.since === null);
+  const doubted = movedSince === null ? newestDoubt(sightings, [...misread, ...doubts], telling) : null;
+  const beyond = doubted !== null || statistic > critical;
+  let finding: Finding = 'steady';
+  if (movedSince !== null) finding = 'moved';
+  else if (beyond) finding = 'doubtful';
+  else if (!sigma || !sees(sigma, telling)) finding = 'unknown';
+
+  let wanted = telling;
+  if (movedSince !== null && displacement && sigma) wanted = axesMoved(displacement, sigma);
+  else if (doubted !== null) wanted = wantedAgainst(sightings[doubted], telling);
+  const until = movedSince ?? doubted ?? sightings.length;
+  const lastInPlace = sightings.slice(0, until).findLastIndex((sighting) => isInPlace(sighting, wanted));
   return {
     name,
     version,
-    sightings: differencesOf(known, look, found),
-    movedSince: moved?.since ?? null,
-    displacement: whole && placeOf(whole.estimate, 0, axes),
-    covariance: whole?.covariance.map((value) => value * look.variance) ?? null,
-    test: whole && { statistic: whole.statistic / look.variance, critical, degreesOfFreedom: axes },
+    finding,
+    sightings,
+    movedSince,
+    doubted,
+    lastInPlace: lastInPlace < 0 ? null : lastInPlace,
+    displacement,
+    covariance,
+    test: whole && { statistic, critical, degreesOfFreedom: axes },
   };
 }
 
-/** What each sighting shows of a mark, its own faults left out of the model. */
-function differencesOf(known: JointMark, look: Look, found: readonly Alternative[]): MarkSighting[] {
-  const others = found.filter((alternative) => alternative.known !== known);
-  const tests = (others.length === found.length ? look : lookAt(look.model, others)).tests.get(known)!;
+/** The newest sighting that shows a mark elsewhere, or may, where none that could have seen it found the mark in place since. */
+function newestDoubt(
+  sightings: readonly MarkSighting[],
+  doubts: readonly Alternative[],
+  telling: Place,
+): number | null {
+  const doubted = (index: number) => sightings[index].off || doubts.some((one) => one.sightings.has(index));
+  const newest = sightings.findLastIndex((_, index) => doubted(index));
+  if (newest < 0) return null;
+  const wanted = wantedAgainst(sightings[newest], telling);
+  return sightings.slice(newest + 1).some((later) => isInPlace(later, wanted)) ? null : newest;
+}
+
+/** What another sighting has to be able to see to answer this one. */
+function wantedAgainst({ difference, sigma, off }: MarkSighting, telling: Place): Place {
+  return off && difference && sigma ? axesMoved(difference, sigma) : telling;
+}
+
+/** What each sighting shows of a mark, in a look without its own faults; with the variance of the last one. */
+function differencesOf(known: JointMark, look: Look, variance: number, critical: number): MarkSighting[] {
+  const tests = look.tests.get(known)!;
   const sightings = look.model.sightings.get(known)!;
   const determined = [...sightings.keys()].filter(
     (i) => tests.common(new Set([i]), AXES.slice(0, known.axes)) !== null,
@@ -234,25 +325,20 @@ function differencesOf(known: JointMark, look: Look, found: readonly Alternative
   const size = determined.length * axes;
   return sightings.map(({ source, observedAt }, i): MarkSighting => {
     const first = determined.indexOf(i) * axes;
-    if (!each || first < 0) return { source, observedAt, difference: null, sigma: null };
-    const sigmas = Float64Array.from({ length: axes }, (_, axis) =>
-      Math.sqrt(each.covariance[(first + axis) * (size + 1)] * look.variance),
-    );
+    if (!each || first < 0) return { source, observedAt, difference: null, sigma: null, off: false };
+    const covariance = Float64Array.from({ length: axes * axes }, (_, at) => {
+      const [row, column] = [first + Math.floor(at / axes), first + (at % axes)];
+      return each.covariance[row * size + column] * variance;
+    });
+    const estimate = each.estimate.slice(first, first + axes);
     return {
       source,
       observedAt,
-      difference: placeOf(each.estimate, first, axes),
-      sigma: placeOf(sigmas, 0, axes),
+      difference: placeOf(estimate, 0, axes),
+      sigma: placeOf(covariance.map(Math.sqrt), 0, axes, axes + 1),
+      off: quadraticForm(estimate, covariance) > critical,
     };
   });
-}
-
-function placeOf(values: ArrayLike<number>, first: number, axes: number) {
-  return {
-    easting: values[first],
-    northing: values[first + 1],
-    elevation: axes === 3 ? values[first + 2] : null,
-  };
 }
 
 /** A displacement that is among the unknowns of the last look. */

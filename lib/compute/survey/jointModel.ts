@@ -9,6 +9,8 @@ export interface WitnessSetup {
   /** ms since 1970. */
   observedAt: number;
   adjusted: AdjustedStation;
+  /** What a mark may miss by in the setup's tolerance class, m. */
+  residual: { horizontal: number; vertical: number };
 }
 
 /** A height difference between two marks from another source, such as a level run; m. */

@@ -2,6 +2,7 @@ import { and, asc, count, eq, gte, inArray, lt, notInArray, type SQL } from 'dri
 import {
   type AdjustmentRequest,
   controlPoints,
+  levelRuns as levelRunRows,
   observations,
   setupChecks,
   setupResults,
@@ -112,7 +113,8 @@ export async function gather(tenant: Tenant, of: Of, request: AdjustmentRequest)
 /** Differences of the level runs of a request. */
 async function wantedRuns(tenant: Tenant, of: Of, { levelRuns, since, until }: AdjustmentRequest) {
   if (levelRuns === null) return [];
-  const differences = await runDifferences(tenant, of, levelRuns === 'all' ? null : levelRuns);
+  const named = levelRuns === 'all' ? undefined : inArray(levelRunRows.id, [...levelRuns]);
+  const differences = await runDifferences(tenant, of, named);
   return differences.filter(({ run }) => {
     const at = new Date(run.observedAt);
     return (since === null || at >= new Date(since)) && (until === null || at < new Date(until));

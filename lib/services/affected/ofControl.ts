@@ -27,11 +27,10 @@ export async function readControlAffected(
   const { name, status } = row.point;
   const { health, witnesses } = await loadHealth(tenant, project, row);
   const since = sinceOf(name, health, witnesses);
-  const used = sql`s.root_id in (select o.setup_id from observations o where o.organization_id = ${organizationId}
-      and o.project_id = ${project.id} and o.target = ${name})
-    and (exists (select 1 from setup_results r, json_array_elements(r.result -> 'marks') m
+  const used = sql`(exists (select 1 from setup_results r
         where r.organization_id = s.organization_id and r.setup_id = s.id and r.version = s.result_version
-          and m ->> 'name' = ${name})
+          and (r.result -> 'occupied' ->> 'name' = ${name} or exists (
+            select 1 from json_array_elements(r.result -> 'marks') m where m ->> 'name' = ${name})))
       or exists (select 1 from setup_checks c, json_array_elements(c.result -> 'targets') t
         where c.organization_id = s.organization_id and c.setup_id = s.id and t ->> 'target' = ${name}))`;
   const page = await loadAffected(
@@ -56,11 +55,10 @@ export async function readControlAffected(
   );
 }
 
-/** The last setup that saw it in its place: the one before it moved, or the newest that agrees. */
+/** The last setup that could have seen it off and found it in its place. */
 function sinceOf(name: string, health: MarkHealth | null, { facts }: Witnesses): Since {
-  const seen = health?.sightings.slice(0, health.movedSince ?? undefined) ?? [];
-  const good = seen.findLast(isInPlace);
-  const fact = good && facts.get(good.source);
+  const good = health?.lastInPlace ?? null;
+  const fact = good === null ? undefined : facts.get(health!.sightings[good].source);
   if (!fact) {
     const text = `No setup has seen ${name} in its place: everything that used it is affected.`;
     return { at: null, checkId: null, setupId: null, text };
@@ -71,18 +69,6 @@ function sinceOf(name: string, health: MarkHealth | null, { facts }: Witnesses):
     setupId: fact.kind === 'setup' ? fact.id : null,
     text: `Since ${fact.station} at ${asMoment(fact.observedAt)}, which still found it in its place.`,
   };
-}
-
-/** Within two standard deviations on every axis. */
-function isInPlace({ difference, sigma }: MarkHealth['sightings'][number]): boolean {
-  if (!difference || !sigma) return false;
-  const within = (value: number | null, deviation: number | null) =>
-    value === null || deviation === null || Math.abs(value) <= 2 * deviation;
-  return (
-    within(difference.easting, sigma.easting) &&
-    within(difference.northing, sigma.northing) &&
-    within(difference.elevation, sigma.elevation)
-  );
 }
 
 function standing(name: string, status: string): Words[] {

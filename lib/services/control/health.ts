@@ -5,7 +5,7 @@ import type { Lengths } from '@/lib/services/lengths';
 import { asMoment } from '@/lib/services/moments';
 import type { ProjectRow } from '@/lib/services/projects/load';
 import type { ControlHealth } from '@/openapi/schemas/control';
-import { azimuthOf, displacementText, movedText } from './healthWords';
+import { azimuthOf, displacementText, doubtText, movedText } from './healthWords';
 import type { CurrentControl } from './load';
 import { loadWitnesses, type Witnesses } from './witnesses';
 
@@ -37,22 +37,14 @@ export function presentHealth(
       sightings: health ? sightingsOf(health, facts, length) : [],
     };
   }
-  const { displacement, covariance, movedSince, sightings, test } = health;
+  const { finding, displacement, covariance, movedSince, lastInPlace, sightings, test } = health;
   const moved = movedSince !== null;
   const axes = displacement.elevation === null ? 2 : 3;
   const deviation = (axis: number) => length.out(Math.sqrt(covariance[axis * (axes + 1)]));
-  const before = moved ? sightings[movedSince - 1] : undefined;
   const instant = (at: number) => asMoment(new Date(at).toISOString());
   return {
-    finding: moved ? 'moved' : 'steady',
-    text: moved
-      ? movedText(health, facts, length)
-      : `${name} stands where it was published, as far as ${sightings.length === 1 ? 'one setup tells' : `${sightings.length} setups tell`}: ${displacementText(displacement, covariance, length)} (95 %).`,
-    ...(moved
-      ? {
-          action: `Look at ${name}. Quarantine it, or publish it anew once it is surveyed; then see what is affected.`,
-        }
-      : {}),
+    finding,
+    ...wordsOf(health, facts, length),
     displacement: {
       easting: length.out(displacement.easting),
       northing: length.out(displacement.northing),
@@ -72,12 +64,51 @@ export function presentHealth(
     },
     movedBetween: moved
       ? {
-          after: before ? instant(before.observedAt) : null,
+          after: lastInPlace === null ? null : instant(sightings[lastInPlace].observedAt),
           before: instant(sightings[movedSince].observedAt),
         }
       : null,
     sightings: sightingsOf(health, facts, length),
   };
+}
+
+/** What is found, and what to do. */
+function wordsOf(
+  health: MarkHealth,
+  facts: Witnesses['facts'],
+  length: Lengths,
+): { text: string; action?: string } {
+  const { name, finding, sightings } = health;
+  const place = () => `${displacementText(health.displacement!, health.covariance!, length)} (95 %)`;
+  switch (finding) {
+    case 'moved':
+      return {
+        text: movedText(health, facts, length),
+        action: `Look at ${name}. Quarantine it, or publish it anew once it is surveyed; then see what is affected.`,
+      };
+    case 'doubtful':
+      return {
+        text: doubtText(health, facts, length),
+        action: `Shoot ${name} and the marks around it from a second setup before you rely on it.`,
+      };
+    case 'unknown':
+      return {
+        text: `Nothing tells closely enough where ${name} stands: ${place()}, while a smaller move would matter in the class that it is used for.`,
+        action: `Shoot ${name} from nearer, in both faces, together with more marks.`,
+      };
+    case 'steady':
+      return {
+        text: `${name} stands where it was published, as far as ${tellersOf(sightings, facts)}: ${place()}.`,
+      };
+  }
+}
+
+/** `one setup tells`, `3 setups and 1 level run tell`. */
+function tellersOf(sightings: MarkHealth['sightings'], facts: Witnesses['facts']): string {
+  const setups = sightings.filter(({ source }) => facts.get(source)?.kind === 'setup').length;
+  const runs = sightings.length - setups;
+  if (runs === 0) return setups === 1 ? 'one setup tells' : `${setups} setups tell`;
+  return `${setups} setup${setups === 1 ? '' : 's'} and ${runs} level run${runs === 1 ? '' : 's'} tell`;
 }
 
 /** Newest first. */
@@ -93,7 +124,7 @@ function sightingsOf(
       elevation: length.outOrNull(place.elevation),
     };
   return sightings
-    .map(({ source, difference, sigma }, i) => {
+    .map(({ source, difference, sigma, off }, i) => {
       const fact = facts.get(source)!;
       return {
         setupId: fact.kind === 'setup' ? fact.id : null,
@@ -102,6 +133,7 @@ function sightingsOf(
         observedAt: asMoment(fact.observedAt),
         crew: fact.crew,
         moved: movedSince !== null && i >= movedSince,
+        off,
         difference: out(difference),
         standardDeviations: out(sigma),
       };

@@ -8,7 +8,7 @@ import type { ProjectRow } from '@/lib/services/projects/load';
 import { record } from '@/lib/services/record';
 import type { SetupResult } from '@/lib/services/setups/result';
 import { movedText } from './healthWords';
-import { asMark, byNames, type CurrentControl, currentControl } from './load';
+import { asMark, type CurrentControl, lockedControl } from './load';
 import { loadWitnesses, type Witnesses } from './witnesses';
 
 /** Who acts where nobody asked. */
@@ -45,19 +45,20 @@ export async function watchControl(
     ({ movedSince }) => movedSince !== null,
   );
   if (moved.length === 0) return [];
-  const rows = await currentControl(
+  // What somebody says meanwhile is waited for, and heard.
+  const rows = await lockedControl(
     tenant,
     organizationId,
     project.id,
-    byNames(moved.map(({ name }) => name)),
+    moved.map(({ name }) => name),
   );
   const suspected: string[] = [];
-  for (const row of rows.sort((a, b) => (a.point.name < b.point.name ? -1 : 1))) {
+  for (const row of rows) {
     const health = moved.find((one) => one.name === row.point.name && one.version === asMark(row).version);
     if (!health || !maySuspect(row, health, witnesses)) continue;
     const at = runtime.now().toISOString();
     const statusAct = actOf(health, witnesses, at, new Lengths(project.lengthUnit));
-    const { rowCount } = await tenant.db
+    await tenant.db
       .update(controlPoints)
       .set({ status: 'suspect', statusAct, updatedAt: at })
       .where(
@@ -65,10 +66,8 @@ export async function watchControl(
           eq(controlPoints.organizationId, organizationId),
           eq(controlPoints.projectId, project.id),
           eq(controlPoints.name, row.point.name),
-          eq(controlPoints.status, 'trusted'),
         ),
       );
-    if (rowCount === 0) continue;
     suspected.push(row.point.name);
     record(
       context,
@@ -99,9 +98,9 @@ function maySuspect(
 }
 
 function actOf(health: MarkHealth, { facts }: Witnesses, at: string, length: Lengths): StatusAct {
-  const { version, movedSince, sightings, displacement, covariance, test } = health;
+  const { version, movedSince, lastInPlace, sightings, displacement, covariance, test } = health;
   const since = sightings.slice(movedSince!);
-  const lastGood = sightings[movedSince! - 1];
+  const lastGood = lastInPlace === null ? null : sightings[lastInPlace];
   return {
     by: { kind: 'job', name: HUB },
     at,

@@ -1,7 +1,8 @@
 import { and, eq, gt } from 'drizzle-orm';
 import { observations, projects, setups } from '@/db/schema';
 import { tenantTransaction } from '@/db/tenant';
-import { organizationIds } from '@/lib/jobs/sweep';
+import { eachOrganization } from '@/lib/jobs/sweep';
+import { WATCH_CONTROL } from '@/lib/jobs/tasks';
 import { log } from '@/lib/log/log';
 import type { Runtime } from '@/lib/runtime';
 import { watchControl } from './watch';
@@ -16,7 +17,7 @@ const LOOKS_BACK_MS = 20 * 60_000;
 export async function watchRecent(runtime: Runtime): Promise<void> {
   const since = new Date(runtime.now().getTime() - LOOKS_BACK_MS).toISOString();
   let suspected = 0;
-  for (const organizationId of await organizationIds()) {
+  await eachOrganization(WATCH_CONTROL, async (organizationId) => {
     const recent = await tenantTransaction(organizationId, ({ db }) =>
       db
         .selectDistinct({ id: projects.id, lengthUnit: projects.lengthUnit, target: observations.target })
@@ -40,6 +41,6 @@ export async function watchRecent(runtime: Runtime): Promise<void> {
       );
       suspected += found.length;
     }
-  }
-  log().info({ task: 'watchControl', suspected }, 'job done');
+  });
+  log().info({ task: WATCH_CONTROL, suspected }, 'job done');
 }

@@ -5,6 +5,7 @@ import type { WitnessLevel, WitnessSetup } from '@/lib/compute/survey/jointModel
 import type { ControlMark, Shot } from '@/lib/compute/survey/shots';
 import { adjustStation, StationError } from '@/lib/compute/survey/stationAdjustment';
 import { runDifferences } from '@/lib/services/levelRuns/differences';
+import { touches } from '@/lib/services/levelRuns/load';
 import type { SetupResult } from '@/lib/services/setups/result';
 
 /** Setups that are heard on a mark: the newest. What is older has been answered or moved over since. */
@@ -38,6 +39,7 @@ interface WitnessRow extends Record<string, unknown> {
   ppm: number | null;
   explanations: SetupResult['explanations'];
   converged: boolean;
+  residual: WitnessSetup['residual'];
   marks: ControlMark[];
   shots: Shot[];
 }
@@ -60,6 +62,7 @@ export async function loadWitnesses(
     select s.id, s.station, s.observed_at::text, s.created_at::text, s.submitted_by,
       r.result -> 'accuracy' as accuracy, r.result -> 'surroundings' as surroundings, (r.result ->> 'ppm')::float8 as ppm,
       r.result -> 'explanations' as explanations, (r.result ->> 'converged')::boolean as converged,
+      r.result -> 'limits' -> 'residual' as residual,
       (select coalesce(json_agg(json_build_object('name', v.name, 'version', v.version, 'easting', v.easting,
           'northing', v.northing, 'elevation', v.elevation, 'horizontalSigma', v.sigma_horizontal,
           'verticalSigma', v.sigma_vertical, 'status', 'trusted')), '[]')
@@ -98,18 +101,23 @@ export async function loadWitnesses(
       },
     ]),
   );
-  const levels = await loadLevels(tenant, organizationId, projectId, facts);
+  const levels = rows.length === 0 ? [] : await loadLevels(tenant, organizationId, projectId, names, facts);
   return { facts, levels, setups: rows.flatMap((row) => asWitness(row) ?? []) };
 }
 
-/** Level runs that close, between marks in the versions that they used; told of among the facts. */
+/** Level runs that close and touched any of these marks, between marks in the versions that they used; told of among the facts. */
 async function loadLevels(
   tenant: Tenant,
   organizationId: string,
   projectId: string,
+  names: readonly string[],
   facts: Map<string, WitnessFacts>,
 ): Promise<WitnessLevel[]> {
-  const runs = await runDifferences(tenant, { organizationId, projectId });
+  const runs = await runDifferences(
+    tenant,
+    { organizationId, projectId },
+    touches(tenant, organizationId, names),
+  );
   return runs.flatMap(({ from, to, difference, weight, run, control }): WitnessLevel[] => {
     const [low, high] = [from, to].map((name) => control.find((mark) => mark.name === name));
     if (!low || !high || weight.by !== 'sigma') return [];
@@ -135,7 +143,7 @@ function asWitness(row: WitnessRow): WitnessSetup | null {
   try {
     const adjusted = adjustStation({ shots, control, accuracy, surroundings, ppm });
     if (!adjusted.solution.converged) return null;
-    return { id: row.id, observedAt: Date.parse(row.observed_at), adjusted };
+    return { id: row.id, observedAt: Date.parse(row.observed_at), adjusted, residual: row.residual };
   } catch (error) {
     if (error instanceof StationError) return null;
     throw error;

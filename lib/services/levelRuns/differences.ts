@@ -1,4 +1,4 @@
-import { and, asc, eq, inArray } from 'drizzle-orm';
+import { and, asc, eq, inArray, type SQL } from 'drizzle-orm';
 import { levelRuns } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
 import type { HeightDifference } from '@/lib/compute/survey/levelling/heightDifferences';
@@ -23,25 +23,32 @@ export interface RunDifference extends LevelDifference {
  * Level runs as observations of a network, each cut at the control points that it turned on. A run that does not
  * close holds a gross error and takes no part; a loop that turned on no mark says nothing of any height.
  *
- * @param runIds null for all runs of the project
+ * @param further condition on the runs; without it all runs of the project
  */
 export async function runDifferences(
   tenant: Tenant,
   of: { organizationId: string; projectId: string },
-  runIds: readonly string[] | null = null,
+  further?: SQL,
 ): Promise<RunDifference[]> {
   const rows = (await tenant.db
-    .select()
+    .select({
+      id: levelRuns.id,
+      clientId: levelRuns.clientId,
+      verdict: levelRuns.verdict,
+      observedAt: levelRuns.observedAt,
+      createdAt: levelRuns.createdAt,
+      result: levelRuns.result,
+    })
     .from(levelRuns)
     .where(
       and(
         eq(levelRuns.organizationId, of.organizationId),
         eq(levelRuns.projectId, of.projectId),
         inArray(levelRuns.verdict, ['pass', 'hold']),
-        runIds === null ? undefined : inArray(levelRuns.id, [...runIds]),
+        further,
       ),
     )
-    .orderBy(asc(levelRuns.id))) as LevelRunRow[];
+    .orderBy(asc(levelRuns.id))) as (RunDifference['run'] & Pick<LevelRunRow, 'result'>)[];
   return rows.flatMap((row) =>
     row.result.differences
       .filter(({ from, to }) => from !== to)

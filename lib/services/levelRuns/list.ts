@@ -29,7 +29,7 @@ export async function listLevelRuns(
         eq(levelRuns.projectId, project.id),
         verdict ? eq(levelRuns.verdict, verdict) : undefined,
         instrument ? eq(levelRuns.instrumentName, instrument) : undefined,
-        point ? touches(tenant, organizationId, point) : undefined,
+        point ? touches(tenant, organizationId, [point]) : undefined,
         after === null ? undefined : lt(levelRuns.id, after),
       ),
     )

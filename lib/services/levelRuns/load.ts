@@ -1,4 +1,4 @@
-import { and, eq, exists, type InferSelectModel, or, sql } from 'drizzle-orm';
+import { and, eq, exists, type InferSelectModel, inArray, or, sql } from 'drizzle-orm';
 import { levelDifferences, levelRuns } from '@/db/schema';
 import type { Tenant } from '@/db/tenant';
 import type { KeptSights, LevelRunResult } from './result';
@@ -8,8 +8,9 @@ export type LevelRunRow = Omit<InferSelectModel<typeof levelRuns>, 'sights' | 'r
   result: LevelRunResult;
 };
 
-/** Runs that begin or end on a point, or that passed it as a control point. */
-export function touches(tenant: Tenant, organizationId: string, point: string) {
+/** Runs that begin or end on one of these points, or that passed one as a control point. */
+export function touches(tenant: Tenant, organizationId: string, names: readonly string[]) {
+  const points = [...names];
   const passing = tenant.db
     .select({ one: sql`1` })
     .from(levelDifferences)
@@ -17,8 +18,8 @@ export function touches(tenant: Tenant, organizationId: string, point: string) {
       and(
         eq(levelDifferences.organizationId, organizationId),
         eq(levelDifferences.levelRunId, levelRuns.id),
-        eq(levelDifferences.point, point),
+        inArray(levelDifferences.point, points),
       ),
     );
-  return or(eq(levelRuns.fromPoint, point), eq(levelRuns.toPoint, point), exists(passing));
+  return or(inArray(levelRuns.fromPoint, points), inArray(levelRuns.toPoint, points), exists(passing));
 }

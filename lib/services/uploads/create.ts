@@ -1,7 +1,9 @@
+import { inSavepoint } from '@/db/savepoint';
 import type { Tenant } from '@/db/tenant';
 import { sha256 } from '@/lib/access/secrets';
 import type { Surface } from '@/lib/compute/grade/surface';
 import type { RawBody } from '@/lib/formats/body';
+import { log } from '@/lib/log/log';
 import { invalidItems, Problem } from '@/lib/problem';
 import { answerOnce } from '@/lib/services/answerOnce';
 import type { CallerContext, VerbContext } from '@/lib/services/context';
@@ -169,11 +171,21 @@ async function drafted(
   return draft;
 }
 
-/** Looks at the marks of setups that do not fit well: one of them may have moved. What was just written is seen. */
+/**
+ * Looks at the marks of setups that do not fit well: one of them may have moved. What was just written is seen. Where
+ * the look fails the upload stands; the next one comes within minutes.
+ */
 async function watchStriking(context: VerbContext, { setups, site }: Draft): Promise<void> {
   const striking = setups.filter(({ result }) => isStriking(result.result));
   const names = striking.flatMap(({ result }) => result.result.marks.map(({ name }) => name));
-  await watchControl(context, site.project, [...new Set(names)]);
+  if (names.length === 0) return;
+  try {
+    await inSavepoint(context.tenant, (tenant) =>
+      watchControl({ ...context, tenant }, site.project, [...new Set(names)]),
+    );
+  } catch (err) {
+    log().error({ requestId: context.requestId, err }, 'control was not looked at');
+  }
 }
 
 /** A document of which nothing is left: each item was bad, or something beside the items. */

@@ -45,13 +45,20 @@ export const controlHealth: Method = {
         <Points>
           {[
             `Under ${percent(FALSE_ALARM)} of looks at control that stands finds anything: the level is shared among all marks and all times.`,
-            `${SIGHTINGS_WANTED} setups at least agree with its having moved. One alone cannot tell a mark that moved from a misread height.`,
+            `${SIGHTINGS_WANTED} sightings at least agree with its having moved: two setups, or one and a level run. One alone cannot tell a mark that moved from a misread height.`,
             `Every other cause is ${figure(Math.exp(NAMED_AT / 2))} times less likely.`,
           ]}
         </Points>
         <p>
-          Then the hub suspects a trusted mark by itself. It never goes against a person: once somebody has
-          said how far a mark is to be trusted, only a move that was sent in later counts.
+          Where one sighting alone is beyond its limit, or all together are, or two marks explain it alike,
+          the mark is in doubt: it is to be shot from a second setup. A later sighting that could have seen it
+          as far off and finds it in its place answers the doubt: within 2σ, and 2σ no longer than what was
+          seen. Where 2σ is longer than what a mark may miss by in the strictest class that saw it, its place
+          is not known.
+        </p>
+        <p>
+          A trusted mark that is named the hub suspects by itself. It never goes against a person: once
+          somebody has said how far a mark is to be trusted, only a move that was sent in later counts.
         </p>
       </Part>
     </>

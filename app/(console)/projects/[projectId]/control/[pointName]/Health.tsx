@@ -11,7 +11,8 @@ import type * as contracts from '@/openapi/contracts/control';
 const FINDING = {
   steady: { tone: 'pass', word: 'in its place' },
   moved: { tone: 'fail', word: 'has moved' },
-  unknown: { tone: 'hold', word: 'not known' },
+  doubtful: { tone: 'hold', word: 'in doubt' },
+  unknown: { tone: 'plain', word: 'not known' },
 } as const;
 
 /** What all setups together show of a point, and who said how far it is to be trusted. */
