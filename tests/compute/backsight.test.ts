@@ -1,12 +1,14 @@
 import { describe, expect, it } from 'vitest';
+import { backsightChecks } from '@/lib/compute/survey/backsights';
 import type { CheckDifference } from '@/lib/compute/survey/checkShots';
 import type { ControlMark, Shot } from '@/lib/compute/survey/shots';
-import type { Occupied } from '@/lib/compute/survey/stationAdjustment';
+import { adjustStation, type Occupied, type StationError } from '@/lib/compute/survey/stationAdjustment';
 import { fitStation, type StationFit } from '@/lib/compute/survey/stationFit';
 import { judgeSetup, type SetupLimits } from '@/lib/compute/survey/verdict';
 import { wrapDifference } from '@/lib/compute/units/angles';
+import { stationProblem } from '@/lib/services/uploads/stationProblem';
 import { type Chance, seededChance } from '@/tests/simulator/chance';
-import { type Observed, observe } from '@/tests/simulator/observe';
+import { type Observed, observe, type Site } from '@/tests/simulator/observe';
 import { randomInstrument, randomSite } from '@/tests/simulator/randomSite';
 import { asEngine } from './asEngine';
 
@@ -91,6 +93,79 @@ describe.each([1, 2, 3])('1,000 simulated setups over a mark with %i backsights'
   });
 });
 
+describe('2,000 simulated backsights on a slope', () => {
+  const count = 2000;
+  const [grid, rise] = [40, 40];
+  const instrument = {
+    direction: 5e-6,
+    zenith: 5e-5,
+    distance: 0.002,
+    distancePpm: 0,
+    collimation: 5e-5,
+    targetCentring: 0.001,
+    targetHeight: 0.001,
+  };
+  it.each([
+    ['without a distance', { distance: false, zenith: true, atmosphere: true }, 0.01, 0.003, 'height'],
+    ['without a zenith angle', { distance: true, zenith: false, atmosphere: true }, 0.002, 0.01, 'distance'],
+    ['in unknown air', { distance: true, zenith: true, atmosphere: false }, 0.001, 0.001, 'height'],
+  ] as const)(
+    '%s: the comparison scatters as its u says',
+    (_, read, horizontalSigma, verticalSigma, what) => {
+      const chance = seededChance(53);
+      const ppmSigma = read.atmosphere ? 0 : 150;
+      let [squares, stated] = [0, 0];
+      for (let i = 0; i < count; i++) {
+        const station = { easting: 1000, northing: 1000, height: 11.5 };
+        const mark = { hasElevation: true, reflectors: [1.6], horizontalSigma, verticalSigma };
+        const site: Site = {
+          ...randomSite(chance, { marks: [2, 2] }),
+          station,
+          marks: [
+            { ...mark, name: 'M1', easting: 1000 + grid, northing: 1000, height: 10 + rise },
+            { ...mark, name: 'M2', easting: 1000, northing: 1100, height: 10 },
+          ],
+          ppmSigma,
+        };
+        const observed = observe(site, instrument, { faces: FACES, sets: 1 }, chance);
+        const off = () => horizontalSigma * chance.normal() + CENTRING * chance.normal();
+        const occupied: Occupied = {
+          mark: {
+            name: 'STN',
+            version: 1,
+            easting: station.easting + off(),
+            northing: station.northing + off(),
+            elevation: 10 + verticalSigma * chance.normal(),
+            horizontalSigma,
+            verticalSigma,
+            status: 'trusted',
+          },
+          instrumentHeight: 1.5 + instrument.targetHeight * chance.normal(),
+        };
+        const input = asEngine(observed);
+        const shots = input.shots.map(
+          (shot): Shot => ({
+            ...shot,
+            distance: read.distance || shot.target !== 'M1' ? shot.distance : null,
+            zenith: read.zenith || shot.target !== 'M1' ? shot.zenith : null,
+          }),
+        );
+        const surroundings = { ...input.surroundings, unknownAtmospherePpm: 150 };
+        const ppm = read.atmosphere ? input.ppm : null;
+        const adjusted = adjustStation({ ...input, shots, surroundings, ppm, occupied });
+        const comparison = backsightChecks(adjusted)[0][what]!;
+        squares += comparison.difference ** 2;
+        stated += comparison.uncertainty ** 2;
+      }
+      console.log(
+        `rms ${(1000 * Math.sqrt(squares / count)).toFixed(2)} mm, stated u ${(1000 * Math.sqrt(stated / count)).toFixed(2)} mm`,
+      );
+      expect(Math.sqrt(squares / stated)).toBeGreaterThan(0.95);
+      expect(Math.sqrt(squares / stated)).toBeLessThan(1.05);
+    },
+  );
+});
+
 describe('what is proven of a setup over a mark', () => {
   const chance = seededChance(50);
   const agreed = {
@@ -137,6 +212,49 @@ describe('what is proven of a setup over a mark', () => {
     expect(codesOf(fitStation({ ...input, control }))).toContain('orientation_unproven');
     const shaky = { ...occupied, mark: { ...occupied.mark, status: 'suspect' as const } };
     expect(codesOf(fitStation({ ...input, occupied: shaky }))).toContain('occupied_suspect');
+  });
+
+  it('by a backsight beyond the limit: failed where 2u proves it, and held where it does not', () => {
+    const { input } = over(chance, 2);
+    const fit = fitStation(input);
+    const judged = (difference: number, uncertainty: number) => {
+      const [first, ...others] = fit.backsights;
+      const height = { ...first.height!, difference, uncertainty };
+      return judgeSetup({ ...fit, backsights: [{ ...first, height }, ...others] }, LIMITS, [], WORK);
+    };
+    const { verdicts, reasons } = judged(-0.045, 0.01);
+    expect(verdicts).toEqual({ horizontal: 'pass', vertical: 'hold' });
+    expect(reasons).toContainEqual({
+      code: 'backsight_unproven',
+      axis: 'vertical',
+      target: fit.backsights[0].target,
+      value: -0.045,
+      uncertainty: 0.01,
+      limit: 0.03,
+    });
+    const failed = judged(-0.055, 0.01);
+    expect(failed.verdicts.vertical).toBe('fail');
+    expect(failed.reasons.map(({ code }) => code)).toContain('backsight_over');
+    expect(judged(0.029, 0.02).verdict).toBe('pass');
+  });
+
+  it('by a backsight that is published where the instrument stands: nothing, and it is named', () => {
+    const { input, occupied } = over(chance, 2);
+    const { easting, northing } = occupied.mark;
+    const control = new Map(input.control).set('M1', { ...input.control.get('M1')!, easting, northing });
+    const refused = (() => {
+      try {
+        return fitStation({ ...input, control });
+      } catch (error) {
+        return error;
+      }
+    })();
+    expect(refused).toMatchObject({ name: 'StationError', code: 'marks_at_station', marks: ['M1'] });
+    const problems = stationProblem(refused as StationError, '/setups/2', [
+      { target: 'M2' },
+      { target: 'M1' },
+    ]);
+    expect(problems).toMatchObject([{ pointer: '/setups/2/shots/1/target', code: 'setup_not_computable' }]);
   });
 
   it('of the height by the mark alone: not enough', () => {

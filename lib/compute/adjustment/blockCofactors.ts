@@ -33,10 +33,10 @@ export class BlockCofactors implements CofactorSource {
       solveUpper(l, size, z, g);
       const border = new Float64Array(size * g);
       for (let i = 0; i < size; i++) {
-        for (let j = 0; j < g; j++) {
-          let sum = 0;
-          for (let k = 0; k < g; k++) sum -= z[i * g + k] * this.shared[k * g + j];
-          border[i * g + j] = sum;
+        // Along the rows: down the columns nearly every number would come from another line of the cache.
+        for (let k = 0; k < g; k++) {
+          const factor = z[i * g + k];
+          for (let j = 0; j < g; j++) border[i * g + j] -= factor * this.shared[k * g + j];
         }
       }
       this.z.push(z);

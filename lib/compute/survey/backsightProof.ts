@@ -1,10 +1,12 @@
-import { outcome } from './checkShots';
 import type { FittedOccupation, StationFit } from './stationFit';
 import { type Axis, type Lower, MARKS_WANTED, type SetupLimits } from './verdict';
 
 type OverMark = StationFit & { occupied: FittedOccupation };
 
-/** What is wrong with a setup over a mark: distances and heights to its backsights beyond the class' limits. */
+/**
+ * What is wrong with a setup over a mark: distances and heights to its backsights beyond the class' limits. Where the
+ * limit lies within 2u of the difference, coordinates and readings may be right as well: that holds, and fails nobody.
+ */
 export function judgeBacksights(fit: StationFit, limits: SetupLimits, lower: Lower): void {
   for (const { target, distance, height } of fit.backsights) {
     for (const [axis, comparison] of [
@@ -12,8 +14,11 @@ export function judgeBacksights(fit: StationFit, limits: SetupLimits, lower: Low
       ['vertical', height],
     ] as const) {
       const limit = limits.residual[axis];
-      if (!comparison || outcome(comparison.difference, comparison.uncertainty, limit) !== 'over') continue;
-      lower([axis], 'fail', { code: 'backsight_over', axis, target, value: comparison.difference, limit });
+      if (!comparison || Math.abs(comparison.difference) <= limit) continue;
+      const { difference: value, uncertainty } = comparison;
+      if (Math.abs(value) - 2 * uncertainty > limit)
+        lower([axis], 'fail', { code: 'backsight_over', axis, target, value, limit });
+      else lower([axis], 'hold', { code: 'backsight_unproven', axis, target, value, uncertainty, limit });
     }
   }
 }

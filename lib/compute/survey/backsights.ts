@@ -3,6 +3,7 @@ import type { InstrumentAccuracy } from './instrument';
 import { type Offset, offsetFromHeight, offsetFromZenith } from './ray';
 import type { ControlMark } from './shots';
 import { type AdjustedStation, type Occupied, occupiedAxis } from './stationAdjustment';
+import type { OccupiedAxis } from './stationModel';
 import type { Surroundings } from './surroundings';
 
 /** A length as measured against what the published coordinates of both ends make of it, m. */
@@ -62,22 +63,23 @@ function distanceOf(sight: Sight, occupied: Occupied, given: Given): Comparison 
   const distance = meanOf(own, 'distance');
   const offset = distance && offsetOf(sight, distance, occupied, given);
   if (!distance || !offset) return null;
-  const { accuracy, surroundings, ppm } = given;
+  const { accuracy } = given;
+  const axis = occupiedAxis(occupied, accuracy);
   const published = Math.hypot(mark.easting - occupied.mark.easting, mark.northing - occupied.mark.northing);
   const zenith = meanOf(own, 'zenith');
-  const unknownScale = ppm === null ? surroundings.unknownAtmospherePpm * 1e-6 * distance.value : 0;
   return {
     measured: offset.grid,
     published,
     difference: offset.grid - published,
     uncertainty: Math.hypot(
-      occupiedAxis(occupied, accuracy).horizontalSigma,
-      mark.horizontalSigma,
-      sight.centringSigma,
-      distance.sigma,
-      unknownScale,
-      // On a slope the zenith angle counts as well.
-      zenith ? offset.height * zenithSigma(zenith, accuracy) : 0,
+      placeSigma(sight, axis),
+      // On a slope the zenith angle counts as well, or else the heights of both ends: ∂√(s² − h²) = (s ∂s − h ∂h)/√(s² − h²).
+      ...(zenith
+        ? [slopeSigma(distance, given), offset.height * zenithSigma(zenith, accuracy)]
+        : [
+            (distance.value / offset.grid) * slopeSigma(distance, given),
+            (offset.height / offset.grid) * heightSigma(sight, axis),
+          ]),
     ),
   };
 }
@@ -102,12 +104,15 @@ function heightOf(sight: Sight, occupied: Occupied, given: Given): Comparison | 
     published,
     difference: measured - published,
     uncertainty: Math.hypot(
-      axis.verticalSigma,
-      mark.verticalSigma,
-      sight.heightSigma,
-      ground * zenithSigma(zenith, accuracy),
+      heightSigma(sight, axis),
       bend * surroundings.refractionSigma,
-      distance ? Math.cos(zenith.value) * distance.sigma : 0,
+      // By the measured distance, or else by that of the published places: ∂(g cot z) = cot z ∂g − g ∂z/sin² z.
+      ...(distance
+        ? [Math.cos(zenith.value) * slopeSigma(distance, given), ground * zenithSigma(zenith, accuracy)]
+        : [
+            placeSigma(sight, axis) / Math.tan(zenith.value),
+            (ground / Math.sin(zenith.value) ** 2) * zenithSigma(zenith, accuracy),
+          ]),
     ),
   };
 }
@@ -124,6 +129,20 @@ function offsetOf(
   const { axis } = occupiedAxis(occupied, accuracy);
   if (axis === null || mark.elevation === null) return null;
   return offsetFromHeight(mark.elevation + targetHeight - axis, distance.value, surroundings);
+}
+
+/** Of the distance between both ends as they were published, with the instrument and the target set up over them. */
+function placeSigma({ mark, centringSigma }: Sight, axis: OccupiedAxis): number {
+  return Math.hypot(axis.horizontalSigma, mark.horizontalSigma, centringSigma);
+}
+
+/** Of the difference of heights between both ends as they were published, axis and target above them. */
+function heightSigma({ mark, heightSigma: target }: Sight, axis: OccupiedAxis): number {
+  return Math.hypot(axis.verticalSigma, mark.verticalSigma, target);
+}
+
+function slopeSigma({ value, sigma }: MeanReading, { ppm, surroundings }: Given): number {
+  return Math.hypot(sigma, ppm === null ? surroundings.unknownAtmospherePpm * 1e-6 * value : 0);
 }
 
 function zenithSigma({ sigma, single }: MeanReading, accuracy: InstrumentAccuracy): number {

@@ -13,24 +13,28 @@ export interface Candidate extends Place {
 const MISS = 0.1;
 /** Marks that candidates are made of; with more, those spread evenly through the list. */
 const MOST_MARKS = 8;
+/** Of more marks, so many vote, spread evenly through the list. */
+const MOST_VOTERS = 40;
 /** Circles through marks meet in marks as well; nobody sights the mark that he stands on, m. */
-const ON_MARK = 0.1;
+export const ON_MARK = 0.1;
 
 /**
  * Every station that two or three of the marks lead to, best first: pairs of marks with direction and distance, and
  * the meetings of distance circles with each other, with circles of inscribed angles, and of those in threes. As each
- * stands on few marks, some are free of whatever is wrong with one of them, and all sights vote on each (consensus
- * of minimal sets, all of them tried; Fischler and Bolles 1981).
+ * stands on few marks, some are free of whatever is wrong with one of them, and all marks vote on each, with one
+ * sight apiece (consensus of minimal sets, all of them tried; Fischler and Bolles 1981).
  */
 export function startCandidates(sights: readonly Sight[]): Candidate[] {
-  const chosen = thinned(distinct(sights));
+  const ofMarks = distinct(sights);
+  const chosen = thinned(ofMarks, MOST_MARKS);
+  const voters = thinned(ofMarks, MOST_VOTERS);
   const whole = chosen.filter(isWhole);
   const places: Place[] = pairs(whole).flatMap(([one, other]) => rigidMotion([one, other]) ?? []);
   if (whole.length < chosen.length || whole.length < 2) places.push(...meetingPlaces(chosen));
   return places
     .filter((place) => chosen.every(({ mark }) => !(distanceTo(mark, place) < ON_MARK)))
     .filter(({ easting, northing }) => Number.isFinite(easting) && Number.isFinite(northing))
-    .map((place) => weighed(place, sights))
+    .map((place) => weighed(place, voters))
     .sort((a, b) => a.misfit - b.misfit);
 }
 
@@ -134,9 +138,9 @@ function distanceTo(one: Place, other: Place): number {
   return Math.hypot(one.easting - other.easting, one.northing - other.northing);
 }
 
-function thinned<T>(list: readonly T[]): T[] {
-  if (list.length <= MOST_MARKS) return [...list];
-  return Array.from({ length: MOST_MARKS }, (_, i) => list[Math.floor((i * list.length) / MOST_MARKS)]);
+function thinned<T>(list: readonly T[], most: number): T[] {
+  if (list.length <= most) return [...list];
+  return Array.from({ length: most }, (_, i) => list[Math.floor((i * list.length) / most)]);
 }
 
 function pairs<T>(list: readonly T[]): [T, T][] {

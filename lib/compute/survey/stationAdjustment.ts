@@ -5,6 +5,7 @@ import { type Erection, type Means, meanFaces, type Reading, type ReadingKind } 
 import type { InstrumentAccuracy } from './instrument';
 import type { ControlMark, Shot } from './shots';
 import { sightsOf } from './sights';
+import { ON_MARK } from './startCandidates';
 import { occupiedStart, type StartValues, startValues } from './startValues';
 import { type OccupiedAxis, type StationModel, stationModel } from './stationModel';
 import type { Surroundings } from './surroundings';
@@ -51,7 +52,12 @@ interface Solved {
 /** Why a setup cannot be computed at all. */
 export class StationError extends Error {
   constructor(
-    readonly code: 'too_few_sights' | 'zenith_wanted' | 'not_determined' | 'danger_circle',
+    readonly code:
+      | 'too_few_sights'
+      | 'zenith_wanted'
+      | 'not_determined'
+      | 'danger_circle'
+      | 'marks_at_station',
     /** Marks that it concerns. */
     readonly marks: readonly string[] = [],
   ) {
@@ -74,6 +80,7 @@ export function adjustStation(input: StationInput, maxIterations = MAX_ITERATION
   const means = meanFaces(input.shots, input.accuracy, ppm);
   const { erections } = means;
   const occupied = input.occupied ? occupiedAxis(input.occupied, input.accuracy) : null;
+  if (occupied) refuseAtStation(occupied, erections, control);
   const readings = reducible(means.readings, erections, control, occupied);
   const sights = sightsOf(erections, readings, control, surroundings);
   const starts = occupied
@@ -113,6 +120,21 @@ export function adjustStation(input: StationInput, maxIterations = MAX_ITERATION
     others,
     angleOnly,
   };
+}
+
+/** @throws StationError where backsights are published where the instrument stands: no direction leads to them */
+function refuseAtStation(
+  { easting, northing }: OccupiedAxis,
+  erections: readonly Erection[],
+  control: ReadonlyMap<string, ControlMark>,
+): void {
+  const at = new Set(
+    erections.flatMap(({ target }) => {
+      const mark = control.get(target)!;
+      return Math.hypot(mark.easting - easting, mark.northing - northing) < ON_MARK ? target : [];
+    }),
+  );
+  if (at.size > 0) throw new StationError('marks_at_station', [...at]);
 }
 
 /** Solutions by vᵀPv; one that did not converge stands behind all that did. */

@@ -29,6 +29,14 @@ export type SetupReason =
   | { code: 'single_mark_dominates'; axis: Axis; target: string; value: number; limit: number }
   | { code: 'single_mark_needed'; axis: Axis; target: string }
   | { code: 'backsight_over'; axis: Axis; target: string; value: number; limit: number }
+  | {
+      code: 'backsight_unproven';
+      axis: Axis;
+      target: string;
+      value: number;
+      uncertainty: number;
+      limit: number;
+    }
   | { code: 'orientation_undetermined' }
   | { code: 'orientation_unproven'; target: string | null; measured: boolean }
   | { code: 'backsights_disagree'; target: string; value: number; turn: number; limit: number }

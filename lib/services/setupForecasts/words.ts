@@ -57,6 +57,7 @@ const NO_STATION: Record<StationError['code'], string> = {
   danger_circle: 'The place lies on the circle through its marks, where directions alone do not find it.',
   zenith_wanted: 'Distances without a zenith angle cannot be brought to the horizontal.',
   not_determined: 'What is read leaves the station undetermined.',
+  marks_at_station: 'Marks have the coordinates of the place itself.',
 };
 
 export function wordsOfNoStation(code: StationError['code']): Words {

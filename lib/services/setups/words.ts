@@ -25,6 +25,14 @@ function fine(length: Lengths, metres: number): string {
   return length.text(metres, length.unit === 'm' ? 4 : 3);
 }
 
+function wordsOfMiss(
+  { axis, target, value, limit }: { axis: Axis; target: string; value: number; limit: number },
+  length: Lengths,
+): string {
+  const what = axis === 'horizontal' ? 'distance' : 'difference of heights';
+  return `The ${what} to ${target} is ${fine(length, Math.abs(value))} ${value > 0 ? 'more' : 'less'} than the published coordinates make it, ${fine(length, limit)} allowed`;
+}
+
 /** Why the verdict is what it is. */
 function wordsOfReason(reason: SetupReason, length: Lengths): Words {
   const { code } = reason;
@@ -47,17 +55,24 @@ function wordsOfReason(reason: SetupReason, length: Lengths): Words {
         text: `${reason.target} disagrees by ${fine(length, reason.value)} ${PLACE[reason.axis]}, ${fine(length, reason.limit)} allowed.`,
         action: `Shoot ${reason.target} again, or refit without it.`,
       };
-    case 'backsight_over': {
-      const what = reason.axis === 'horizontal' ? 'distance' : 'difference of heights';
+    case 'backsight_over':
       return {
         code,
-        text: `The ${what} to ${reason.target} is ${fine(length, Math.abs(reason.value))} ${reason.value > 0 ? 'more' : 'less'} than the published coordinates make it, ${fine(length, reason.limit)} allowed.`,
+        text: `${wordsOfMiss(reason, length)}.`,
         action:
           reason.axis === 'horizontal'
             ? `Check the names of ${reason.target} and of the occupied mark, the prism constant and the centring, then shoot again.`
             : `Measure the instrument height and the target height at ${reason.target} again.`,
       };
-    }
+    case 'backsight_unproven':
+      return {
+        code,
+        text: `${wordsOfMiss(reason, length)}; but that is only known to ±${fine(length, 2 * reason.uncertainty)} (2u), so that it proves nothing against the mark, and nothing for it.`,
+        action:
+          reason.axis === 'horizontal'
+            ? 'Shoot a check on a mark whose coordinates are better known.'
+            : `Measure the distance to ${reason.target} with the zenith angle, or shoot a check on a mark that is better known.`,
+      };
     case 'orientation_undetermined':
       return {
         code,

@@ -93,7 +93,7 @@ function draftSetup(draft: Draft, context: CallerContext, item: SetupItem, point
     return [];
   } catch (error) {
     if (!(error instanceof StationError)) throw error;
-    return [stationProblem(error, pointer)];
+    return stationProblem(error, pointer, item.shots);
   }
 }
 

@@ -3,12 +3,29 @@ import { problemItem } from '@/openapi/problemItem';
 import type { ProblemItem } from '@/openapi/schemas/problem';
 
 /** Why the shots of a setup give no station, and what to shoot. */
-export function stationProblem({ code, marks }: StationError, pointer: string): ProblemItem {
+export function stationProblem(
+  { code, marks }: StationError,
+  pointer: string,
+  shots: readonly { target?: string | null }[],
+): ProblemItem[] {
+  if (code === 'marks_at_station') {
+    return marks.map((mark) =>
+      problemItem(
+        `${pointer}/shots/${shots.findIndex(({ target }) => target === mark)}/target`,
+        'setup_not_computable',
+        `${mark} is published at the place of the mark under the instrument: no direction leads there.`,
+        'Check the name of the target and that of the occupied mark, and the coordinates of both.',
+      ),
+    );
+  }
   const [detail, fix] = wordsOf(code, marks);
-  return problemItem(`${pointer}/shots`, 'setup_not_computable', detail, fix);
+  return [problemItem(`${pointer}/shots`, 'setup_not_computable', detail, fix)];
 }
 
-function wordsOf(code: StationError['code'], marks: readonly string[]): [detail: string, fix?: string] {
+function wordsOf(
+  code: Exclude<StationError['code'], 'marks_at_station'>,
+  marks: readonly string[],
+): [detail: string, fix?: string] {
   switch (code) {
     case 'too_few_sights':
       return [
