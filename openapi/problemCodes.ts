@@ -273,7 +273,7 @@ export const REQUEST_PROBLEMS = {
   comparison_too_large: problem(
     422,
     'Too much to compare in one request',
-    'The two networks have more observations than are compared at once.',
+    'The two networks have more observations, or more points in common, than are compared at once.',
     'Compare adjustments of the setups around the points in question.',
   ),
   adjustment_not_applicable: problem(

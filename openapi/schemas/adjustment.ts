@@ -258,7 +258,14 @@ export const AdjustmentApplied = z
   })
   .meta({ id: 'AdjustmentApplied' });
 
-const Test = z.object({ value: figure, critical: figure, degreesOfFreedom: z.int(), passed: z.boolean() });
+const Test = z.object({
+  value: figure,
+  critical: figure,
+  degreesOfFreedom: z
+    .int()
+    .meta({ description: '0 where there was nothing to test; `passed` is then true.' }),
+  passed: z.boolean(),
+});
 
 export const AdjustmentComparison = z
   .object({

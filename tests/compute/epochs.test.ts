@@ -1,6 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import { compareEpochs } from '@/lib/compute/survey/epochs';
 import type { NetworkInput } from '@/lib/compute/survey/networkInput';
+import { requireComparable } from '@/lib/services/adjustments/comparisonLimit';
+import { wordsOfComparison, wordsOfDisplacement } from '@/lib/services/adjustments/comparisonWords';
+import { Lengths } from '@/lib/services/lengths';
 import { seededChance } from '@/tests/simulator/chance';
 import { type NetworkPlan, simulateNetwork, type TruePoint } from '@/tests/simulator/siteNetwork';
 import { networkAsEngine } from './networkAsEngine';
@@ -34,6 +37,32 @@ function twoEpochs(
     move,
   });
   return [networkAsEngine(before), networkAsEngine(after)];
+}
+
+const METRES = new Lengths('m');
+
+/** An epoch in which nothing but some of its points was observed. */
+function keeping(input: NetworkInput, names: readonly string[]): NetworkInput {
+  return {
+    ...input,
+    points: input.points.filter(({ name }) => names.includes(name)),
+    setups: input.setups.map((setup) => ({
+      ...setup,
+      shots: setup.shots.filter(({ target }) => names.includes(target)),
+    })),
+  };
+}
+
+/** An epoch that knows one of its points by another name. */
+function renaming(input: NetworkInput, name: string, other: string): NetworkInput {
+  return {
+    ...input,
+    points: input.points.map((point) => (point.name === name ? { ...point, name: other } : point)),
+    setups: input.setups.map((setup) => ({
+      ...setup,
+      shots: setup.shots.map((shot) => (shot.target === name ? { ...shot, target: other } : shot)),
+    })),
+  };
 }
 
 describe('two epochs of a network', () => {
@@ -114,5 +143,78 @@ describe('two epochs of a network', () => {
     expect(onlyBefore).toEqual(['P8']);
     expect(onlyAfter).toEqual(['P5']);
     expect(points.map(({ name }) => name)).not.toContain('P5');
+  });
+
+  it('test nothing, and say nothing moved or stayed, where one point is common', () => {
+    const [before, after] = twoEpochs(7, {});
+    const [one, other] = [
+      keeping(before, ['P1', 'P2', 'P3', 'P4']),
+      keeping(after, ['P4', 'P5', 'P6', 'P7']),
+    ];
+    const found = compareEpochs(one, other);
+    expect(found.points.map(({ name }) => name)).toEqual(['P4']);
+    expect(found.congruence).toMatchObject({ value: 0, degreesOfFreedom: 0 });
+    expect(found.moved).toEqual([]);
+    const { text, action } = wordsOfComparison(found);
+    expect(text).toBe(
+      'The two have 1 common point, too little to compare: whether anything moved cannot be told.',
+    );
+    expect(action).toMatch(/three at the least/);
+    expect(wordsOfDisplacement(found.points[0], found.remaining, METRES)).toBe(
+      'Whether P4 moved cannot be told.',
+    );
+  });
+
+  it('see that two points lie otherwise, and do not tell which of them moved', () => {
+    const [before] = twoEpochs(7, {}, { controlEvery: 1 });
+    const two = [...new Set(before.setups[0].shots.map(({ target }) => target))].slice(0, 2);
+    const [, after] = twoEpochs(7, { [two[0]]: [0.3, 0.2, 0] }, { controlEvery: 1 });
+    const found = compareEpochs(keeping(before, two), keeping(after, two));
+    expect(found.congruence.passed).toBe(false);
+    expect(found.moved).toEqual([]);
+    expect(wordsOfComparison(found).text).toMatch(
+      /^The 2 common points no longer lie to each other .* cannot be told\.$/,
+    );
+    for (const point of found.points)
+      expect(wordsOfDisplacement(point, found.remaining, METRES)).toMatch(
+        /^P\d+ differs by .*; whether it moved cannot be told\.$/,
+      );
+  });
+
+  it('say that the others stayed only where they were tested and agree', () => {
+    const found = compareEpochs(...twoEpochs(2, { P4: [0.02, 0, 0] }));
+    expect(wordsOfComparison(found).text).toBe('Moved: P4; the others stayed.');
+    const unsure = { ...found, remaining: { ...found.remaining, passed: false } };
+    expect(wordsOfComparison(unsure).text).toMatch(/^Moved: P4; the others do not agree either/);
+    const [still] = found.points.filter(({ moved }) => !moved);
+    expect(wordsOfDisplacement(still, found.remaining, METRES)).toMatch(/ stayed; it differs by /);
+    expect(wordsOfDisplacement(still, unsure.remaining, METRES)).toMatch(/whether it moved cannot be told/);
+  });
+
+  it('have as much left without a point as the others make in an adjustment of their own datum', () => {
+    const [before, after] = twoEpochs(4, { P4: [0.05, 0.02, 0], P9: [0, 0.04, -0.03] });
+    const { moved, remaining, points } = compareEpochs(before, after);
+    expect(moved.length).toBeGreaterThan(1);
+    const out = moved.map((name) => [name, `${name}'`]);
+    const renamed = out.reduce((input, [name, other]) => renaming(input, name, other), after);
+    const rest = compareEpochs(before, renamed);
+    expect(rest.moved).toEqual([]);
+    expect(rest.points).toHaveLength(points.length - moved.length);
+    expect(rest.congruence.degreesOfFreedom).toBe(remaining.degreesOfFreedom);
+    expect(rest.congruence.value).toBeCloseTo(remaining.value, 6);
+  });
+
+  it('are refused where they have more than a hundred points in common', () => {
+    const [before] = twoEpochs(1, {});
+    const many = (from: number, to: number): NetworkInput => {
+      const [setup] = before.setups;
+      const targets = Array.from({ length: to - from }, (_, i) => `N${from + i}`);
+      const shots = targets.map((target) => ({ ...setup.shots[0], id: target, target }));
+      return { ...before, setups: [{ ...setup, occupied: null, shots }], levelDifferences: [] };
+    };
+    expect(() => requireComparable(many(0, 150), many(50, 200))).not.toThrow();
+    expect(() => requireComparable(many(0, 150), many(49, 200))).toThrow(
+      expect.objectContaining({ code: 'comparison_too_large' }),
+    );
   });
 });

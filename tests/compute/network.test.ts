@@ -1,5 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { DEFAULT_ACCURACY } from '@/lib/compute/survey/instrument';
 import { adjustNetwork } from '@/lib/compute/survey/network';
 import type { CoordinateDatum, NetworkInput } from '@/lib/compute/survey/networkInput';
 import { NetworkError, type NetworkResult } from '@/lib/compute/survey/networkResult';
@@ -243,6 +244,25 @@ describe('snooping in a network', () => {
     }
   });
 
+  it('calls it too many where more than a tenth was wrong, though the rest agrees', () => {
+    const clean = network(5, 'weighted', {
+      ...{ points: 20, sightsOfPoint: 4, occupiedEvery: 0, controlEvery: 3, levelled: 0 },
+    });
+    const { removed, observations, snoopingEnded, test } = adjustNetwork({
+      ...clean,
+      setups: clean.setups.map((setup, i) => {
+        const targets = [...new Set(setup.shots.map(({ target }) => target))];
+        const wrong = (target: string) => (3 * i + targets.indexOf(target)) % 5 < 2;
+        return { ...setup, shots: setup.shots.map((shot) => (wrong(shot.target) ? longer(shot) : shot)) };
+      }),
+      snooping: true,
+    });
+    const read = observations.filter(({ kind }) => ['direction', 'zenith', 'distance'].includes(kind));
+    expect(test.passed).toBe(true);
+    expect(removed.length).toBeGreaterThan(0.1 * read.length);
+    expect(snoopingEnded).toBe('too_many');
+  });
+
   it('removes nothing from clean networks more often than one test in a thousand would', () => {
     let [removed, tested] = [0, 0];
     for (let seed = 50; seed < 70; seed++) {
@@ -293,6 +313,72 @@ describe('a network that cannot be computed', () => {
     });
     expect(dangling.code).toBe('not_determined');
     expect(dangling.points).toEqual(['X']);
+  });
+
+  it('says that the observations contradict each other where a robust start loses its way', () => {
+    const length = { prismConstantMm: 0, prismConstantAppliedMm: 0, appliedPpm: 0 };
+    const shot = (
+      [id, target, face]: [string, string, 'left' | 'right'],
+      direction: number | null,
+      zenith: number | null,
+      slopeDistance: number | null,
+      targetHeightSigma: number | null = null,
+    ): Shot => ({
+      ...{ id, target, face, direction, zenith, targetHeight: 1.6, targetHeightSigma },
+      ...{ purpose: 'orient', set: 1, targetCentringSigma: null },
+      distance: slopeDistance === null ? null : { ...length, slopeDistance },
+    });
+    const accuracy = { ...DEFAULT_ACCURACY, collimation: 0 };
+    const sigmas = { horizontalSigma: 0.003, verticalSigma: 0.003 };
+    const nowhere = { easting: null, northing: null, elevation: 0.8401 };
+    const input: NetworkInput = {
+      ...network(31),
+      points: [
+        { name: 'A', ...nowhere, horizontalDatum: 'new', verticalDatum: 'free', ...sigmas },
+        {
+          ...{ name: 'B', easting: 200, northing: 190, elevation: 1.045 },
+          ...{ horizontalDatum: 'new', verticalDatum: 'held', ...sigmas },
+        },
+        {
+          ...{ name: 'C', easting: 40, northing: 100, elevation: 1.0982 },
+          ...{ horizontalDatum: 'weighted', verticalDatum: 'free', ...sigmas },
+        },
+      ],
+      setups: [
+        {
+          ...{ id: 'S0', occupied: 'C', instrumentHeight: 1.5, accuracy, ppm: 0 },
+          shots: [
+            shot(['0', 'A', 'left'], 2.2109, 1.5725, 94.8695),
+            shot(['1', 'B', 'left'], 1.3767, 1.5705, null),
+          ],
+        },
+        {
+          ...{ id: 'S1', occupied: null, instrumentHeight: null, accuracy, ppm: 0 },
+          shots: [
+            shot(['0', 'A', 'left'], null, null, 98.0086),
+            shot(['1', 'A', 'right'], 4.5138, 4.7169, 98.0074),
+            shot(['2', 'B', 'left'], 5.1534, 1.5572, 47.7312),
+          ],
+        },
+        {
+          ...{ id: 'S2', occupied: 'A', instrumentHeight: 1.5, ppm: 0 },
+          accuracy: { ...accuracy, instrumentCentring: 0 },
+          shots: [
+            shot(['0', 'B', 'left'], null, null, 138.926, 0),
+            shot(['1', 'B', 'right'], 1.2903, 4.7146, 138.9254),
+          ],
+        },
+      ],
+      levelDifferences: [
+        { id: 'L0', from: 'C', to: 'A', difference: -0.2579, weight: { by: 'sigma', sigma: 0.001 } },
+      ],
+      surroundings: {
+        ...{ earthRadius: 6_371_000, combinedFactor: 1, refraction: 0.13, refractionSigma: 0.1 },
+        unknownAtmospherePpm: 10,
+      },
+      snooping: true,
+    };
+    expect(refused(input).code).toBe('contradiction');
   });
 
   it('leaves out what nothing leads to, and says so', () => {

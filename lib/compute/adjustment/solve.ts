@@ -30,10 +30,10 @@ export interface Solution {
  * (Björck, Numerical Methods for Least Squares Problems, §9.2). It stops when the squared step in its own
  * standard deviations, stepᵀ N step, is below 10⁻¹².
  *
- * @param start start values of all unknowns; not changed
  * Where a step leads to a place at which something is not determined that the start does determine, the observations
  * contradict each other grossly: the answer is the start, not converged.
  *
+ * @param start start values of all unknowns; not changed
  * @param without a block to leave out with its unknowns and all its rows
  * @param maxIterations fewer where only a solution near by is of interest
  * @throws SingularError where the observations do not determine an unknown

@@ -26,7 +26,7 @@ export function groupRefractivity(wavelength: number): number {
 }
 
 /** Partial pressure of water vapour in Pa. */
-export function vapourPressure({ temperature, humidity }: Atmosphere): number {
+function vapourPressure({ temperature, humidity }: Atmosphere): number {
   return humidity * saturation(temperature);
 }
 

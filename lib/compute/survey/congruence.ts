@@ -74,62 +74,83 @@ export function inDatumOf(all: Displacements, stable: ReadonlySet<number>): Disp
 /**
  * Congruence of the points of a datum (Pelzer 1971), and how much of it each point brings in, d̄ᵀP_pp d̄ with P = Q⁺ and
  * d̄ = d_p + P_pp⁻¹P_pr d_r: what is left without a point is the congruence of the others in their own datum (Caspary,
- * Concepts of Network and Deformation Analysis, §6).
- *
- * @param placed displacements in the datum of these points
+ * Concepts of Network and Deformation Analysis, §6). Q is inverted once; a point leaves by elimination from P, P_rr −
+ * P_rp P_pp⁻¹P_pr, which is the Q⁺ of the others in theirs.
  */
-export function congruence(
-  placed: Displacements,
-  stable: ReadonlySet<number>,
-): Congruence & { ofPoint: Map<number, Congruence> } {
-  const own = [...stable].flatMap((point) => placed.points[point]);
-  const size = own.length;
-  const n = placed.values.length;
-  const q = new Float64Array(size * size);
-  let mean = 0;
-  own.forEach((i, a) => {
-    own.forEach((j, b) => {
-      q[a * size + b] = placed.covariance[i * n + j];
-    });
-    mean += q[a * size + a] / size;
-  });
-  // Q has the movements as its null space: filled up there, Q is regular, and Q⁺ what is over in the inverse.
-  const filled = orthonormal(placed.movements.map((g) => own.map((i) => g[i])));
-  const fill = (matrix: Float64Array, amount: number) => {
-    for (const g of filled) {
-      for (let a = 0; a < size; a++)
-        for (let b = 0; b < size; b++) matrix[a * size + b] += amount * g[a] * g[b];
+export class PointsCongruence {
+  private readonly information: Float64Array;
+  private readonly stable: Set<number>;
+
+  /**
+   * @param placed displacements in the datum of all their points
+   * @throws SingularError where Q vanishes for more than the movements
+   */
+  constructor(private readonly placed: Displacements) {
+    const { values, covariance, movements, points } = placed;
+    const n = values.length;
+    this.stable = new Set(points.keys());
+    // Q has the movements as its null space: filled up there, Q is regular, and Q⁺ what is over in the inverse.
+    const filled = orthonormal(movements.map((g) => [...g]));
+    if (n <= filled.length) {
+      this.information = new Float64Array(n * n);
+      return;
     }
-  };
-  fill(q, mean);
-  factor(q, size);
-  const p = inverseFromFactor(q, size);
-  fill(p, -1 / mean);
-  const d = own.map((i) => placed.values[i]);
-  const pd = d.map((_, a) => {
-    let sum = 0;
-    for (let b = 0; b < size; b++) sum += p[a * size + b] * d[b];
-    return sum;
-  });
-  const ofPoint = new Map<number, Congruence>();
-  const at = new Map(own.map((i, a) => [i, a]));
-  for (const point of stable) {
-    const rows = placed.points[point].map((i) => at.get(i)!);
-    // P_pp d̄ is the point's part of Pd, so that its share is (Pd)_pᵀ P_pp⁻¹ (Pd)_p.
-    const block = rows.flatMap((a) => rows.map((b) => p[a * size + b]));
-    ofPoint.set(
-      point,
-      quadratic(
-        rows.map((a) => pd[a]),
-        block,
-      ),
-    );
+    const q = covariance.slice();
+    let mean = 0;
+    for (let i = 0; i < n; i++) mean += q[i * n + i] / n;
+    const fill = (matrix: Float64Array, amount: number) => {
+      for (const g of filled) {
+        for (let a = 0; a < n; a++) for (let b = 0; b < n; b++) matrix[a * n + b] += amount * g[a] * g[b];
+      }
+    };
+    fill(q, mean);
+    factor(q, n);
+    this.information = inverseFromFactor(q, n);
+    fill(this.information, -1 / mean);
   }
-  return {
-    value: d.reduce((sum, value, a) => sum + value * pd[a], 0),
-    degreesOfFreedom: size - filled.length,
-    ofPoint,
-  };
+
+  /** @param values displacements in the datum of the points that have not left */
+  of(values: Float64Array): Congruence & { ofPoint: Map<number, Congruence> } {
+    const { information, stable, placed } = this;
+    const n = values.length;
+    const own = [...stable].flatMap((point) => placed.points[point]);
+    const degreesOfFreedom = Math.max(0, own.length - placed.movements.length);
+    // In the datum of so few points Q is zero, and d as well.
+    if (degreesOfFreedom === 0) return { value: 0, degreesOfFreedom, ofPoint: new Map() };
+    const pd = (i: number) => own.reduce((sum, j) => sum + information[i * n + j] * values[j], 0);
+    let value = 0;
+    const ofPoint = new Map<number, Congruence>();
+    for (const point of stable) {
+      const rows = placed.points[point];
+      const part = rows.map(pd);
+      // P_pp d̄ is the point's part of Pd, so that its share is (Pd)_pᵀ P_pp⁻¹ (Pd)_p.
+      const block = rows.flatMap((a) => rows.map((b) => information[a * n + b]));
+      ofPoint.set(point, quadratic(part, block));
+      rows.forEach((i, k) => {
+        value += values[i] * part[k];
+      });
+    }
+    return { value, degreesOfFreedom, ofPoint };
+  }
+
+  leave(point: number): void {
+    const { information, placed } = this;
+    const n = placed.values.length;
+    const rows = placed.points[point];
+    const beginnings = rows.map((k) => information[k * n + k]);
+    rows.forEach((k, at) => {
+      const pivot = information[k * n + k];
+      const row = information.slice(k * n, (k + 1) * n);
+      const known = pivot > VANISHED * beginnings[at];
+      for (let i = 0; i < n; i++) {
+        const part = known ? row[i] / pivot : 0;
+        if (part !== 0) for (let j = 0; j < n; j++) information[i * n + j] -= part * row[j];
+        information[i * n + k] = 0;
+        information[k * n + i] = 0;
+      }
+    });
+    this.stable.delete(point);
+  }
 }
 
 /** The same span in vectors of length one across each other (Gram and Schmidt). */
@@ -149,6 +170,9 @@ function orthonormal(vectors: readonly (readonly number[])[]): number[][] {
   return result;
 }
 
+/** A pivot this small beside the diagonal element that it began as is rounding. */
+const VANISHED = 1e-9;
+
 /** vᵀM⁻¹v and the rank of M; directions in which M vanishes do not count. */
 export function quadratic(vector: readonly number[], matrix: readonly number[]): Congruence {
   const n = vector.length;
@@ -158,7 +182,7 @@ export function quadratic(vector: readonly number[], matrix: readonly number[]):
   let degreesOfFreedom = 0;
   for (let k = 0; k < n; k++) {
     const pivot = a[k * n + k];
-    if (!(pivot > 1e-9 * matrix[k * n + k])) continue;
+    if (!(pivot > VANISHED * matrix[k * n + k])) continue;
     degreesOfFreedom++;
     value += (v[k] * v[k]) / pivot;
     for (let i = k + 1; i < n; i++) {

@@ -118,7 +118,7 @@ export function movedStation(
 }
 
 /** How a move of the station enters the rows: as its own errors do. */
-export function stationEntries({ rowsOfSight }: LaterModel, unknowns: readonly number[]) {
+function stationEntries({ rowsOfSight }: LaterModel, unknowns: readonly number[]) {
   return rowsOfSight
     .flat()
     .flatMap(({ row, station }) =>

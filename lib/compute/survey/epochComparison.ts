@@ -6,6 +6,7 @@ export interface CongruenceTest {
   /** 95 % point of F(h, ν), or of χ²(h)/h where the a-priori variance factor stands. */
   critical: number;
   degreesOfFreedom: number;
+  /** True too where there is no degree of freedom, so that nothing was tested. */
   passed: boolean;
 }
 
@@ -25,7 +26,10 @@ export interface PointDisplacement {
   critical: number;
   /** Probability that so large a displacement comes about by the errors of the observations alone. */
   probability: number;
-  /** Found by the congruence test; else it is part of the datum of the comparison. */
+  /**
+   * Found by the congruence test; else it is part of the datum of the comparison, and stayed where what remained was
+   * tested and passed.
+   */
   moved: boolean;
 }
 

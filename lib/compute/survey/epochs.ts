@@ -1,4 +1,5 @@
 import { standardEllipse } from '@/lib/compute/adjustment/ellipse';
+import { ifDetermined } from '@/lib/compute/adjustment/model';
 import {
   chiSquareQuantile,
   chiSquareTail,
@@ -6,11 +7,12 @@ import {
   fDistribution,
   fQuantile,
 } from '@/lib/compute/statistics/distributions';
-import { type Congruence, congruence, type Displacements, inDatumOf, quadratic } from './congruence';
+import { type Congruence, type Displacements, inDatumOf, PointsCongruence, quadratic } from './congruence';
 import type { CongruenceTest, EpochComparison, PointDisplacement } from './epochComparison';
 import { type AdjustedNetwork, solveNetwork } from './network';
 import { pointKey } from './networkHeights';
 import type { NetworkInput } from './networkInput';
+import { NetworkError } from './networkResult';
 import { ABSENT, AXES, type Place } from './networkUnknowns';
 
 /**
@@ -30,10 +32,11 @@ export function compareEpochs(before: NetworkInput, after: NetworkInput): EpochC
   const stable = new Set(common.names.keys());
   const moved: number[] = [];
   let placed = inDatumOf(all, stable);
-  let found = placed && congruence(placed, stable);
+  const points = placed && congruenceOf(placed, common.names);
+  let found = placed && points ? points.of(placed.values) : null;
   const first = noise.test(found);
   let remaining = first;
-  while (placed && found && !remaining.passed) {
+  while (points && found && !remaining.passed) {
     const worst = [...found.ofPoint].reduce((a, b) => (perFreedom(b[1]) > perFreedom(a[1]) ? b : a))[0];
     const rest = new Set([...stable].filter((point) => point !== worst));
     const next = inDatumOf(all, rest);
@@ -42,7 +45,8 @@ export function compareEpochs(before: NetworkInput, after: NetworkInput): EpochC
     stable.delete(worst);
     moved.push(worst);
     placed = next;
-    found = congruence(placed, stable);
+    points.leave(worst);
+    found = points.of(placed.values);
     remaining = noise.test(found);
   }
   const shown = placed ?? all;
@@ -55,6 +59,13 @@ export function compareEpochs(before: NetworkInput, after: NetworkInput): EpochC
     onlyBefore: common.onlyBefore,
     onlyAfter: common.onlyAfter,
   };
+}
+
+/** @throws NetworkError where an epoch leaves more open between its points than how the whole lies */
+function congruenceOf(placed: Displacements, names: readonly string[]): PointsCongruence {
+  const congruence = ifDetermined(() => new PointsCongruence(placed));
+  if (!congruence) throw new NetworkError('not_determined', names);
+  return congruence;
 }
 
 /** The network with all its control free. */

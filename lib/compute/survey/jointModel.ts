@@ -61,7 +61,7 @@ export interface JointModel extends AdjustmentModel {
 const STEADY = 1e-4;
 
 /** A mark that was published anew is another mark: what was seen of the old coordinates says nothing of the new ones. */
-export function jointKey({ name, version }: Pick<ControlMark, 'name' | 'version'>): string {
+function jointKey({ name, version }: Pick<ControlMark, 'name' | 'version'>): string {
   return `${name}\n${version}`;
 }
 

@@ -73,17 +73,21 @@ export function solveNetwork(input: NetworkInput): AdjustedNetwork {
     1,
     Math.floor(MOST_REMOVED * bare.observations.filter(({ name }) => isObserved(name)).length),
   );
-  let ended: NetworkResult['snoopingEnded'] = 'clean';
+  // Where the last pass still takes something out, nobody knows what is left.
+  let ended: NetworkResult['snoopingEnded'] = 'too_many';
   for (let pass = 0; pass < MOST_PASSES; pass++) {
     const found = snoop(solution, cofactors, bare.suspects, Math.max(0, most - removals.length));
-    ended = found.ended;
-    if (found.removals.length === 0) break;
+    if (found.removals.length === 0) {
+      ended = found.ended;
+      break;
+    }
     removals.push(...found.removals);
     leave(found.removals);
     solution = again(solution.unknowns);
     cofactors = new Cofactors(solution);
-    if (ended === 'too_many') break;
+    if (found.ended === 'too_many') break;
   }
+  if (removals.length > most) ended = 'too_many';
   return { model: placed, solution, cofactors, free: names, removals, ended };
 }
 
@@ -114,9 +118,10 @@ function solveWithoutGross(model: NetworkModel): Begun {
   return solveRobustly(model) ?? plain;
 }
 
-/** Null where nothing stands out, or what does is all that determines something. */
+/** Null where nothing stands out, there is no robust start, or what does is all that determines something. */
 function solveRobustly(model: NetworkModel): Begun | null {
   const start = robustStart(model);
+  if (!start) return null;
   let gross = grossSuspects(model, start);
   if (gross.length === 0) return null;
   const without = (suspects: readonly number[]) => {

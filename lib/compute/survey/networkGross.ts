@@ -1,4 +1,5 @@
 import { Cofactors } from '@/lib/compute/adjustment/cofactors';
+import { ifDetermined } from '@/lib/compute/adjustment/model';
 import type { Removal } from '@/lib/compute/adjustment/snooping';
 import { type Solution, solve } from '@/lib/compute/adjustment/solve';
 import { CRITICAL_W } from '@/lib/compute/statistics/distributions';
@@ -13,9 +14,10 @@ const ROUNDS = 20;
 /**
  * A place to begin with that gross errors do not pull away: least squares, the weight of large residuals lowered in
  * inverse proportion, round by round (Huber 1964; iteratively reweighted, Björck, Numerical Methods for Least Squares
- * Problems, §4.5). Where targets are swapped, plain least squares would not converge.
+ * Problems, §4.5). Where targets are swapped, plain least squares would not converge. Null where a round leads to a place
+ * at which something is not determined.
  */
-export function robustStart(model: NetworkModel): Float64Array {
+export function robustStart(model: NetworkModel): Float64Array | null {
   const coefficients = new Float64Array(model.columns.length);
   const misclosures = new Float64Array(model.weights.length);
   let x = model.start;
@@ -24,7 +26,10 @@ export function robustStart(model: NetworkModel): Float64Array {
     const weights = model.weights.map(
       (p, i) => p / Math.max(1, (Math.abs(misclosures[i]) * Math.sqrt(p)) / LARGE),
     );
-    x = solve({ ...model, weights }, x, { maxIterations: 1 }).unknowns;
+    const from = x;
+    const solution = ifDetermined(() => solve({ ...model, weights }, from, { maxIterations: 1 }));
+    if (!solution) return null;
+    x = solution.unknowns;
   }
   return x;
 }

@@ -157,8 +157,8 @@ export interface NetworkResult {
   /** In the order of removal; empty where snooping was not asked for. */
   removed: readonly RemovedObservation[];
   /**
-   * Why snooping ended: `clean` (nothing above 3.29 is left), `too_many` (a tenth of the observations is out: the model
-   * or the stated accuracies are wrong, not the observations), null where it was not asked for.
+   * Why snooping ended: `clean` (nothing above 3.29 is left), `too_many` (a tenth of the observations is out, or every
+   * solution shows more of them: the model or the stated accuracies are wrong, not the observations), null where it was not asked for.
    */
   snoopingEnded: 'clean' | 'too_many' | null;
   leftOut: readonly LeftOut[];

@@ -1,8 +1,7 @@
 import type * as z from 'zod';
-import type { EpochComparison, PointDisplacement } from '@/lib/compute/survey/epochComparison';
+import type { EpochComparison } from '@/lib/compute/survey/epochComparison';
 import { compareEpochs } from '@/lib/compute/survey/epochs';
 import { NetworkError } from '@/lib/compute/survey/networkResult';
-import { toDegrees } from '@/lib/compute/units/convert';
 import { Problem } from '@/lib/problem';
 import type { VerbContext } from '@/lib/services/context';
 import { Lengths } from '@/lib/services/lengths';
@@ -10,7 +9,8 @@ import { loadProject } from '@/lib/services/projects/load';
 import type { ParamsOf, QueryOf } from '@/openapi/contract';
 import type * as contract from '@/openapi/contracts/adjustments';
 import type { AdjustmentComparison } from '@/openapi/schemas/adjustment';
-import { observationCount } from './count';
+import { requireComparable } from './comparisonLimit';
+import { wordsOfComparison, wordsOfDisplacement } from './comparisonWords';
 import { type LoadedResult, loadResult } from './load';
 import { presentCoordinates, presentEllipse } from './present';
 import type { AdjustmentInput } from './result';
@@ -27,7 +27,7 @@ export async function compareAdjustments(
   const load = (id: string) => loadResult(tenant, caller.organizationId, project.id, id);
   const later = await load(params.adjustmentId);
   const earlier = await load(query.with);
-  requireSmall(earlier.result.input, later.result.input);
+  requireComparable(earlier.result.input.network, later.result.input.network);
   return () => presentComparison(earlier, later, new Lengths(query.length ?? project.lengthUnit));
 }
 
@@ -40,7 +40,7 @@ function presentComparison(
   return {
     earlier: earlier.adjustment.id,
     later: later.adjustment.id,
-    ...wordsOf(found),
+    ...wordsOfComparison(found),
     congruence: found.congruence,
     remaining: found.remaining,
     moved: [...found.moved],
@@ -56,23 +56,12 @@ function presentComparison(
         degreesOfFreedom: point.degreesOfFreedom,
         probability: point.probability,
       },
-      text: wordsOfPoint(point, length),
+      text: wordsOfDisplacement(point, found.remaining, length),
     })),
     onlyEarlier: [...found.onlyBefore],
     onlyLater: [...found.onlyAfter],
     units: { length: length.unit, angle: 'deg' },
   };
-}
-
-/** More observations than these take seconds, and a request answers at once. */
-const MOST_OBSERVATIONS = 2_000;
-
-function requireSmall(earlier: AdjustmentInput, later: AdjustmentInput): void {
-  const count = observationCount(earlier.network) + observationCount(later.network);
-  if (count > MOST_OBSERVATIONS) {
-    const detail = `Both have ${count} shots and levelled differences; ${MOST_OBSERVATIONS} are the most that are compared.`;
-    throw new Problem('comparison_too_large', detail);
-  }
 }
 
 function compare(earlier: AdjustmentInput, later: AdjustmentInput): EpochComparison {
@@ -83,36 +72,4 @@ function compare(earlier: AdjustmentInput, later: AdjustmentInput): EpochCompari
     const input = { ...later, setups: [...earlier.setups, ...later.setups] };
     throw new Problem('adjustment_not_computable', wordsOfError(error, input));
   }
-}
-
-function wordsOf({ moved, points, remaining, congruence }: EpochComparison) {
-  if (points.length === 0)
-    return { text: 'The two have no point in common: nothing can be compared.', action: null };
-  if (moved.length === 0 && congruence.passed)
-    return {
-      text: `None of ${points.length} common points has moved beyond what the observations explain.`,
-      action: null,
-    };
-  const action =
-    'Look at the marks in the field; call them suspect, and set up on the others until they have new coordinates.';
-  const rest = remaining.passed ? 'the others stayed' : 'the others do not agree well either';
-  return { text: `Moved: ${moved.join(', ')}; ${rest}.`, action };
-}
-
-function wordsOfPoint(
-  { easting, northing, elevation, moved, name }: PointDisplacement,
-  length: Lengths,
-): string {
-  const fine = (metres: number) => length.text(metres, length.unit === 'm' ? 4 : 3);
-  const plan =
-    easting === null || northing === null
-      ? []
-      : [
-          `${fine(Math.hypot(easting, northing))} in plan towards ${toDegrees((Math.atan2(easting, northing) + 2 * Math.PI) % (2 * Math.PI)).toFixed(0)}°`,
-        ];
-  const height = elevation === null ? [] : [`${fine(Math.abs(elevation))} ${elevation < 0 ? 'down' : 'up'}`];
-  const figures = [...plan, ...height].join(' and ');
-  return moved
-    ? `${name} moved: ${figures}.`
-    : `${name} stayed; it differs by ${figures}, as the errors allow.`;
 }

@@ -47,6 +47,12 @@ const REACHING: Record<Axis, readonly NetworkObservation['kind'][]> = {
   vertical: ['zenith', 'levelDifference', 'position', 'baseline', 'control'],
 };
 
+/** What was observed or published; centrings, heights of targets and the like are assumed. */
+const OBSERVED: ReadonlySet<NetworkObservation['kind']> = new Set([
+  ...REACHING.horizontal,
+  ...REACHING.vertical,
+]);
+
 /** A verdict on a network, with what decided it and what did not. */
 export function judgeAdjustment(
   { network, setups, control, ambiguous, unseen }: AdjustmentInput,
@@ -60,13 +66,14 @@ export function judgeAdjustment(
 } {
   const { observations, removed, test } = result;
   const reaching = byPoint(observations);
+  const observed = observations.filter(({ kind }) => OBSERVED.has(kind));
   const checks = Object.fromEntries(
     result.points.map((point) => [point.name, checksOf(point, reaching.get(point.name) ?? [])]),
   );
   const reasons: AdjustmentReason[] = [];
   if (!result.converged) reasons.push({ code: 'not_converged' });
   if (result.snoopingEnded === 'too_many')
-    reasons.push({ code: 'too_many_removed', removed: removed.length, observations: observations.length });
+    reasons.push({ code: 'too_many_removed', removed: removed.length, observations: observed.length });
   else {
     const worst = worstOf(observations);
     if (worst !== null) {
@@ -100,7 +107,7 @@ export function judgeAdjustment(
   if (verdict === 'pass')
     reasons.push({
       code: 'network_fits',
-      observations: observations.length - removed.length,
+      observations: observed.filter((observation) => !observation.removed).length,
       redundancy: test.degreesOfFreedom,
     });
 
@@ -109,7 +116,7 @@ export function judgeAdjustment(
     if (names.length > 0) notes.push({ code, [key]: names } as unknown as AdjustmentNote);
   };
   if (removed.length > 0 && result.snoopingEnded !== 'too_many')
-    notes.push({ code: 'observations_removed', removed: removed.length, observations: observations.length });
+    notes.push({ code: 'observations_removed', removed: removed.length, observations: observed.length });
   if (datum.kind === 'held') {
     const held = network.points.filter((p) => p.horizontalDatum === 'held' || p.verticalDatum === 'held');
     notes.push({ code: 'held_not_tested', points: held.length });
