@@ -1,5 +1,6 @@
 import { beforeAll, describe, expect, it } from 'vitest';
 import { type Identification, IdentificationError } from '@/lib/compute/survey/identify';
+import { ControlIndex } from '@/lib/compute/survey/identifyControl';
 import type { ControlMark } from '@/lib/compute/survey/shots';
 import { seededChance } from '@/tests/simulator/chance';
 import { amongPoints, type Crowd, crowdedSite } from '@/tests/simulator/crowdedSite';
@@ -261,4 +262,29 @@ describe('nothing is identified', () => {
     }));
     expect(refusal({ ...task, shots }).code).toBe('no_fit');
   });
+});
+
+it('looks for pairs among crowded marks until it has compared as many as it may, or is told to stop', () => {
+  // Two clusters far apart.
+  const marks = Array.from({ length: 2000 }, (_, i): ControlMark => {
+    const corner = (i % 2) * 1e6;
+    const [easting, northing] = [corner + (i % 50) * 20, corner + Math.floor(i / 50) * 25];
+    const sigmas = { horizontalSigma: 0.003, verticalSigma: 0.003 };
+    return { name: `P${i}`, version: 1, easting, northing, elevation: 1, ...sigmas, status: 'trusted' };
+  });
+  const index = new ControlIndex(marks);
+  const pairs = (most: number, goOn: boolean) => {
+    let count = 0;
+    const compared = index.pairs({ distance: 100, rise: 0 }, { distance: 0.01, rise: 0.01 }, most, () => {
+      count++;
+      return goOn;
+    });
+    return { count, compared };
+  };
+  const all = pairs(Number.POSITIVE_INFINITY, true);
+  expect(all.count).toBeGreaterThan(2000);
+  const some = pairs(20_000, true);
+  expect(some.count).toBeLessThan(all.count);
+  expect(some.compared).toBeLessThan(20_000 + 2 * marks.length);
+  expect(pairs(Number.POSITIVE_INFINITY, false).count).toBe(1);
 });

@@ -78,31 +78,48 @@ export class ControlIndex {
     this.samePlace = this.standIns();
   }
 
-  /** Calls `found` with each mark of a square about a place, those somewhat beyond it included. */
-  near(east: number, north: number, radius: number, found: (mark: number) => void): void {
+  /**
+   * Calls `found` with each mark of a square about a place, those somewhat beyond it included.
+   *
+   * @returns how many those were
+   */
+  near(east: number, north: number, radius: number, found: (mark: number) => void): number {
+    let compared = 0;
     const [first, last] = [this.column(east - radius), this.column(east + radius)];
     for (let row = this.row(north - radius), end = this.row(north + radius); row <= end; row++) {
       const stop = this.cellStart[row * this.columns + last + 1];
-      for (let i = this.cellStart[row * this.columns + first]; i < stop; i++) found(i);
+      const start = this.cellStart[row * this.columns + first];
+      compared += stop - start;
+      for (let i = start; i < stop; i++) found(i);
     }
+    return compared;
   }
 
   /**
    * Calls `found` with each pair of marks, in both orders, whose distance and whose difference of heights lie within
    * tolerances; a mark without elevation has any height.
+   *
+   * @param most comparisons of marks before it gives up
+   * @param found says whether to go on
+   * @returns how many comparisons it took; more than `most` where it gave up for them
    */
   pairs(
     wanted: { distance: number; rise: number },
     tolerance: { distance: number; rise: number },
-    found: (from: number, to: number) => void,
-  ): void {
+    most: number,
+    found: (from: number, to: number) => boolean,
+  ): number {
     const { east, north, up, cell, cellStart, columns } = this;
     const outer = wanted.distance + tolerance.distance;
     const inner = Math.max(0, wanted.distance - tolerance.distance);
     const [outer2, inner2] = [outer * outer, inner * inner];
+    let compared = 0;
+    let go = true;
     const stretch = (from: number, row: number, first: number, last: number) => {
       const stop = cellStart[row * columns + last + 1];
-      for (let to = cellStart[row * columns + first]; to < stop; to++) {
+      const start = cellStart[row * columns + first];
+      compared += stop - start;
+      for (let to = start; to < stop && go; to++) {
         const de = east[to] - east[from];
         const dn = north[to] - north[from];
         // One half of the plane only: the other one comes as pairs of the other order.
@@ -111,11 +128,11 @@ export class ControlIndex {
         if (!(square >= inner2 && square <= outer2)) continue;
         const rise = up[to] - up[from];
         // Not beyond the tolerance, or not a number.
-        if (!(Math.abs(rise - wanted.rise) > tolerance.rise)) found(from, to);
-        if (!(Math.abs(rise + wanted.rise) > tolerance.rise)) found(to, from);
+        if (!(Math.abs(rise - wanted.rise) > tolerance.rise)) go = found(from, to);
+        if (go && !(Math.abs(rise + wanted.rise) > tolerance.rise)) go = found(to, from);
       }
     };
-    for (let from = 0; from < east.length; from++) {
+    for (let from = 0; from < east.length && go && compared <= most; from++) {
       const [e, n] = [east[from], north[from]];
       const [own, top] = [this.row(n), this.row(n + outer)];
       for (let row = own; row <= top; row++) {
@@ -133,6 +150,7 @@ export class ControlIndex {
         } else stretch(from, row, first, last);
       }
     }
+    return compared;
   }
 
   private column(east: number): number {

@@ -13,6 +13,8 @@ const MOST_PAIRED = 24;
 const MOST_KEPT = 200;
 /** Pairs of marks looked at closely before the search gives up, for one upload must not keep the others waiting. */
 const MOST_LOOKS = 400_000;
+/** The same of marks compared with a place: where they crowd, one look may compare thousands. */
+const MOST_COMPARED = 60_000_000;
 const MOST_ROUNDS = 8;
 /** Distances under so small a part of the longest cost more by what they leave open than they save. */
 const SHORT = 10;
@@ -49,14 +51,11 @@ export function search(index: ControlIndex, places: readonly Place[], least: num
   const tried = new Set<string>();
   let most = 0;
   let looks = 0;
+  let compared = 0;
   let cut = false;
   for (const [i, j] of chosenPairs(paired, among)) {
     const look = looker(index, paired, i, j, among);
-    look.pairs((from, to) => {
-      if (looks++ > MOST_LOOKS) {
-        cut = true;
-        return;
-      }
+    const tryPair = (from: number, to: number) => {
       const hits = look.at(from, to);
       if (hits === null) return;
       const key = hits.join();
@@ -70,7 +69,18 @@ export function search(index: ControlIndex, places: readonly Place[], least: num
       if (found === null) return;
       most = Math.max(most, found.matched);
       if (found.matched >= least) kept.set(found.marks.join(), found);
+    };
+    const left = MOST_COMPARED - compared;
+    compared += look.pairs(left, (from, to) => {
+      if (looks++ > MOST_LOOKS || look.compared() > left) return false;
+      tryPair(from, to);
+      return true;
     });
+    compared += look.compared();
+    if (looks > MOST_LOOKS || compared > MOST_COMPARED) {
+      cut = true;
+      break;
+    }
   }
   return { found: [...kept.values()], most, cut };
 }
@@ -150,6 +160,7 @@ function looker(index: ControlIndex, places: readonly Place[], i: number, j: num
   others.sort((a, b) => a.reach - b.reach);
   const hits = new Int32Array(places.length);
   let nearest = STRAY;
+  let compared = 0;
   let [east, north, up, reach, tall, closest] = [0, 0, 0, 0, 0, 0];
   const compare = (mark: number) => {
     const [e, n] = [index.east[mark] - east, index.north[mark] - north];
@@ -161,21 +172,23 @@ function looker(index: ControlIndex, places: readonly Place[], i: number, j: num
     nearest = mark;
   };
   return {
-    pairs(found: (from: number, to: number) => void): void {
+    pairs(most: number, found: (from: number, to: number) => boolean): number {
       const tolerance = {
         distance: REACH * Math.sqrt(line + 2 * worst.plan),
         rise: REACH * Math.sqrt(steep + 2 * worst.up),
       };
-      index.pairs({ distance: length, rise }, tolerance, (from, to) => {
+      return index.pairs({ distance: length, rise }, tolerance, most, (from, to) => {
         const own = line + index.horizontal[from] ** 2 + index.horizontal[to] ** 2;
         const distance = Math.hypot(index.east[to] - index.east[from], index.north[to] - index.north[from]);
-        if (Math.abs(distance - length) > REACH * Math.sqrt(own)) return;
+        if (Math.abs(distance - length) > REACH * Math.sqrt(own)) return true;
         const [up1, up2] = [index.up[from], index.up[to]];
         const upright = steep + index.vertical[from] ** 2 + index.vertical[to] ** 2;
-        if (Math.abs(up2 - up1 - rise) > REACH * Math.sqrt(upright)) return;
-        found(from, to);
+        if (Math.abs(up2 - up1 - rise) > REACH * Math.sqrt(upright)) return true;
+        return found(from, to);
       });
     },
+    /** Marks that were compared with places. */
+    compared: () => compared,
     /** Marks of all reflectors, or null where too few have one. */
     at(from: number, to: number): Int32Array | null {
       const [we, wn] = [index.east[to] - index.east[from], index.north[to] - index.north[from]];
@@ -198,7 +211,7 @@ function looker(index: ControlIndex, places: readonly Place[], i: number, j: num
         tall = other.rise;
         closest = 1;
         nearest = STRAY;
-        index.near(east, north, reach, compare);
+        compared += index.near(east, north, reach, compare);
         hits[other.k] = nearest;
         if (nearest === STRAY && ++misses > places.length - least) return null;
       }
