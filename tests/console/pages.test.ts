@@ -83,10 +83,13 @@ const PAGES: Record<string, (project: string) => string> = {
   ...Object.fromEntries(METHODS.map(({ slug }) => [`method-${slug}`, () => `/reference/methods/${slug}`])),
   missing: () => '/no-such-page',
 };
-/** Pages of one layout: most are looked at wide by light and narrow by dark, the longest like every other. */
+/** Pages of one layout: every other is looked at wide by light, the rest narrow by dark, the longest like any page. */
 const alike = (name: string) => name.startsWith('method-') && name !== 'method-free-station';
 const pagesAt = (colorScheme: string, width: number) =>
-  Object.keys(PAGES).filter((name) => !alike(name) || (colorScheme === 'light') === width > 1000);
+  Object.keys(PAGES).filter((name, i) => {
+    if (!alike(name)) return true;
+    return i % 2 === 0 ? colorScheme === 'light' && width > 1000 : colorScheme === 'dark' && width < 1000;
+  });
 
 /**
  * What axe finds, as lines. Inside the laid-out API document the markup is its library's own: there the colours are
