@@ -12,18 +12,25 @@ async function organizationIds(): Promise<string[]> {
   });
 }
 
-/** Does `work` for every organization: what fails for one is logged, and does not keep the others from it. */
+/**
+ * Does `work` for every organization: what fails for one is logged, and does not keep the others from it.
+ *
+ * @throws the first failure, when all have had their turn: the queue tries again
+ */
 export async function eachOrganization(
   task: string,
   work: (organizationId: string) => Promise<void>,
 ): Promise<void> {
+  const failures: unknown[] = [];
   for (const organizationId of await organizationIds()) {
     try {
       await work(organizationId);
     } catch (err) {
+      failures.push(err);
       log().error({ task, organizationId, err }, 'job failed for an organization');
     }
   }
+  if (failures.length > 0) throw failures[0];
 }
 
 /**

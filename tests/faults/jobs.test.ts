@@ -114,7 +114,7 @@ describe('a job', () => {
     await barrier.open();
     expect(await ended(id)).toMatchObject({ status: 'cancelled', result: null });
     expect(await resultsOf(id)).toEqual([]);
-    expect(await eventsOf(id)).toEqual(['adjustment.requested', 'job.cancelled']);
+    expect(await eventsOf(id)).toEqual(['adjustment.requested', 'job.cancelRequested', 'job.cancelled']);
   });
 
   it('is neither queued nor there where its request was not committed', async () => {
