@@ -73,4 +73,4 @@ it('makes a hook, sends a test, shows what came back, replays, rotates, switches
   await page.getByText('No hook yet').waitFor();
   expect(complaints).toEqual([]);
   await context.close();
-});
+}, 180_000);
