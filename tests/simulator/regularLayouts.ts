@@ -63,14 +63,17 @@ const turned =
     });
   };
 
-/** Two building sites of the same plan, far apart. */
+/**
+ * Two building sites of the same plan, farther apart than anybody shoots: each reaches 170 m from its corner, whichever
+ * way it is turned, and shots to both would tell them apart.
+ */
 const twins: Layout = (chance) => {
   const pegs = Array.from({ length: wholeBetween(chance, 8, 20) }, () => ({
     east: between(chance, 0, 120),
     north: between(chance, 0, 120),
     up: between(chance, -2, 2),
   }));
-  const [away, azimuth] = [between(chance, 400, 900), between(chance, 0, 2 * Math.PI)];
+  const [away, azimuth] = [between(chance, 650, 1200), between(chance, 0, 2 * Math.PI)];
   const lift = between(chance, -10, 10);
   return laid(chance, (put) => {
     for (const { east, north, up } of pegs) {
